@@ -1,0 +1,21 @@
+import tailwindcss from '@tailwindcss/vite';
+import react from '@vitejs/plugin-react';
+import { defineConfig } from 'vite';
+
+export default defineConfig({
+  plugins: [react(), tailwindcss()],
+  resolve: {
+    // react-katex is CommonJS and would bring a second copy of KaTeX into the bundle.
+    alias: [{ find: /^katex$/, replacement: 'katex/dist/katex.mjs' }],
+  },
+  worker: { format: 'es' },
+  build: {
+    outDir: 'dist/client',
+    emptyOutDir: true,
+    target: 'es2022',
+    // Small fonts would become data: URLs, which the content security policy (font-src 'self') refuses.
+    assetsInlineLimit: 0,
+    // mathjs is one chunk of its own, loaded where trial values are typed.
+    chunkSizeWarningLimit: 700,
+  },
+});
