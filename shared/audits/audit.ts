@@ -1,0 +1,67 @@
+import type { Claim, Grade } from '../contracts/report.ts';
+import type { Size } from '../lattice/cells.ts';
+import type { AuditStatement, Values } from '../language/values.ts';
+
+/**
+ * An audit is one record in one module: what a line asks, what that would cost, and how it is decided.
+ * Nobody writes a grade: `decide` returns evidence of a kind, and the kind decides (`grades.ts`).
+ */
+export type Evidence =
+  | { readonly kind: 'all sizes'; readonly from?: string; readonly proof: unknown }
+  | { readonly kind: 'exact on'; readonly sizes: readonly string[] }
+  | { readonly kind: 'residuals'; readonly tolerance: number; readonly largest: number; readonly sizes: readonly string[] }
+  | { readonly kind: 'counterexample' }
+  | { readonly kind: 'reason'; readonly reason: string };
+
+export interface Finding {
+  readonly evidence: Evidence;
+  readonly statement: string;
+  readonly tex?: string;
+  readonly figures: Readonly<Record<string, unknown>>;
+  readonly witness?: Readonly<Record<string, unknown>>;
+  readonly cautions?: readonly string[];
+  readonly sources?: readonly string[];
+}
+
+/** What answering would take; symbolic questions cost next to nothing. */
+export interface Cost {
+  /** Elementary floating or word operations. */
+  readonly operations: number;
+  readonly bytes: number;
+  /** In words: "dimension 65536". */
+  readonly words: string;
+}
+
+export interface Progress {
+  /** 0 … 1 */
+  readonly done: number;
+  readonly doing: string;
+  readonly checkpoint?: unknown;
+}
+
+/** A question: one for each claim, whole in itself. `key` is canonical text of all that the answer depends on. */
+export interface Question {
+  readonly audit: string;
+  readonly statement: AuditStatement;
+  readonly values: Values;
+  readonly size: Size | undefined;
+  readonly part: string;
+  readonly key: string;
+}
+
+export interface Means {
+  /** Largest cost that is answered here and now; dearer questions stand open with their cost. */
+  readonly limit: { readonly operations: number; readonly bytes: number };
+}
+
+export interface Audit {
+  readonly name: string;
+  readonly help: string;
+  readonly example: string;
+  questions(statement: AuditStatement, values: Values): readonly Question[];
+  cost(question: Question): Cost;
+  decide(question: Question, means: Means): Generator<Progress, readonly Finding[]>;
+}
+
+export type GradeOf = (evidence: Evidence) => Grade;
+export type { Claim };
