@@ -86,7 +86,7 @@ export const table = {
   'server/index': { may: ['server'], packages: nodePackages },
   'server/worker': { may: ['server'], packages: nodePackages },
   'server/commands': { may: ['server'], packages: nodePackages },
-  'server/commands/report': { may: ['server', 'shared/derivation'], packages: nodePackages },
+  'server/commands/report': { may: ['server', 'shared/derivation', 'shared/contracts'], packages: nodePackages },
   'server/commands/check': { may: ['shared/checker', 'server/commands'], packages: nodePackages },
   // the client's frame
   'src/components': { packages: ['*'] },

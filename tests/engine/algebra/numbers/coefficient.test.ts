@@ -23,7 +23,11 @@ const coefficient: fc.Arbitrary<Coefficient> = fc.letrec<{ c: Coefficient }>((ti
   ),
 })).c;
 const settings = { seed: 7, numRuns: 150 };
-const values = new Map([['J', 0.7], ['h', 1.9], ['K', -0.37]]);
+const values = new Map([
+  ['J', 0.7],
+  ['h', 1.9],
+  ['K', -0.37],
+]);
 const same = (a: Coefficient, b: Coefficient) => {
   expect(a.key()).toBe(b.key());
   expect(a.equals(b)).toBe(true);
@@ -78,7 +82,10 @@ describe('the field of coefficients', () => {
     );
   });
   it('substitutes as a homomorphism', () => {
-    const at = new Map([['J', C.rational(2, 3)], ['K', root(2)]]);
+    const at = new Map([
+      ['J', C.rational(2, 3)],
+      ['K', root(2)],
+    ]);
     fc.assert(
       fc.property(coefficient, coefficient, (a, b) => {
         try {

@@ -1,0 +1,92 @@
+/**
+ * Builds what `npm start` runs: the compiled grammar and kernel, the client in dist/client, the server's bundles in
+ * dist/server. Bundles keep npm packages outside. `isStale` says whether a build is needed.
+ */
+import { createHash } from 'node:crypto';
+import {
+  copyFileSync,
+  existsSync,
+  mkdirSync,
+  readFileSync,
+  readdirSync,
+  rmSync,
+  statSync,
+  writeFileSync,
+} from 'node:fs';
+import { join } from 'node:path';
+import { compileGrammar } from './grammar.mjs';
+import { compileKernel } from './kernel.mjs';
+import { isMain, root } from './root.mjs';
+import { explain } from './system.mjs';
+
+const stamp = join(root, 'dist', '.built');
+const inputs = ['grammar', 'shared', 'server', 'src', 'public', 'index.html', 'vite.config.ts', 'package-lock.json'];
+
+/** One line for each source below a path: name, size and time of change. Generated files are left out. */
+function listing(path) {
+  const facts = statSync(path);
+  if (!facts.isDirectory()) return [`${path} ${facts.size} ${facts.mtimeMs}`];
+  const inside = readdirSync(path).filter((name) => !name.startsWith('.') && !/\.(grammar\.ts|wasm)$/.test(name));
+  return inside.sort().flatMap((name) => listing(join(path, name)));
+}
+
+/** A fingerprint of all that a build reads. */
+function fingerprint() {
+  const lines = inputs.map((name) => join(root, name)).filter((path) => existsSync(path));
+  return createHash('sha256').update(lines.flatMap(listing).join('\n')).digest('hex');
+}
+
+/** True when a source is not as it was at the last whole build, or there was none. */
+export const isStale = () => !existsSync(stamp) || readFileSync(stamp, 'utf8') !== fingerprint();
+
+/** The server's programs: each becomes a bundle of its own at the same place under dist/server. */
+function programs() {
+  const commands = readdirSync(join(root, 'server', 'commands')).filter((name) => name.endsWith('.ts'));
+  return ['index.ts', 'worker.ts', 'evaluation/thread.ts', ...commands.map((name) => `commands/${name}`)]
+    .map((name) => join(root, 'server', name))
+    .filter((path) => existsSync(path));
+}
+
+async function buildServer() {
+  const { build } = await import('esbuild');
+  rmSync(join(root, 'dist', 'server'), { recursive: true, force: true });
+  mkdirSync(join(root, 'dist', 'server'), { recursive: true });
+  await build({
+    entryPoints: programs(),
+    outdir: join(root, 'dist', 'server'),
+    outbase: join(root, 'server'),
+    bundle: true,
+    packages: 'external',
+    platform: 'node',
+    format: 'esm',
+    target: 'node20',
+    sourcemap: true,
+    logLevel: 'warning',
+  });
+  const kernel = join(root, 'shared', 'spectra', 'kernel', 'kernel.wasm');
+  if (existsSync(kernel)) copyFileSync(kernel, join(root, 'dist', 'server', 'kernel.wasm'));
+}
+
+async function buildClient() {
+  const { build } = await import('vite');
+  await build({ root, configFile: join(root, 'vite.config.ts'), logLevel: 'warn' });
+}
+
+export async function buildAll() {
+  const sources = fingerprint();
+  rmSync(stamp, { force: true });
+  compileGrammar();
+  await compileKernel();
+  await buildServer();
+  await buildClient();
+  writeFileSync(stamp, sources);
+}
+
+if (isMain(import.meta.url)) {
+  try {
+    await buildAll();
+  } catch (error) {
+    explain(error);
+    process.exit(1);
+  }
+}
