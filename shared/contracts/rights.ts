@@ -1,0 +1,43 @@
+import { z } from 'zod';
+
+/**
+ * Names of roles and of actions (DESIGN.md section 8), and no rules: who may do what is decided in one place, on the server.
+ * The client shows what an answer's `may` lists and holds no table of its own.
+ */
+
+/** What a person can be on a notebook; there is exactly one owner. */
+export const roles = ['owner', 'coauthor', 'referee', 'reader'] as const;
+export type Role = (typeof roles)[number];
+export const roleSchema = z.enum(roles);
+
+/** Roles that an owner can hand out. */
+export const grantedRoleSchema = z.enum(['coauthor', 'referee', 'reader']);
+export type GrantedRole = z.infer<typeof grantedRoleSchema>;
+
+export const visibilities = ['private', 'public'] as const;
+export type Visibility = (typeof visibilities)[number];
+/** Sharing one edition by link is no visibility: a private notebook can have links. */
+export const visibilitySchema = z.enum(visibilities);
+
+export const actions = [
+  // of the installation
+  'visit', // look around without an account: sign-in, public notebooks
+  'keep', // have a shelf: make, import and list one's own notebooks; one's own account
+  'steward', // accounts, job limits, health
+  // of a notebook
+  'read',
+  'export',
+  'fork',
+  'leave', // give up one's own role
+  'remark',
+  'judge', // give a verdict
+  'edit', // write entries, title, authors
+  'publish', // seal an edition
+  'adopt', // take variants of a fork over
+  'invite', // people and their roles
+  'show', // visibility
+  'link', // share one edition by link
+  'delete',
+] as const;
+export type Action = (typeof actions)[number];
+export const actionSchema = z.enum(actions);
