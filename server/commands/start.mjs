@@ -206,6 +206,11 @@ function startCompanion(environment, wait = 1_000) {
 }
 
 for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) process.on(signal, () => void stop(0));
+if (process.env.npm_lifecycle_event) {
+  // npm hands on SIGINT and SIGTERM, but not a hang-up and not its own end: then this process has a new parent.
+  const parent = process.ppid;
+  setInterval(() => process.ppid === parent || void stop(0), 500).unref();
+}
 try {
   checkNode();
   ensurePackages(say);
