@@ -152,6 +152,8 @@ export default defineConfig(
       '@typescript-eslint/consistent-type-imports': 'error',
       '@typescript-eslint/no-unused-vars': ['error', { argsIgnorePattern: '^_', varsIgnorePattern: '^_' }],
       '@typescript-eslint/restrict-template-expressions': ['error', { allowNumber: true, allowBoolean: true }],
+      // Repeated squaring and its kin begin with `let power = this`.
+      '@typescript-eslint/no-this-alias': 'off',
       // Handlers may be async: React and Express 5 both take care of what they return.
       '@typescript-eslint/no-misused-promises': ['error', { checksVoidReturn: false }],
     },

@@ -68,6 +68,7 @@ async function buildServer() {
 }
 
 async function buildClient() {
+  if (!existsSync(join(root, 'src', 'main.tsx'))) return;
   const { build } = await import('vite');
   await build({ root, configFile: join(root, 'vite.config.ts'), logLevel: 'warn' });
 }
