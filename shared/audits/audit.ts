@@ -9,7 +9,12 @@ import type { AuditStatement, Values } from '../language/values.ts';
 export type Evidence =
   | { readonly kind: 'all sizes'; readonly from?: string; readonly proof: unknown }
   | { readonly kind: 'exact on'; readonly sizes: readonly string[] }
-  | { readonly kind: 'residuals'; readonly tolerance: number; readonly largest: number; readonly sizes: readonly string[] }
+  | {
+      readonly kind: 'residuals';
+      readonly tolerance: number;
+      readonly largest: number;
+      readonly sizes: readonly string[];
+    }
   | { readonly kind: 'counterexample' }
   | { readonly kind: 'reason'; readonly reason: string };
 

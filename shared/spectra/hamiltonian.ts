@@ -37,7 +37,9 @@ export interface FlipParts {
 /** Thrown when the sum of terms is not Hermitian by more than rounding. */
 export class NotHermitian extends Error {
   constructor(size: number) {
-    super(`the terms do not add up to a Hermitian operator: an antihermitian part of size ${size.toExponential(2)} remains`);
+    super(
+      `the terms do not add up to a Hermitian operator: an antihermitian part of size ${size.toExponential(2)} remains`,
+    );
     this.name = 'NotHermitian';
   }
 }
@@ -114,7 +116,12 @@ export function flipHamiltonian(parts: FlipParts, kernel: Kernel, complex = fals
 }
 
 /** H = real + i imaginary from two prepared real matrices; with no imaginary part the vectors are real unless `complex`. */
-export function fromParts(kernel: Kernel, real: Prepared, imaginary: Prepared | undefined, complex = false): Hamiltonian {
+export function fromParts(
+  kernel: Kernel,
+  real: Prepared,
+  imaginary: Prepared | undefined,
+  complex = false,
+): Hamiltonian {
   const d = real.dimension;
   return {
     dimension: d,

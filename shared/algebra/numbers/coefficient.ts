@@ -113,17 +113,11 @@ export class Coefficient {
   mul(other: Coefficient): Coefficient {
     if (this.denominator === P.one && other.denominator === P.one)
       return new Coefficient(P.mul(this.numerator, other.numerator), P.one);
-    return Coefficient.of(
-      P.mul(this.numerator, other.numerator),
-      P.mul(this.denominator, other.denominator),
-    );
+    return Coefficient.of(P.mul(this.numerator, other.numerator), P.mul(this.denominator, other.denominator));
   }
   /** this/other; undefined if other is zero. */
   div(other: Coefficient): Coefficient | undefined {
-    return Coefficient.quotient(
-      P.mul(this.numerator, other.denominator),
-      P.mul(this.denominator, other.numerator),
-    );
+    return Coefficient.quotient(P.mul(this.numerator, other.denominator), P.mul(this.denominator, other.numerator));
   }
   /** Complex conjugate; couplings are real. */
   conj(): Coefficient {
@@ -155,9 +149,7 @@ export class Coefficient {
   }
   /** True if it is real for every real value of the couplings. */
   isReal(): boolean {
-    return this.denominator === P.one
-      ? this.numerator.every((t) => S.isReal(t.coefficient))
-      : this.equals(this.conj());
+    return this.denominator === P.one ? this.numerator.every((t) => S.isReal(t.coefficient)) : this.equals(this.conj());
   }
   /** True if it holds no coupling. */
   isConstant(): boolean {
@@ -174,9 +166,7 @@ export class Coefficient {
   /** Equal if and only if the coefficients are. */
   key(): string {
     this.cachedKey ??=
-      this.denominator === P.one
-        ? P.key(this.numerator)
-        : `${P.key(this.numerator)}/${P.key(this.denominator)}`;
+      this.denominator === P.one ? P.key(this.numerator) : `${P.key(this.numerator)}/${P.key(this.denominator)}`;
     return this.cachedKey;
   }
   symbols(): ReadonlySet<string> {
@@ -241,10 +231,13 @@ function floatOf(p: Polynomial, values: ReadonlyMap<string, number>): { re: numb
 function termParts(p: Polynomial): TermParts[] {
   return p.flatMap((t) =>
     t.coefficient.flatMap((s) =>
-      ([['re', false], ['im', true]] as const).flatMap(([part, imaginary]) =>
-        Q.isZero(s[part])
-          ? []
-          : [{ ...s[part], imaginary, radicand: s.radicand, powers: t.monomial.powers }],
+      (
+        [
+          ['re', false],
+          ['im', true],
+        ] as const
+      ).flatMap(([part, imaginary]) =>
+        Q.isZero(s[part]) ? [] : [{ ...s[part], imaginary, radicand: s.radicand, powers: t.monomial.powers }],
       ),
     ),
   );

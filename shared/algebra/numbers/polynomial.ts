@@ -108,9 +108,7 @@ export function mul(a: Polynomial, b: Polynomial, budget?: Budget): Polynomial {
   const [t] = b;
   if (!s || !t) return zero;
   if (a.length === 1 && b.length === 1)
-    return [
-      { monomial: mulMonomials(s.monomial, t.monomial), coefficient: S.mul(s.coefficient, t.coefficient) },
-    ];
+    return [{ monomial: mulMonomials(s.monomial, t.monomial), coefficient: S.mul(s.coefficient, t.coefficient) }];
   function* products(): Generator<Term> {
     for (const x of a)
       for (const y of b)
@@ -140,8 +138,7 @@ export const equals = (a: Polynomial, b: Polynomial): boolean =>
   a.length === b.length &&
   a.every((t, k) => t.monomial.key === b[k]?.monomial.key && S.equals(t.coefficient, b[k].coefficient));
 
-export const key = (a: Polynomial): string =>
-  a.map((t) => `${S.key(t.coefficient)}[${t.monomial.key}]`).join('+');
+export const key = (a: Polynomial): string => a.map((t) => `${S.key(t.coefficient)}[${t.monomial.key}]`).join('+');
 
 export const symbols = (a: Polynomial): ReadonlySet<string> =>
   new Set(a.flatMap((t) => t.monomial.powers.map(([n]) => n)));
@@ -180,7 +177,11 @@ function pseudoRemainder(a: Polynomial, b: Polynomial, name: string, budget: Bud
  * Monic greatest common divisor over the field of surds (zero only for two zeros): contents by recursion over the symbols, then the primitive
  * remainder sequence (W. S. Brown, J. ACM 18, 478 (1971)). Throws BudgetSpent.
  */
-export function gcd(a: Polynomial, b: Polynomial, budget: Budget = newBudget(400_000, 'steps of a greatest common divisor')): Polynomial {
+export function gcd(
+  a: Polynomial,
+  b: Polynomial,
+  budget: Budget = newBudget(400_000, 'steps of a greatest common divisor'),
+): Polynomial {
   if (a.length === 0) return monic(b);
   if (b.length === 0) return monic(a);
   if (isConstant(a) || isConstant(b)) return one;

@@ -60,8 +60,7 @@ export function compare(a: Rational, b: Rational): number {
 }
 
 /** "3/5", "-2". */
-export const text = (a: Rational): string =>
-  a.den === 1n ? String(a.num) : `${String(a.num)}/${String(a.den)}`;
+export const text = (a: Rational): string => (a.den === 1n ? String(a.num) : `${String(a.num)}/${String(a.den)}`);
 
 /** Nearest float, also where numerator and denominator alone would overflow. */
 export function toFloat(a: Rational): number {

@@ -83,7 +83,7 @@ export const conj = (a: Surd): Surd => a.map((t) => ({ ...t, im: Q.neg(t.im) }))
  */
 function splitter(a: Surd): bigint | undefined {
   let r = a.find((t) => t.radicand !== 1n)?.radicand;
-  for (let again = r !== undefined; again && r !== undefined; ) {
+  for (let again = r !== undefined; again && r !== undefined;) {
     again = false;
     for (const t of a) {
       const g = Q.gcd(r, t.radicand);
@@ -121,9 +121,7 @@ export const equals = (a: Surd, b: Surd): boolean =>
 
 /** Canonical text for keys, e.g. "1:3/5" or "2:0,1/2". */
 export const key = (a: Surd): string =>
-  a
-    .map((t) => `${String(t.radicand)}:${Q.text(t.re)}${Q.isZero(t.im) ? '' : `,${Q.text(t.im)}`}`)
-    .join(' ');
+  a.map((t) => `${String(t.radicand)}:${Q.text(t.re)}${Q.isZero(t.im) ? '' : `,${Q.text(t.im)}`}`).join(' ');
 
 export function toFloat(a: Surd): { re: number; im: number } {
   let re = 0;

@@ -51,7 +51,15 @@ function sum(terms: readonly TermParts[]): string {
 
 const isOne = (terms: readonly TermParts[]): boolean => {
   const [t] = terms;
-  return terms.length === 1 && t !== undefined && t.num === 1n && t.den === 1n && !t.imaginary && t.radicand === 1n && t.powers.length === 0;
+  return (
+    terms.length === 1 &&
+    t !== undefined &&
+    t.num === 1n &&
+    t.den === 1n &&
+    !t.imaginary &&
+    t.radicand === 1n &&
+    t.powers.length === 0
+  );
 };
 
 /** Text of a coefficient in the operator language. */
@@ -74,5 +82,4 @@ export function coefficientText({ numerator, denominator }: Parts): string {
 }
 
 /** True where the text is a sum. */
-export const needsBracket = ({ numerator, denominator }: Parts): boolean =>
-  numerator.length > 1 && isOne(denominator);
+export const needsBracket = ({ numerator, denominator }: Parts): boolean => numerator.length > 1 && isOne(denominator);

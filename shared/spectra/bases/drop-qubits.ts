@@ -1,5 +1,17 @@
 import type { FiniteString } from '../../algebra/finite/types.ts';
-import { bit, commute, dropSite, hermitian, isIdentity, multiply, oddY, overlap, signed, support, type Constraint } from './packed.ts';
+import {
+  bit,
+  commute,
+  dropSite,
+  hermitian,
+  isIdentity,
+  multiply,
+  oddY,
+  overlap,
+  signed,
+  support,
+  type Constraint,
+} from './packed.ts';
 
 /**
  * Dropping one spin for each independent constraint (S. Bravyi, J. M. Gambetta, A. Mezzacapo, K. Temme,
@@ -101,7 +113,10 @@ function run(steps: readonly Step[], string: FiniteString): FiniteString {
  * strings that commute with P stay, the others become iPT. Derived here. Returns undefined when the linear system has
  * no such solution, and the identity when the strings are real already.
  */
-export function realFrame(n: number, terms: readonly FiniteString[]): ((string: FiniteString) => FiniteString) | undefined {
+export function realFrame(
+  n: number,
+  terms: readonly FiniteString[],
+): ((string: FiniteString) => FiniteString) | undefined {
   if (terms.every((t) => oddY(t) === 0)) return (string) => string;
   const p = realPartner(n, terms, 'z') ?? realPartner(n, terms, 'any');
   if (!p) return undefined;
@@ -135,7 +150,11 @@ function realPartner(n: number, terms: readonly FiniteString[], kind: 'z' | 'any
   // A sum of two kernel vectors may have an even number of Y's where none alone has.
   for (const [k, a] of solved.kernel.entries()) {
     for (const b of solved.kernel.slice(0, k)) {
-      const p = fromBits(n, a.map((value, i) => value ^ (b[i] ?? 0) ^ (solved.particular[i] ?? 0)), kind);
+      const p = fromBits(
+        n,
+        a.map((value, i) => value ^ (b[i] ?? 0) ^ (solved.particular[i] ?? 0)),
+        kind,
+      );
       if (oddY(p) === 0) return p;
     }
   }

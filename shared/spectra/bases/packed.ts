@@ -26,7 +26,8 @@ export function multiply(a: FiniteString, b: FiniteString): FiniteString {
 }
 
 /** Multiplies by −1 when `negative`. */
-export const signed = (a: FiniteString, negative: boolean): FiniteString => (negative ? { ...a, phase: (a.phase + 2) & 3 } : a);
+export const signed = (a: FiniteString, negative: boolean): FiniteString =>
+  negative ? { ...a, phase: (a.phase + 2) & 3 } : a;
 
 export const bit = (words: Uint32Array, site: number): number => ((words[site >>> 5] ?? 0) >>> (site & 31)) & 1;
 

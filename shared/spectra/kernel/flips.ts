@@ -48,7 +48,8 @@ export function blockGroups(form: FlipForm): BlockGroup[] {
 
 function chunks(group: FlipGroup): FlipGroup[] {
   const out: FlipGroup[] = [];
-  for (let k = 0; k < group.terms.length; k += patterns) out.push({ x: group.x, terms: group.terms.slice(k, k + patterns) });
+  for (let k = 0; k < group.terms.length; k += patterns)
+    out.push({ x: group.x, terms: group.terms.slice(k, k + patterns) });
   return out;
 }
 
@@ -57,7 +58,12 @@ function blockGroup(group: FlipGroup, low: number): BlockGroup {
   const mask = size - 1;
   const base = { xLow: group.x & mask, xHigh: group.x & ~mask };
   if (group.terms.every((t) => t.z === 0)) {
-    return { ...base, zHigh: [], constant: group.terms.reduce((sum, t) => sum + t.amplitude, 0), tables: new Float64Array(0) };
+    return {
+      ...base,
+      zHigh: [],
+      constant: group.terms.reduce((sum, t) => sum + t.amplitude, 0),
+      tables: new Float64Array(0),
+    };
   }
   const count = group.terms.length;
   const tables = new Float64Array(size << count);

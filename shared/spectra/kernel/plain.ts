@@ -95,7 +95,14 @@ function prepareFlips(form: FlipForm): Prepared {
   };
 }
 
-function addDiagonal(d: Diagonal, out: Float64Array, source: Float64Array, start: number, size: number, sign: number): void {
+function addDiagonal(
+  d: Diagonal,
+  out: Float64Array,
+  source: Float64Array,
+  start: number,
+  size: number,
+  sign: number,
+): void {
   const { values, index } = d;
   const end = start + size;
   if (index) for (let k = start; k < end; k++) out[k] = out[k]! + sign * values[index[k]!]! * source[k]!;
@@ -103,7 +110,14 @@ function addDiagonal(d: Diagonal, out: Float64Array, source: Float64Array, start
 }
 
 /** Adds one group's part of the block of targets that begins at `start`. */
-function addBlock(group: BlockGroup, out: Float64Array, source: Float64Array, start: number, low: number, sign: number): void {
+function addBlock(
+  group: BlockGroup,
+  out: Float64Array,
+  source: Float64Array,
+  start: number,
+  low: number,
+  sign: number,
+): void {
   const size = 2 ** low;
   const from = start ^ group.xHigh;
   const { xLow, tables } = group;

@@ -21,7 +21,12 @@ export type Tridiagonalise = (
 ) => void;
 
 /** Eigenvalues, and eigenvectors if asked for, of a row-major real symmetric (n × n) matrix; overwrites it. n³ × 4/3 steps. */
-export function symmetricEigen(matrix: Float64Array, n: number, vectors: boolean, reduce: Tridiagonalise = tridiagonalise): Eigen {
+export function symmetricEigen(
+  matrix: Float64Array,
+  n: number,
+  vectors: boolean,
+  reduce: Tridiagonalise = tridiagonalise,
+): Eigen {
   const diagonal = new Float64Array(n);
   const off = new Float64Array(n);
   const taus = new Float64Array(n);
@@ -132,7 +137,15 @@ function makeReflector(a: Float64Array, n: number, i: number, u: Float64Array, e
 }
 
 /** rows[at …] −= tau (v · row) v over columns from … n − 1. */
-function reflect(rows: Float64Array, at: number, v: Float64Array, vAt: number, from: number, n: number, tau: number): void {
+function reflect(
+  rows: Float64Array,
+  at: number,
+  v: Float64Array,
+  vAt: number,
+  from: number,
+  n: number,
+  tau: number,
+): void {
   if (tau === 0) return;
   let sum = 0;
   for (let c = from; c < n; c++) sum += v[vAt + c]! * rows[at + c]!;
@@ -261,7 +274,10 @@ function implicitQl(d: Float64Array, e: Float64Array, rows: Float64Array | undef
         if (Math.abs(e[m]!) <= 2.3e-16 * (Math.abs(d[m]!) + Math.abs(d[m + 1]!)) || Math.abs(e[m]!) < 1e-300) break;
       }
       if (m === l) break;
-      if (sweep === 80) throw new Error(`the QL method found no level ${String(l)} in 80 sweeps: is an entry of the matrix not finite?`);
+      if (sweep === 80)
+        throw new Error(
+          `the QL method found no level ${String(l)} in 80 sweeps: is an entry of the matrix not finite?`,
+        );
       qlSweep(d, e, rows, l, m);
     }
   }
