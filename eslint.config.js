@@ -21,7 +21,7 @@ export const table = {
   // ground
   'shared/limits': {},
   'shared/contracts': { packages: ['zod'] },
-  'shared/lattice': {},
+  'shared/lattice': { may: ['shared/limits'] },
   grammar: { packages: ['nearley', 'moo'] },
   'shared/algebra/numbers': { may: ['shared/limits'] },
   'shared/algebra/f2': { may: ['shared/limits'] },

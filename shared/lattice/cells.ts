@@ -78,3 +78,38 @@ export const shifted = (cell: Cell, by: Offset): Cell => ({
 
 /** Key of a cell, unique on the infinite lattice. */
 export const cellKey = (cell: Cell): string => `${cell.kind[0] ?? ''}${String(cell.index)}@${cell.offset.join(',')}`;
+
+export const sameCell = (a: Cell, b: Cell): boolean =>
+  a.kind === b.kind && a.index === b.index && a.offset.every((c, d) => c === b.offset[d]);
+
+/** The zero offset of a lattice of `dimension` directions. */
+export const origin = (dimension: number): Offset => new Array<number>(dimension).fill(0);
+
+/** The offset of one unit cell along `direction` (from 0). */
+export const unit = (dimension: number, direction: number): Offset =>
+  Array.from({ length: dimension }, (_, d) => (d === direction ? 1 : 0));
+
+/** Why a lattice, a size or a geometry function has no meaning, with what to do; `which` names the culprit in words. */
+export interface LatticeProblem {
+  readonly problem: 'vectors' | 'vertex' | 'link' | 'plaquette' | 'cube' | 'size' | 'limit' | 'direction' | 'dimension';
+  readonly message: string;
+  readonly which: string;
+  /** The declaration at fault: its part and its place in that part, from 0. Only for declared lattices. */
+  readonly part?: 'vectors' | 'vertices' | 'links' | 'plaquettes' | 'cubes';
+  readonly index?: number;
+}
+
+export const isLatticeProblem = (value: unknown): value is LatticeProblem =>
+  typeof value === 'object' && value !== null && 'problem' in value && 'message' in value && 'which' in value;
+
+/** The classes of one kind. */
+export const classesOf = (family: LatticeFamily, kind: CellKind): readonly CellClass[] => family[kind];
+
+/** Indices of the classes that carry a label (`plaquettes.hexagon`); empty if none does. */
+export const classesLabelled = (family: LatticeFamily, kind: CellKind, label: string): readonly number[] =>
+  family[kind].flatMap((c, index) => (c.labels.includes(label) ? [index] : []));
+
+/** All labels of one kind, in order of first use. */
+export const labelsOf = (family: LatticeFamily, kind: CellKind): readonly string[] => [
+  ...new Set(family[kind].flatMap((c) => c.labels)),
+];
