@@ -26,7 +26,7 @@ export class MissingValue extends Error {
 export class Coefficient {
   private readonly numerator: Polynomial;
   private readonly denominator: Polynomial;
-  private cachedKey: string | undefined;
+  #cachedKey: string | undefined;
 
   private constructor(numerator: Polynomial, denominator: Polynomial) {
     this.numerator = numerator;
@@ -165,9 +165,9 @@ export class Coefficient {
   }
   /** Equal if and only if the coefficients are. */
   key(): string {
-    this.cachedKey ??=
+    this.#cachedKey ??=
       this.denominator === P.one ? P.key(this.numerator) : `${P.key(this.numerator)}/${P.key(this.denominator)}`;
-    return this.cachedKey;
+    return this.#cachedKey;
   }
   symbols(): ReadonlySet<string> {
     return new Set([...P.symbols(this.numerator), ...P.symbols(this.denominator)]);
