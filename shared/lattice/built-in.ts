@@ -1,5 +1,5 @@
 /** The lattices known by name: one row each, from which parser, help and tests read. */
-import type { LatticeFamily, Offset } from './cells.ts';
+import type { LatticeFamily } from './cells.ts';
 import { buildFamily } from './family.ts';
 import type { FamilyData, NamedCell } from './family.ts';
 
