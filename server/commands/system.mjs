@@ -95,7 +95,7 @@ export function isFree(port, host = '127.0.0.1') {
   });
 }
 
-/** A port that the system says is free on loopback. */
+/** A port that the system says is free on loopback. @returns {Promise<number>} */
 export function freePort() {
   return new Promise((resolve, reject) => {
     const probe = createServer();
