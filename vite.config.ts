@@ -8,6 +8,8 @@ export default defineConfig({
     // react-katex is CommonJS and would bring a second copy of KaTeX into the bundle.
     alias: [{ find: /^katex$/, replacement: 'katex/dist/katex.mjs' }],
   },
+  // `npm run dev` starts Vite in front of the server and says where that one listens.
+  server: process.env.BACKEND ? { proxy: { '^/(api|auth)(/|$)': { target: process.env.BACKEND } } } : {},
   worker: { format: 'es' },
   build: {
     outDir: 'dist/client',

@@ -5,13 +5,13 @@
  */
 import { spawn } from 'node:child_process';
 import { randomBytes } from 'node:crypto';
-import { existsSync, readFileSync, writeFileSync } from 'node:fs';
+import { existsSync, readFileSync, watchFile, writeFileSync } from 'node:fs';
 import { get } from 'node:http';
 import { join } from 'node:path';
 import { ensurePostgres, findCluster, openCluster, stateFolder } from './cluster.mjs';
 import { takeLock } from './lock.mjs';
 import { root } from './root.mjs';
-import { Trouble, checkNode, ensurePackages, explain, isFree } from './system.mjs';
+import { Trouble, checkNode, ensurePackages, explain, freePort, isFree } from './system.mjs';
 
 const dev = process.argv.includes('--dev');
 const workerAlone = process.argv.includes('--worker');
@@ -90,6 +90,43 @@ function sessionSecret(state) {
   const file = join(state, 'session-secret');
   if (!existsSync(file)) writeFileSync(file, randomBytes(32).toString('base64url'), { mode: 0o600 });
   return readFileSync(file, 'utf8');
+}
+
+const loopback = (host) => ['127.0.0.1', '::1', 'localhost'].includes(host);
+
+/**
+ * The stand-ins for GitHub and for mail that are switched on by themselves: where no real one is set up, and only for an
+ * installation that nobody but this machine can reach. Anyone can sign in as anyone through them.
+ */
+function standIns(host) {
+  const local = loopback(host) && !process.env.PUBLIC_URL && process.env.NODE_ENV !== 'production';
+  if (process.env.FAKES !== undefined || !local) return process.env.FAKES ?? '';
+  const missing = { github: !process.env.GITHUB_CLIENT_ID, mail: !process.env.SMTP_URL };
+  return Object.keys(missing)
+    .filter((name) => missing[name])
+    .join(',');
+}
+
+/** How a browser on this machine reaches a server at `host` and `port`. */
+function localAddress(host, port) {
+  const open = host === '0.0.0.0' || host === '::' ? 'localhost' : host;
+  return `http://${open.includes(':') ? `[${open}]` : open}:${port}`;
+}
+
+/** Vite in front of the server, for development: it sets up the client from source and hands the rest on. */
+function startVite(host, port, backend) {
+  const words = [
+    join('node_modules', 'vite', 'bin', 'vite.js'),
+    '--host',
+    host,
+    '--port',
+    String(port),
+    '--strictPort',
+  ];
+  keep(words, { BACKEND: backend }, (code) => void stop(code || 1));
+  watchFile(join(root, 'grammar', 'operator.ne'), { interval: 500 }, () => {
+    import('./grammar.mjs').then(({ compileGrammar }) => compileGrammar()).catch(explain);
+  });
 }
 
 /** Waits until the server answers at `url`; gives up quietly when it ended meanwhile. */
@@ -172,11 +209,16 @@ async function startAll() {
   await migrate(url);
   await built;
   if (stopping) return;
+  const where = localAddress(host, port);
+  // In development Vite has the port that people use, and the server another.
+  const own = dev ? await freePort() : port;
   const environment = {
     DATABASE_URL: url,
     HOST: host,
-    PORT: String(port),
+    PORT: String(own),
     SESSION_SECRET: process.env.SESSION_SECRET ?? sessionSecret(state),
+    FAKES: standIns(host),
+    ...(dev ? { NODE_ENV: 'development', PUBLIC_URL: process.env.PUBLIC_URL || where } : {}),
   };
   if (existsSync(join(root, 'server', 'commands', 'demo.ts'))) {
     const words = dev ? ['--import', 'tsx', 'server/commands/demo.ts'] : ['dist/server/commands/demo.js'];
@@ -189,9 +231,8 @@ async function startAll() {
   };
   const server = keep(program('index'), environment, ended);
   startCompanion(environment);
-  const open = host === '0.0.0.0' || host === '::' ? 'localhost' : host;
-  const where = `http://${open.includes(':') ? `[${open}]` : open}:${port}`;
-  if (!(await answering(where, server))) return;
+  if (dev) startVite(host, port, localAddress(host, own));
+  if (!(await answering(localAddress(host, own), server)) || (dev && !(await answering(where, server)))) return;
   lock?.note({ address: process.env.PUBLIC_URL || where });
   say(`Gaugewright is ready: ${process.env.PUBLIC_URL || where}\nCtrl-C stops it.`);
 }

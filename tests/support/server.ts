@@ -58,6 +58,7 @@ export async function startServer(options: ServerOptions = {}): Promise<RunningS
         PORT: String(port),
         PUBLIC_URL: url,
         SESSION_SECRET: 'a secret for tests, of thirty-two letters or more',
+        FAKES: 'github,mail',
         ...options.settings,
       },
       stdio: ['ignore', 'pipe', 'pipe'],
