@@ -1,0 +1,419 @@
+import type { Hamiltonian } from '../hamiltonian.ts';
+import type { Kernel, Vector } from '../kernel/kernel.ts';
+import { hermitianEigen, symmetricEigen } from './dense.ts';
+import { fillSeeded, newWindow, orthogonalise, type Window } from './window.ts';
+
+/**
+ * Lowest levels by a banded, thick-restart Lanczos method with locking (K. Wu, H. Simon, SIAM J. Matrix Anal. Appl. 22,
+ * 602 (2000); bands: A. Ruhe, Math. Comp. 33, 680 (1979)). The window is kept orthonormal in full.
+ *
+ * Multiplicities: a Krylov space with b random start vectors holds min(b, m) copies of an m-fold level. So a level that
+ * was found fewer than b times is complete; else new starts, orthogonal to all that is locked, look for more copies until
+ * the rest of the space is seen to lie higher.
+ */
+export interface LowestRequest {
+  /** Levels wanted, with multiplicity. */
+  readonly count: number;
+  /** At most so many more are computed to complete the last multiplet. */
+  readonly extra: number;
+  /** Residual bound to reach, relative to the largest level seen. */
+  readonly tolerance: number;
+  /** Levels closer than this (relative to the same scale) are one multiplet. */
+  readonly degenerate: number;
+  /** Vectors that may be held, window and locked ones together. */
+  readonly vectors: number;
+  /** Products with H after which the search gives up. */
+  readonly products: number;
+}
+
+export interface Lowest {
+  /** Ascending. */
+  readonly energies: Float64Array;
+  /** ‖H v − E v‖ of each, in the unit of the energies: some level lies that near. */
+  readonly residuals: Float64Array;
+  readonly vectors: readonly Vector[];
+  /** True if all copies of every level listed are there (up to the rule above). */
+  readonly complete: boolean;
+  readonly converged: boolean;
+  readonly products: number;
+  /** Largest |level| seen: what the tolerances are relative to. */
+  readonly scale: number;
+}
+
+interface Locked {
+  readonly energy: number;
+  readonly residual: number;
+  readonly vector: Vector;
+}
+
+/** Products before which no run is believed to have seen the low end. */
+const leastSteps = 12;
+
+/** Start vectors of one run: few for one level, more where several levels may fall together. */
+const startWidth = (count: number): number => (count <= 2 ? 2 : 3);
+
+/** Yields the number of products done. The vectors returned belong to the caller, who releases them. */
+export function* lowestLevels(h: Hamiltonian, request: LowestRequest, kernel: Kernel): Generator<number, Lowest> {
+  const window = newWindow(kernel, h.dimension, h.real);
+  const search = new Search(h, request, kernel, window);
+  let finished = false;
+  try {
+    for (let run = 0; ; run++) {
+      const verdict = yield* search.run(run);
+      if (verdict === 'again') continue;
+      finished = true;
+      return search.finish(verdict === 'done');
+    }
+  } finally {
+    // Stopped from outside, or out of memory.
+    if (!finished) search.locked.forEach((l) => kernel.release(l.vector));
+  }
+}
+
+class Search {
+  readonly locked: Locked[] = [];
+  products = 0;
+  private readonly h: Hamiltonian;
+  private readonly request: LowestRequest;
+  private readonly kernel: Kernel;
+  private readonly window: Window;
+  /** Largest |level| seen: the unit of tolerances. */
+  private scale = 0;
+  private complete = false;
+  /** A level that belongs to the last multiplet was left out, because there are too many. */
+  private cut = false;
+
+  constructor(h: Hamiltonian, request: LowestRequest, kernel: Kernel, window: Window) {
+    this.h = h;
+    this.request = request;
+    this.kernel = kernel;
+    this.window = window;
+  }
+
+  /** Energy up to which levels are wanted: the last wanted one and its multiplet; infinite while too few are known. */
+  private wantedUpTo(): number {
+    const { count, degenerate } = this.request;
+    if (this.locked.length < count) return Infinity;
+    const sorted = this.locked.map((l) => l.energy).sort((a, b) => a - b);
+    return (sorted[count - 1] ?? Infinity) + degenerate * this.scale;
+  }
+
+  private full(): boolean {
+    return this.locked.length >= this.request.count + this.request.extra || this.locked.length >= this.h.dimension;
+  }
+
+  /** One Krylov space from fresh starts. Says whether to start another, or that all is found, or that the steps ran out. */
+  *run(run: number): Generator<number, 'again' | 'done' | 'exhausted'> {
+    const width = Math.min(startWidth(this.request.count), this.h.dimension - this.locked.length);
+    const band = new Band(
+      this.h,
+      this.kernel,
+      this.window,
+      this.locked.map((l) => l.vector),
+      this.windowSize(),
+    );
+    const found: number[] = [];
+    try {
+      band.start(width, run);
+      for (;;) {
+        if (this.products >= this.request.products) return 'exhausted';
+        const ended = band.step();
+        this.products++;
+        yield this.products;
+        if (!ended && !band.isFull() && band.done % 4 !== 0) continue;
+        const ritz = band.ritz();
+        this.scale = Math.max(
+          this.scale,
+          ...[ritz.values[0], ritz.values[ritz.values.length - 1]].map((v) => Math.abs(v ?? 0)),
+          1e-300,
+        );
+        const taken = this.take(band, ritz, ended, found);
+        if (taken === 'finished') return this.judge(found, width);
+        if (ended) return this.locked.length >= this.h.dimension ? this.judge([], width) : 'again';
+        if (band.isFull()) band.restart(band.ritz(), this.keep(band));
+      }
+    } finally {
+      band.release();
+    }
+  }
+
+  /** Vectors for the window beside those locked already. */
+  private windowSize(): number {
+    const { count, extra, vectors } = this.request;
+    const comfortable = Math.max(24, 2 * Math.min(count, 40) + 12);
+    const room = vectors - 1 - Math.min(this.locked.length, count + extra);
+    return Math.max(6, Math.min(comfortable, room));
+  }
+
+  private keep(band: Band): number {
+    const missing = Math.max(1, this.request.count - this.locked.length);
+    return Math.max(1, Math.min(Math.max(missing + 3, Math.floor(band.done / 2)), band.done - 2));
+  }
+
+  /**
+   * Locks what has converged at the low end. Finished when the lowest level left is known to lie above all that is wanted.
+   * Levels are locked from below without gaps, so that none is overlooked beneath a locked one of this run.
+   */
+  private take(band: Band, ritz: Ritz, ended: boolean, found: number[]): 'finished' | 'more' {
+    const bound = this.request.tolerance * this.scale;
+    let k = 0;
+    const chosen: number[] = [];
+    const known = this.locked.map((l) => l.energy);
+    const limit = () => {
+      const sorted = [...known, ...chosen.map((c) => ritz.values[c] ?? 0)].sort((a, b) => a - b);
+      const last = sorted[this.request.count - 1];
+      return last === undefined ? Infinity : last + this.request.degenerate * this.scale;
+    };
+    let above = false;
+    for (; k < ritz.values.length; k++) {
+      const value = ritz.values[k] ?? 0;
+      const residual = ritz.residuals[k] ?? 0;
+      if (this.liesAbove(value - limit(), residual) && (ended || band.done >= leastSteps)) {
+        above = true;
+        break;
+      }
+      if (!(residual <= bound) || value > limit()) break;
+      if (known.length + chosen.length >= this.request.count + this.request.extra) {
+        this.cut = true;
+        above = true;
+        break;
+      }
+      chosen.push(k);
+    }
+    const all = ended && k === ritz.values.length;
+    // Locking costs a rotation of the window: wait until it ends the run, or until a restart is due anyway.
+    if (!(above || all || ended || band.isFull()) || chosen.length === 0) return above ? 'finished' : 'more';
+    const taken = band.lock(ritz, chosen);
+    for (const one of taken) {
+      this.locked.push(one);
+      found.push(one.energy);
+    }
+    return above ? 'finished' : 'more';
+  }
+
+  /**
+   * Is nothing left below a Ritz value that stands by `distance` above what is wanted? Its residual alone says only that a
+   * level is near it; a lower one that the start vectors nearly miss would mix into it and show as a residual of the order
+   * of the distance. A tenth leaves such a mixture a weight below a hundredth.
+   */
+  private liesAbove(distance: number, residual: number): boolean {
+    return distance > 0 && residual <= 0.1 * distance && residual <= 1e-2 * this.scale;
+  }
+
+  /** After a run that reached the end of what is wanted: is every level complete? */
+  private judge(found: readonly number[], width: number): 'again' | 'done' {
+    const limit = this.wantedUpTo();
+    const near = this.request.degenerate * this.scale;
+    const suspect = found.filter((e) => e <= limit && found.filter((f) => Math.abs(f - e) <= near).length >= width);
+    if (this.locked.length >= this.h.dimension) this.complete = true;
+    else if (this.cut || (this.full() && suspect.length > 0)) this.complete = false;
+    else if (suspect.length > 0 || this.locked.length < this.request.count) return 'again';
+    else this.complete = true;
+    return 'done';
+  }
+
+  finish(converged: boolean): Lowest {
+    const limit = this.wantedUpTo();
+    const sorted = [...this.locked].sort((a, b) => a.energy - b.energy);
+    const listed = sorted.filter((l) => l.energy <= limit);
+    sorted.slice(listed.length).forEach((l) => this.kernel.release(l.vector));
+    return {
+      energies: Float64Array.from(listed, (l) => l.energy),
+      residuals: this.residuals(listed),
+      vectors: listed.map((l) => l.vector),
+      complete: this.complete,
+      converged,
+      products: this.products,
+      scale: this.scale,
+    };
+  }
+
+  /** ‖H v − E v‖, computed anew: what the iteration believed is not the evidence. */
+  private residuals(listed: readonly Locked[]): Float64Array {
+    const w = this.window.make();
+    const out = Float64Array.from(listed, (l) => {
+      this.h.apply(l.vector, w);
+      this.kernel.axpy(-l.energy, l.vector, w);
+      return this.window.norm(w);
+    });
+    this.kernel.release(w);
+    return out;
+  }
+}
+
+interface Ritz {
+  /** Ascending. */
+  readonly values: Float64Array;
+  readonly residuals: Float64Array;
+  /** Row j: coefficients of Ritz vector j in the first `done` vectors. */
+  readonly re: Float64Array;
+  readonly im: Float64Array;
+}
+
+/** The window of one run: `done` vectors that H has been applied to, and after them the pending ones. */
+class Band {
+  done = 0;
+  private readonly h: Hamiltonian;
+  private readonly kernel: Kernel;
+  private readonly window: Window;
+  private readonly outside: Vector[];
+  private readonly size: number;
+  private vectors: Vector[] = [];
+  /** Projected matrix, (capacity × capacity), lower and upper part both kept. */
+  private readonly capacity: number;
+  private re: Float64Array;
+  private im: Float64Array;
+
+  constructor(h: Hamiltonian, kernel: Kernel, window: Window, outside: readonly Vector[], size: number) {
+    this.h = h;
+    this.kernel = kernel;
+    this.window = window;
+    this.outside = [...outside];
+    this.size = Math.min(size, h.dimension + 1);
+    this.capacity = this.size + 8;
+    this.re = new Float64Array(this.capacity * this.capacity);
+    this.im = new Float64Array(this.capacity * this.capacity);
+  }
+
+  isFull(): boolean {
+    return this.vectors.length >= this.size;
+  }
+
+  /** Random orthonormal start vectors; fewer where the space is too small. */
+  start(width: number, run: number): void {
+    for (let k = 0; k < width; k++) {
+      const w = this.window.make();
+      fillSeeded(w, 1 + 31 * run + k);
+      const before = this.window.norm(w);
+      const { norm } = orthogonalise(this.window, [...this.outside, ...this.vectors], w);
+      if (norm > 1e-10 * before) this.push(w, norm);
+      else this.kernel.release(w);
+    }
+  }
+
+  private push(w: Vector, norm: number): void {
+    this.kernel.scale(1 / norm, w);
+    this.vectors.push(w);
+  }
+
+  /** Applies H to the next pending vector. True when no pending vector is left: the window is closed under H. */
+  step(): boolean {
+    const v = this.vectors[this.done];
+    if (!v) return true;
+    const w = this.window.make();
+    this.h.apply(v, w);
+    const size = this.window.norm(w);
+    const others = [...this.vectors, ...this.outside];
+    const { c, norm } = orthogonalise(this.window, others, w);
+    for (let k = 0; k < this.vectors.length; k++) this.put(k, this.done, c[0][k] ?? 0, c[1][k] ?? 0);
+    // What rounding leaves of a vector inside the window is no new direction.
+    if (norm > 1e-13 * Math.max(size, this.largest())) {
+      this.push(w, norm);
+      this.put(this.vectors.length - 1, this.done, norm, 0);
+    } else this.kernel.release(w);
+    this.done++;
+    return this.done === this.vectors.length;
+  }
+
+  private largest(): number {
+    let most = 0;
+    for (let k = 0; k < this.done; k++) most = Math.max(most, Math.abs(this.re[k * this.capacity + k] ?? 0));
+    return most;
+  }
+
+  private put(row: number, column: number, re: number, im: number): void {
+    this.re[row * this.capacity + column] = re;
+    this.im[row * this.capacity + column] = im;
+    this.re[column * this.capacity + row] = re;
+    this.im[column * this.capacity + row] = row === column ? 0 : -im;
+  }
+
+  ritz(): Ritz {
+    const n = this.done;
+    const cut = (from: Float64Array) => {
+      const out = new Float64Array(n * n);
+      for (let r = 0; r < n; r++) out.set(from.subarray(r * this.capacity, r * this.capacity + n), r * n);
+      return out;
+    };
+    const eigen = this.window.real
+      ? symmetricEigen(cut(this.re), n, true)
+      : hermitianEigen(cut(this.re), cut(this.im), n, true);
+    const re = eigen.vectors ?? new Float64Array(n * n);
+    const im = eigen.imaginary ?? new Float64Array(n * n);
+    const residuals = new Float64Array(n);
+    for (let j = 0; j < n; j++)
+      residuals[j] = Math.sqrt(this.tail(re, im, j, n).reduce((sum, [a, b]) => sum + a * a + b * b, 0));
+    return { values: eigen.values, residuals, re, im };
+  }
+
+  /** Couplings of Ritz vector j to the pending vectors. */
+  private tail(re: Float64Array, im: Float64Array, j: number, n: number): [number, number][] {
+    const out: [number, number][] = [];
+    for (let p = n; p < this.vectors.length; p++) {
+      let [a, b] = [0, 0];
+      for (let k = 0; k < n; k++) {
+        const [tr, ti] = [this.re[p * this.capacity + k] ?? 0, this.im[p * this.capacity + k] ?? 0];
+        const [yr, yi] = [re[j * n + k] ?? 0, im[j * n + k] ?? 0];
+        a += tr * yr - ti * yi;
+        b += tr * yi + ti * yr;
+      }
+      out.push([a, b]);
+    }
+    return out;
+  }
+
+  /** Goes on with the Ritz vectors listed (default: the lowest `keep`) and the pending vectors; the others are given up. */
+  restart(ritz: Ritz, keep: number, rows = Array.from({ length: keep }, (_, k) => k)): void {
+    const n = this.done;
+    const columns = rows.length;
+    const re = new Float64Array(n * columns);
+    const im = new Float64Array(n * columns);
+    rows.forEach((row, j) => {
+      for (let k = 0; k < n; k++) {
+        re[k * columns + j] = ritz.re[row * n + k] ?? 0;
+        im[k * columns + j] = ritz.im[row * n + k] ?? 0;
+      }
+    });
+    const tails = rows.map((row) => this.tail(ritz.re, ritz.im, row, n));
+    this.window.rotate(this.vectors.slice(0, n), re, im, columns);
+    this.vectors.slice(columns, n).forEach((v) => this.kernel.release(v));
+    this.vectors = [...this.vectors.slice(0, columns), ...this.vectors.slice(n)];
+    this.done = columns;
+    this.re.fill(0);
+    this.im.fill(0);
+    rows.forEach((row, j) => {
+      this.put(j, j, ritz.values[row] ?? 0, 0);
+      tails[j]?.forEach(([a, b], p) => this.put(columns + p, j, a, b));
+    });
+  }
+
+  /** Takes converged Ritz vectors out of the window; later vectors stay orthogonal to them. */
+  lock(ritz: Ritz, chosen: readonly number[]): Locked[] {
+    const others = Array.from(ritz.values.keys()).filter((k) => !chosen.includes(k));
+    const keep = others.slice(0, Math.max(0, Math.min(others.length, Math.floor(this.size / 2))));
+    this.restart(ritz, 0, [...chosen, ...keep]);
+    const taken = this.vectors.slice(0, chosen.length);
+    this.vectors = this.vectors.slice(chosen.length);
+    this.done -= chosen.length;
+    this.shiftMatrix(chosen.length);
+    this.outside.push(...taken);
+    return chosen.map((k, j) => ({ energy: ritz.values[k] ?? 0, residual: ritz.residuals[k] ?? 0, vector: taken[j]! }));
+  }
+
+  private shiftMatrix(by: number): void {
+    const shift = (from: Float64Array) => {
+      const out = new Float64Array(from.length);
+      for (let r = 0; r + by < this.capacity; r++) {
+        out.set(from.subarray((r + by) * this.capacity + by, (r + by + 1) * this.capacity), r * this.capacity);
+      }
+      return out;
+    };
+    this.re = shift(this.re);
+    this.im = shift(this.im);
+  }
+
+  release(): void {
+    this.vectors.forEach((v) => this.kernel.release(v));
+    this.vectors = [];
+  }
+}
