@@ -97,8 +97,10 @@ export function stateFolder() {
   const home = process.env.XDG_STATE_HOME || join(homedir(), '.local', 'state');
   const outside = join(isRoot() ? '/var/lib' : home, 'gaugewright', name);
   const fits = canWrite(root) && (!isRoot() || installations().length === 0 || canEnter(root, runner()));
-  const folder = fits && !existsSync(join(outside, 'pg')) ? inside : outside;
+  const folder = fits ? inside : outside;
   mkdirSync(folder, { recursive: true });
+  // A strict umask would close it to the database's account, which has to pass through.
+  if (isRoot()) for (const path of fits ? [folder] : [join(folder, '..'), folder]) chmodSync(path, 0o711);
   return folder;
 }
 
