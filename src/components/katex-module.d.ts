@@ -1,0 +1,3 @@
+declare module 'katex/dist/katex.mjs' {
+  export { default } from 'katex';
+}

@@ -1,0 +1,158 @@
+import { cellPoint, type CellKind, type LatticeFamily } from '../../../shared/lattice/drawing.ts';
+import type { PlateLattice, Support } from './supports.ts';
+
+/** The piece of the lattice that is drawn, in drawing units: x to the right, y downwards. */
+
+export interface Point {
+  readonly x: number;
+  readonly y: number;
+}
+
+/** Range of unit cells drawn in each direction, both ends included. */
+export type Window = readonly (readonly [number, number])[];
+
+export interface Frame {
+  readonly window: Window;
+  readonly links: readonly { readonly from: Point; readonly to: Point; readonly outside: boolean }[];
+  readonly vertices: readonly Point[];
+  readonly box: { readonly x: number; readonly y: number; readonly width: number; readonly height: number };
+}
+
+/** Where the cell of a class in a unit cell stands; drawing has y upwards, the page downwards. */
+export function pointOf(family: LatticeFamily, kind: CellKind, index: number, offset: readonly number[]): Point {
+  const [x, y] = cellPoint(family, { kind, index, offset });
+  return { x, y: -y };
+}
+
+/** Fewest and most unit cells drawn, by dimension, along each direction. */
+const least: Readonly<Record<number, readonly number[]>> = { 1: [7], 2: [5, 3], 3: [3, 2, 2] };
+const most: Readonly<Record<number, readonly number[]>> = { 1: [14], 2: [8, 5], 3: [4, 3, 3] };
+
+/** A window about the support, at least wide enough to see the lattice repeat. */
+export function windowAbout(family: LatticeFamily, supports: readonly Support[]): Window {
+  return Array.from({ length: family.dimension }, (_, d) => {
+    const at = supports.flatMap((support) => support.sites.map((site) => site.offset[d] ?? 0));
+    const low = at.length > 0 ? Math.min(...at) : 0;
+    const high = at.length > 0 ? Math.max(...at) : 0;
+    const wanted = least[family.dimension]?.[d] ?? 3;
+    const limit = most[family.dimension]?.[d] ?? 4;
+    const spare = Math.max(0, wanted - (high - low + 1));
+    const from = low - Math.floor(spare / 2);
+    return [from, Math.min(Math.max(high, from + wanted - 1), from + limit - 1)] as const;
+  });
+}
+
+function* cellsIn(window: Window, d = 0, at: readonly number[] = []): Generator<readonly number[]> {
+  const range = window[d];
+  if (!range) {
+    yield at;
+    return;
+  }
+  for (let n = range[0]; n <= range[1]; n += 1) yield* cellsIn(window, d + 1, [...at, n]);
+}
+
+const inside = (window: Window, offset: readonly number[]): boolean =>
+  window.every(([low, high], d) => (offset[d] ?? 0) >= low && (offset[d] ?? 0) <= high);
+
+/** Links and vertices of a window. Links that leave it are marked, and drawn as the hint that the lattice goes on. */
+export function frameOf(family: LatticeFamily, window: Window): Frame {
+  const cells = [...cellsIn(window)];
+  const links: { from: Point; to: Point; outside: boolean }[] = [];
+  for (const cell of [...cellsIn(window.map(([low, high]) => [low - 1, high + 1] as const))])
+    for (const link of family.links) {
+      const ends = [link.a, link.b].map((end) => end.offset.map((c, d) => c + (cell[d] ?? 0)));
+      const [a = [], b = []] = ends;
+      const within = [inside(window, a), inside(window, b)];
+      if (!within[0] && !within[1]) continue;
+      const from = pointOf(family, 'vertices', link.a.index, a);
+      const to = pointOf(family, 'vertices', link.b.index, b);
+      // A link that leaves is cut at half its length, drawn from the end that is inside.
+      const half = { x: (from.x + to.x) / 2, y: (from.y + to.y) / 2 };
+      if (within[0] && within[1]) links.push({ from, to, outside: false });
+      else links.push({ from: within[0] ? from : to, to: half, outside: true });
+    }
+  const vertices = cells.flatMap((cell) => family.vertices.map((_, index) => pointOf(family, 'vertices', index, cell)));
+  const points = [...vertices, ...links.map((link) => link.to)];
+  const xs = points.map((point) => point.x);
+  const ys = points.map((point) => point.y);
+  const pad = 0.35;
+  const x = Math.min(...xs) - pad;
+  const y = Math.min(...ys) - pad;
+  return {
+    window,
+    links,
+    vertices,
+    box: { x, y, width: Math.max(...xs) + pad - x, height: Math.max(...ys) + pad - y },
+  };
+}
+
+/** Points of a class in a window. */
+export const pointsIn = (family: LatticeFamily, window: Window, kind: CellKind, index: number): readonly Point[] =>
+  [...cellsIn(window)].map((cell) => pointOf(family, kind, index, cell));
+
+/** A support as points with their marks; repeated strings fill the window, the representative first. */
+export interface Drawn {
+  readonly at: Point;
+  readonly pauli: 'x' | 'y' | 'z';
+  /** Angle of the link it stands on, in degrees; 0 elsewhere. The bar of X lies across it. */
+  readonly angle: number;
+  readonly species: string;
+}
+
+export function drawnOf(family: LatticeFamily, window: Window, supports: readonly Support[]): readonly Drawn[] {
+  const drawn = new Map<string, Drawn>();
+  for (const support of supports)
+    for (const shift of shiftsIn(window, support.repeats))
+      for (const site of support.sites) {
+        const offset = site.offset.map((c, d) => c + (shift[d] ?? 0));
+        if (shift.some((n) => n !== 0) && !inside(window, offset)) continue;
+        const at = pointOf(family, site.kind, site.index, offset);
+        const key = [at.x.toFixed(4), at.y.toFixed(4), site.pauli, site.species].join(' ');
+        drawn.set(key, { at, pauli: site.pauli, species: site.species, angle: angleOf(family, site.kind, site.index) });
+      }
+  return [...drawn.values()];
+}
+
+function angleOf(family: LatticeFamily, kind: CellKind, index: number): number {
+  const link = kind === 'links' ? family.links[index] : undefined;
+  if (!link) return 0;
+  const a = pointOf(family, 'vertices', link.a.index, link.a.offset);
+  const b = pointOf(family, 'vertices', link.b.index, link.b.offset);
+  return (Math.atan2(b.y - a.y, b.x - a.x) * 180) / Math.PI;
+}
+
+function* shiftsIn(window: Window, repeats: readonly number[]): Generator<readonly number[]> {
+  const ranges = window.map(([low, high], d) => {
+    const step = repeats[d] ?? 0;
+    if (step <= 0) return [0];
+    const reach = Math.ceil((high - low + 1) / step) + 1;
+    return Array.from({ length: 2 * reach + 1 }, (_, k) => (k - reach) * step);
+  });
+  const combine = function* (d: number, at: readonly number[]): Generator<readonly number[]> {
+    const range = ranges[d];
+    if (!range) yield at;
+    else for (const n of range) yield* combine(d + 1, [...at, n]);
+  };
+  yield* combine(0, []);
+}
+
+/** "4 × 4 torus", "open chain of 8", "torus (2, 2), (1, −2)". */
+export function sizeInWords(lattice: PlateLattice): string {
+  const rows = lattice.periods;
+  const straight = rows.every((row, d) => row.every((c, k) => k === d || c === 0));
+  if (!straight) return `${lattice.boundary} ${rows.map((row) => `(${row.join(', ')})`).join(', ')}`.replace(/-/g, '−');
+  return `${rows.map((row, d) => String(row[d] ?? 0)).join(' × ')} ${lattice.boundary}`;
+}
+
+/** Hint that a support does not fit a small torus as it is drawn: a period shorter than its extent wraps it onto itself. */
+export function wraps(lattice: PlateLattice, supports: readonly Support[]): boolean {
+  if (lattice.boundary === 'open') return false;
+  return supports.some((support) =>
+    lattice.periods.some((row, d) => {
+      const period = Math.abs(row[d] ?? 0);
+      const at = support.sites.map((site) => site.offset[d] ?? 0);
+      const straight = row.every((c, k) => k === d || c === 0);
+      return straight && (support.repeats[d] ?? 0) === 0 && at.length > 0 && Math.max(...at) - Math.min(...at) >= period;
+    }),
+  );
+}

@@ -1,0 +1,167 @@
+import type { CellKind, LatticeFamily } from '../../../shared/lattice/drawing.ts';
+import type { Report } from '../../../shared/contracts/report.ts';
+import type { Hand, Ref } from '../../hand/hand.ts';
+import type { Slice } from '../../reading/slices.ts';
+
+/** What the plate draws: the support of what is in hand, on the lattice of each page. Pure: a reading and a hand in, points out. */
+
+export type PlateLattice = NonNullable<Report['lattice']>;
+
+type Orbit = Slice['models'][number]['value']['terms'][number]['orbit'];
+
+/** One Pauli matrix of the support on the infinite lattice. */
+export interface Site {
+  readonly species: string;
+  /** Kind and number of the class: which cell of a unit cell it stands on. */
+  readonly kind: CellKind;
+  readonly index: number;
+  readonly offset: readonly number[];
+  readonly pauli: 'x' | 'y' | 'z';
+}
+
+const kinds: readonly CellKind[] = ['vertices', 'links', 'plaquettes', 'cubes'];
+
+/** One string of the support, with the directions it is repeated in when it stands for a product over the lattice. */
+export interface Support {
+  readonly sites: readonly Site[];
+  /** Every m-th unit cell in this direction also carries it; 0: it stands here only. */
+  readonly repeats: readonly number[];
+}
+
+/** Class of "links.1", "vertices", "plaquettes.hexagon" in a family; undefined when the family has no such class. */
+export function classOf(family: LatticeFamily, cell: string): { kind: CellKind; index: number } | undefined {
+  const dot = cell.indexOf('.');
+  const word = dot < 0 ? cell : cell.slice(0, dot);
+  const kind = kinds.find((name) => name === word);
+  if (!kind) return undefined;
+  if (dot < 0) return family[kind].length > 0 ? { kind, index: 0 } : undefined;
+  const label = cell.slice(dot + 1);
+  const named = family[kind].findIndex((one) => one.labels.includes(label));
+  const index = named >= 0 ? named : Number(label) - 1;
+  return family[kind][index] ? { kind, index } : undefined;
+}
+
+function sitesOf(family: LatticeFamily, orbit: Orbit): readonly Site[] {
+  return orbit.flatMap((one) => {
+    const found = classOf(family, one.cell);
+    return found ? [{ ...found, species: one.species, offset: one.offset, pauli: one.pauli }] : [];
+  });
+}
+
+/** The supports that a reference of the hand stands for, and its words. */
+export interface Answered {
+  readonly supports: readonly Support[];
+  readonly spoken: string;
+  readonly tex: string;
+}
+
+/** What a reference names, looked up in the slices of the reading; undefined when it is gone. */
+export function lookUp(family: LatticeFamily, slices: readonly Slice[], ref: Ref | null): Answered | undefined {
+  if (ref === null) return undefined;
+  return groupOf(family, slices, ref) ?? ruleOf(family, slices, ref) ?? declared(family, slices, ref);
+}
+
+function groupOf(family: LatticeFamily, slices: readonly Slice[], ref: Ref): Answered | undefined {
+  const slash = ref.lastIndexOf('/');
+  if (slash < 0) return undefined;
+  const model = find(slices, (slice) => slice.models.find((item) => item.value.name === ref.slice(0, slash)));
+  const index = Number(ref.slice(slash + 1));
+  const group = model?.value.groups[index];
+  if (!model || !group) return undefined;
+  const terms = model.value.terms.filter((term) => term.group === index);
+  const supports = terms.map((term) => ({ sites: sitesOf(family, term.orbit), repeats: [] }));
+  return { supports, spoken: group.spoken, tex: group.tex };
+}
+
+function ruleOf(family: LatticeFamily, slices: readonly Slice[], ref: Ref): Answered | undefined {
+  const [name, number, side] = ref.split(':');
+  if (side !== 'left' && side !== 'right') return undefined;
+  const map = find(slices, (slice) => slice.declarations.find((d) => d.value.what === 'map' && d.value.name === name));
+  const rule = map?.value.rules?.[Number(number)];
+  if (!rule) return undefined;
+  const orbit = side === 'left' ? rule.leftOrbit : rule.rightOrbit;
+  return { supports: [{ sites: sitesOf(family, orbit), repeats: [] }], spoken: '', tex: rule[side] };
+}
+
+function declared(family: LatticeFamily, slices: readonly Slice[], ref: Ref): Answered | undefined {
+  const found = find(slices, (slice) => slice.declarations.find((d) => d.value.name === ref))?.value;
+  if (!found) return undefined;
+  // A symmetry is the product over all translates; of a law or operator one is drawn.
+  const whole = found.what === 'symmetry';
+  const supports = found.supports.map((one) => ({
+    sites: sitesOf(family, one.orbit),
+    repeats: whole ? one.steps : [],
+  }));
+  return { supports, spoken: found.spoken, tex: found.tex };
+}
+
+function find<T>(slices: readonly Slice[], pick: (slice: Slice) => T | undefined): T | undefined {
+  for (const slice of slices) {
+    const found = pick(slice);
+    if (found !== undefined) return found;
+  }
+  return undefined;
+}
+
+export interface PlateSide {
+  readonly answered: Answered | undefined;
+  /** Classes of cells that carry a spin on this page. */
+  readonly carriers: readonly { readonly kind: CellKind; readonly index: number }[];
+}
+
+const letters: Readonly<Record<CellKind, string>> = {
+  vertices: 'vertex',
+  links: 'link',
+  plaquettes: 'plaquette',
+  cubes: 'cube',
+};
+
+/** The same as the drawing, in words: "Z of s at vertex (0, 0), Z of s at vertex (1, 0)". */
+export function supportInWords(family: LatticeFamily, supports: readonly Support[]): string {
+  const strings = supports.map((support) => {
+    const sites = support.sites.map((site) => {
+      const classes = family[site.kind];
+      const label = classes.length > 1 ? ` ${classes[site.index]?.labels[0] ?? String(site.index + 1)}` : '';
+      return `${site.pauli.toUpperCase()} of ${site.species} at ${letters[site.kind]}${label} (${site.offset.join(', ')})`;
+    });
+    const repeated = support.repeats.flatMap((step, d) => (step > 0 ? [String(d + 1)] : []));
+    const along = repeated.length > 0 ? `, repeated along direction ${repeated.join(' and ')}` : '';
+    return `${sites.join(', ')}${along}`;
+  });
+  return strings.filter((text) => text !== '').join('; or ');
+}
+
+/** Species of each page, as the cells they stand on: those of the models of that language, else all. */
+export function carriersOf(
+  family: LatticeFamily,
+  lattice: PlateLattice,
+  slices: readonly Slice[],
+  language: 'spin' | 'gauge',
+): PlateSide['carriers'] {
+  const named = slices.flatMap((slice) => slice.models.filter((m) => m.value.language === language));
+  const species = new Set(named.flatMap((m) => m.value.species));
+  const wanted = species.size > 0 ? [...species] : [];
+  const cells = new Set(wanted.map((name) => lattice.species[name]).filter((cell) => cell !== undefined));
+  return [...cells].flatMap((cell) => {
+    if (!cell.includes('.')) {
+      const kind = kinds.find((name) => name === cell);
+      return kind ? family[kind].map((_, index) => ({ kind, index })) : [];
+    }
+    const found = classOf(family, cell);
+    return found ? [found] : [];
+  });
+}
+
+/** Both sides of the plate for a hand. */
+export function plateSides(
+  family: LatticeFamily,
+  lattice: PlateLattice,
+  slices: readonly Slice[],
+  hand: Hand,
+): { readonly left: PlateSide; readonly right: PlateSide } {
+  const side = (ref: Ref | null, language: 'spin' | 'gauge'): PlateSide => ({
+    answered: lookUp(family, slices, ref),
+    carriers: carriersOf(family, lattice, slices, language),
+  });
+  return { left: side(hand.held?.left ?? null, 'spin'), right: side(hand.held?.right ?? null, 'gauge') };
+}

@@ -1,0 +1,50 @@
+import type { Report } from '../../shared/contracts/report.ts';
+import type { Answer } from '../worker/messages.ts';
+import { protocol } from '../worker/messages.ts';
+import { type Placed, type Slice, slicesOf } from './slices.ts';
+
+/** The report in view. A value: each answer makes a new one. */
+export interface Reading {
+  /** Version of the text last sent to the engine, and of the text that `slices` answer; 0 before the first. */
+  readonly asked: number;
+  readonly answered: number;
+  readonly slices: readonly Slice[];
+  /** The last lattice there was: a broken lattice line leaves the plate as it was. */
+  readonly lattice: Report['lattice'];
+  readonly engine: string;
+  /** Why the engine gave no report for the version answered, in words. */
+  readonly failed: string | undefined;
+}
+
+export const unread: Reading = {
+  asked: 0,
+  answered: 0,
+  slices: [],
+  lattice: null,
+  engine: '',
+  failed: undefined,
+};
+
+export const asking = (reading: Reading, version: number): Reading => ({ ...reading, asked: version });
+
+/** Takes an answer for the entries it was asked about. Answers older than what is shown are dropped: late answers lose. */
+export function answering(reading: Reading, answer: Answer, entries: readonly Placed[]): Reading {
+  if (answer.version <= reading.answered) return reading;
+  if (answer.protocol !== protocol)
+    return { ...reading, answered: answer.version, failed: 'The page is older than the engine; load it again.' };
+  if (answer.kind === 'failed') return { ...reading, answered: answer.version, failed: answer.message };
+  const { report } = answer;
+  const lattice = report.lattice ?? (report.problems.length > 0 ? reading.lattice : null);
+  return {
+    ...reading,
+    answered: answer.version,
+    slices: slicesOf(report, entries, reading.slices),
+    lattice: JSON.stringify(lattice) === JSON.stringify(reading.lattice) ? reading.lattice : lattice,
+    engine: report.engine,
+    failed: undefined,
+  };
+}
+
+/** A sealed report (an edition), read as it stands. */
+export const sealed = (report: Report, entries: readonly Placed[]): Reading =>
+  answering(unread, { protocol, version: 1, kind: 'report', report }, entries);

@@ -1,0 +1,76 @@
+import { useEffect, useMemo, useRef, useState } from 'react';
+import { joinEntries } from '../../shared/notebook/text.ts';
+import { ask, type Answer } from '../worker/messages.ts';
+import type { Placed } from './slices.ts';
+import { answering, asking, type Reading, unread } from './state.ts';
+
+export interface EntryText {
+  readonly id: string;
+  readonly kind: 'prose' | 'statements';
+  readonly text: string;
+}
+
+/** The joined text of entries and where each stands in it. Prose stands in it as comments, which the engine skips. */
+export function placed(entries: readonly EntryText[]): { readonly text: string; readonly entries: readonly Placed[] } {
+  const { text, lines } = joinEntries(entries);
+  return {
+    text,
+    entries: entries.map((entry, k) => ({
+      id: entry.id,
+      kind: entry.kind,
+      text: entry.text,
+      first: lines[k]?.first ?? 0,
+      last: lines[k]?.last ?? 0,
+    })),
+  };
+}
+
+/**
+ * The reading of a text that changes: each new text is asked of the engine in its worker, and the newest answer is shown.
+ * A worker that dies is told of in `failed`, and the next text starts a new one.
+ */
+export function useReading(entries: readonly EntryText[]): Reading {
+  const [reading, setReading] = useState<Reading>(unread);
+  const engine = useRef<Worker | null>(null);
+  const version = useRef(0);
+  const asked = useRef(new Map<number, readonly Placed[]>());
+  const source = useMemo(() => placed(entries), [entries]);
+
+  useEffect(() => {
+    const worker = engine.current ?? startEngine();
+    engine.current = worker;
+    version.current += 1;
+    const mine = version.current;
+    asked.current.set(mine, source.entries);
+    const take = (answer: Answer) => {
+      const about = asked.current.get(answer.version);
+      if (!about) return;
+      // A later partial answer for the same version may follow; older versions can be forgotten.
+      for (const old of asked.current.keys()) if (old < answer.version) asked.current.delete(old);
+      setReading((before) => answering(before, answer, about));
+    };
+    worker.onmessage = (event: MessageEvent<Answer>) => take(event.data);
+    worker.onerror = (event) => {
+      event.preventDefault();
+      worker.terminate();
+      if (engine.current === worker) engine.current = null;
+      const message = 'The engine stopped. It starts again with the next change.';
+      take({ protocol: 1, version: version.current, kind: 'failed', message });
+    };
+    setReading((before) => asking(before, mine));
+    worker.postMessage(ask(mine, source.text));
+  }, [source]);
+
+  useEffect(
+    () => () => {
+      engine.current?.terminate();
+      engine.current = null;
+    },
+    [],
+  );
+  return reading;
+}
+
+function startEngine(): Worker {
+  return new Worker(new URL('../worker/worker.ts', import.meta.url), { type: 'module', name: 'engine' });
+}
