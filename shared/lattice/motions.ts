@@ -51,57 +51,50 @@ export function isometries(vectors: readonly (readonly number[])[]): number[][][
   return found.filter((m) => Math.abs(determinant(m)) === 1);
 }
 
-/** Where each vertex class goes if class 0 goes to class `target` in unit cell 0; undefined if some vertex has no place. */
-function vertexImages(
-  family: LatticeFamily,
-  matrix: readonly (readonly number[])[],
-  target: number,
-): Cell[] | undefined {
-  const first = family.vertices[0]!.position;
-  const scale = Math.sqrt(Math.max(...family.vectors.map((v) => dot(v, v))));
-  const taken = new Set<number>();
-  const images: Cell[] = [];
-  for (const vertex of family.vertices) {
-    const apart = vertex.position.map((x, k) => x - first[k]!);
-    const along = fractional(family.vectors, apart);
-    // What of the difference stands off the span of the vectors (a ladder's second rail) stays as it is or changes sign.
-    const off = apart.map((x, k) => x - cartesian(family.vectors, along)[k]!);
-    const spread = cartesian(family.vectors, turned(matrix, along));
-    const found =
-      placeOf(family, target, spread, off, taken, scale) ??
-      placeOf(
-        family,
-        target,
-        spread,
-        off.map((x) => -x),
-        taken,
-        scale,
-      );
-    if (!found) return undefined;
-    taken.add(found.index);
-    images.push(found);
-  }
-  return images;
+/** Positions of the vertices: along the primitive vectors (in unit cells), and what stands off their span (a ladder's second rail). */
+interface Frame {
+  readonly along: readonly (readonly number[])[];
+  readonly off: readonly (readonly number[])[];
+  /** Length of the longest primitive vector. */
+  readonly scale: number;
 }
 
-/** The vertex at a position relative to class `target` in unit cell 0, of a class not yet taken. */
-function placeOf(
-  family: LatticeFamily,
-  target: number,
-  spread: readonly number[],
-  off: readonly number[],
-  taken: ReadonlySet<number>,
-  scale: number,
-): Cell | undefined {
-  const start = family.vertices[target]!.position;
-  for (const [index, vertex] of family.vertices.entries()) {
-    if (taken.has(index)) continue;
-    const apart = start.map((x, k) => x + spread[k]! + off[k]! - vertex.position[k]!);
-    const offset = fractional(family.vectors, apart).map((c) => Math.round(c) + 0);
-    const left = cartesian(family.vectors, offset).map((x, k) => apart[k]! - x);
-    if (Math.sqrt(dot(left, left)) <= 3 * tolerance * scale) return { kind: 'vertices', index, offset };
+function frameOf(family: LatticeFamily): Frame {
+  const along = family.vertices.map((v) => fractional(family.vectors, v.position));
+  const off = family.vertices.map((v, i) => v.position.map((x, k) => x - cartesian(family.vectors, along[i]!)[k]!));
+  return { along, off, scale: Math.sqrt(Math.max(...family.vectors.map((v) => dot(v, v)))) };
+}
+
+/** A candidate: unit cells move by `matrix`, what stands off their span keeps or changes its sign, class 0 goes to class `target`. */
+interface Candidate {
+  readonly matrix: readonly (readonly number[])[];
+  readonly sign: 1 | -1;
+  readonly target: number;
+}
+
+/** Where each vertex class goes; undefined if some vertex finds no place. */
+function vertexImages({ along, off, scale }: Frame, { matrix, sign, target }: Candidate): Cell[] | undefined {
+  const taken = new Set<number>();
+  const images: Cell[] = [];
+  for (let i = 0; i < along.length; i++) {
+    const spread = turned(
+      matrix,
+      along[i]!.map((x, d) => x - along[0]![d]!),
+    );
+    const goal = spread.map((x, d) => x + along[target]![d]!);
+    const goalOff = off[i]!.map((x, k) => off[target]![k]! + sign * (x - off[0]![k]!));
+    const index = along.findIndex(
+      (place, j) =>
+        !taken.has(j) &&
+        place.every((x, d) => Math.abs(goal[d]! - x - Math.round(goal[d]! - x)) <= 3 * tolerance) &&
+        off[j]!.every((x, k) => Math.abs(goalOff[k]! - x) <= 3 * tolerance * scale),
+    );
+    if (index < 0) return undefined;
+    taken.add(index);
+    // "+ 0" turns −0 into 0.
+    images.push({ kind: 'vertices', index, offset: goal.map((x, d) => Math.round(x - along[index]![d]!) + 0) });
   }
-  return undefined;
+  return images;
 }
 
 /** Offset that carries one list of cells, unordered, onto another of the same class; undefined if none does. */
@@ -145,9 +138,11 @@ function liftedImages(
   return images;
 }
 
-function motionOf(family: LatticeFamily, matrix: readonly (readonly number[])[], target: number): Motion | undefined {
-  const vertices = vertexImages(family, matrix, target);
+/** The motion of a candidate, or undefined if boundaries do not go to boundaries. */
+function motionOf(family: LatticeFamily, frame: Frame, candidate: Candidate): Motion | undefined {
+  const vertices = vertexImages(frame, candidate);
   if (!vertices) return undefined;
+  const { matrix } = candidate;
   const images: Record<CellKind, readonly Cell[]> = { vertices, links: [], plaquettes: [], cubes: [] };
   for (const kind of ['links', 'plaquettes', 'cubes'] as const) {
     const below = boundaryKind(kind)!;
@@ -165,17 +160,28 @@ const known = new WeakMap<LatticeFamily, readonly Motion[]>();
 /**
  * The symmetries of a family modulo translations, the identity first: every isometry of the primitive vectors with
  * every place for the first vertex, kept if all cells find their images with boundaries on boundaries. Found by search
- * on the drawn positions, so a lattice drawn askew shows fewer. Derived here.
+ * on the drawn positions, so a lattice drawn askew shows fewer; off the span of the vectors only reflections are tried.
+ * Derived here.
  */
 export function familyMotions(family: LatticeFamily): readonly Motion[] {
   const before = known.get(family);
   if (before) return before;
-  const isIdentity = (m: Motion): boolean =>
-    m.matrix.every((row, d) => row.every((x, k) => x === Number(d === k))) && m.images.vertices[0]!.index === 0;
-  const all = isometries(family.vectors).flatMap((matrix) =>
-    family.vertices.flatMap((_, target) => motionOf(family, matrix, target) ?? []),
+  const frame = frameOf(family);
+  const flat = frame.off.every((o) => o.every((x, k) => Math.abs(x - frame.off[0]![k]!) <= tolerance * frame.scale));
+  const found = isometries(family.vectors).flatMap((matrix) =>
+    family.vertices.flatMap((_, target) =>
+      (flat ? ([1] as const) : ([1, -1] as const)).flatMap((sign) => {
+        const motion = motionOf(family, frame, { matrix, sign, target });
+        return motion ? [motion] : [];
+      }),
+    ),
   );
-  const found = [...all.filter(isIdentity), ...all.filter((m) => !isIdentity(m))];
+  const first = found.findIndex(
+    (m) =>
+      m.matrix.every((row, d) => row.every((x, k) => x === Number(d === k))) &&
+      cellKinds.every((kind) => m.images[kind].every((c, index) => c.index === index)),
+  );
+  if (first > 0) found.unshift(...found.splice(first, 1));
   known.set(family, found);
   return found;
 }

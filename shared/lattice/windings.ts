@@ -1,5 +1,5 @@
 /** Sets of links that run around a lattice: loops, and the cuts that they cross. */
-import { origin, shifted, unit } from './cells.ts';
+import { cellKey, isLatticeProblem, origin, shifted, unit } from './cells.ts';
 import type { Cell, LatticeFamily, LatticeProblem, Offset } from './cells.ts';
 import { incidence } from './incidence.ts';
 import { oddCells } from './family.ts';
@@ -11,12 +11,18 @@ export interface SteppedCell {
   readonly steps: readonly number[];
 }
 
-/** Vertices that a search for a loop may visit. */
-const searchLimit = 100_000;
+/** Vertices that the search for a loop may visit, from all starts together. */
+const searchLimit = 200_000;
 
 const noCycle = (family: LatticeFamily, direction: number): LatticeProblem => ({
   problem: 'direction',
   message: `no closed path of links of ${family.name} leads once around direction ${String(direction)}`,
+  which: `direction ${String(direction)}`,
+});
+
+const tooFar = (direction: number): LatticeProblem => ({
+  problem: 'limit',
+  message: `no closed path around direction ${String(direction)} was found among ${String(searchLimit)} vertices; choose primitive vectors that links join more directly`,
   which: `direction ${String(direction)}`,
 });
 
@@ -52,50 +58,76 @@ function component(family: LatticeFamily, start: number): { reached: Map<number,
   return { reached, windings: hermite(windings.length > 0 ? windings : [[...origin(family.dimension)]]) };
 }
 
-/** Links of a shortest path from vertex `start` in unit cell 0 to its translate by `by`; breadth first, in the order of the star. */
-function shortestPath(family: LatticeFamily, start: number, by: Offset): Cell[] | undefined {
+interface Visit {
+  readonly vertex: Cell;
+  readonly length: number;
+  readonly link: Cell | undefined;
+  readonly from: Visit | undefined;
+}
+
+const linksTo = (last: Visit): Cell[] => {
+  const path: Cell[] = [];
+  for (let back: Visit | undefined = last; back?.link; back = back.from) path.push(back.link);
+  return path.reverse();
+};
+
+/**
+ * Links of a shortest path from vertex class `start` in unit cell 0 to its translate by `by`, breadth first in the order
+ * of the star; undefined if none is shorter than `below`. Takes its visits from `left`, and gives up when none are left.
+ */
+function shortestPath(
+  family: LatticeFamily,
+  start: number,
+  by: Offset,
+  below: number,
+  left: { visits: number },
+): Cell[] | undefined {
   const { star, neighbours } = incidence(family);
-  const key = (index: number, offset: Offset): string => `${String(index)}@${offset.join(',')}`;
-  const goal = key(start, by);
-  interface Visit {
-    readonly vertex: { readonly index: number; readonly offset: Offset };
-    readonly link: Cell | undefined;
-    readonly from: Visit | undefined;
-  }
-  const queue: Visit[] = [
-    { vertex: { index: start, offset: origin(family.dimension) }, link: undefined, from: undefined },
-  ];
-  const seen = new Set([key(start, origin(family.dimension))]);
-  for (let at = 0; at < queue.length && at < searchLimit; at++) {
+  const from: Cell = { kind: 'vertices', index: start, offset: origin(family.dimension) };
+  const goal = cellKey(shifted(from, by));
+  const queue: Visit[] = [{ vertex: from, length: 0, link: undefined, from: undefined }];
+  const seen = new Set([cellKey(from)]);
+  for (let at = 0; at < queue.length; at++) {
     const visit = queue[at]!;
-    const links = star[visit.vertex.index]!;
+    if (visit.length + 1 >= below || left.visits-- <= 0) return undefined;
     for (const [k, far] of neighbours[visit.vertex.index]!.entries()) {
       const vertex = shifted(far, visit.vertex.offset);
-      const name = key(vertex.index, vertex.offset);
+      const name = cellKey(vertex);
       if (seen.has(name)) continue;
       seen.add(name);
-      const step: Visit = { vertex, link: shifted(links[k]!, visit.vertex.offset), from: visit };
-      if (name === goal) {
-        const path: Cell[] = [];
-        for (let back: Visit = step; back.link && back.from; back = back.from) path.push(back.link);
-        return path.reverse();
-      }
-      queue.push(step);
+      const link = shifted(star[visit.vertex.index]![k]!, visit.vertex.offset);
+      const next: Visit = { vertex, length: visit.length + 1, link, from: visit };
+      if (name === goal) return linksTo(next);
+      queue.push(next);
     }
   }
   return undefined;
 }
 
-/** The vertex class on a shortest closed path around a direction (from 0), and the links of that path from unit cell 0 on. */
-function shortestLoop(family: LatticeFamily, d: number): { start: number; path: Cell[] } | undefined {
-  const by = unit(family.dimension, d);
-  let best: { start: number; path: Cell[] } | undefined;
-  family.vertices.forEach((_, start) => {
-    if (!inLattice(component(family, start).windings, by)) return;
-    const path = shortestPath(family, start, by);
-    if (path && (!best || path.length < best.path.length)) best = { start, path };
-  });
-  return best;
+interface Loop {
+  readonly start: number;
+  readonly path: readonly Cell[];
+}
+
+const loops = new WeakMap<LatticeFamily, Map<number, Loop | LatticeProblem>>();
+
+/** The vertex class on a shortest closed path around a direction (from 1), and the links of that path from unit cell 0 on. Worked out once. */
+function shortestLoop(family: LatticeFamily, direction: number): Loop | LatticeProblem {
+  const known = loops.get(family) ?? new Map<number, Loop | LatticeProblem>();
+  loops.set(family, known);
+  const before = known.get(direction);
+  if (before) return before;
+  const by = unit(family.dimension, direction - 1);
+  const left = { visits: searchLimit };
+  const starts = family.vertices.flatMap((_, v) => (inLattice(component(family, v).windings, by) ? [v] : []));
+  let best: Loop | undefined;
+  for (const start of starts) {
+    const path = shortestPath(family, start, by, best?.path.length ?? Infinity, left);
+    if (path) best = { start, path };
+  }
+  const found = best ?? (starts.length > 0 ? tooFar(direction) : noCycle(family, direction));
+  known.set(direction, found);
+  return found;
 }
 
 /**
@@ -107,8 +139,8 @@ export function loopLinks(family: LatticeFamily, direction: number): readonly St
   const wrong = directionProblem(family, direction);
   if (wrong) return wrong;
   const d = direction - 1;
-  const found = shortestLoop(family, d);
-  if (!found) return noCycle(family, direction);
+  const found = shortestLoop(family, direction);
+  if (isLatticeProblem(found)) return found;
   const steps = unit(family.dimension, d);
   // A path may pass a link and its translate: over F2 they cancel, so the pair is left out.
   const flat = found.path.map((cell) =>
@@ -200,8 +232,8 @@ export function cutLinks(family: LatticeFamily, direction: number): readonly Ste
   const wrong = directionProblem(family, direction);
   if (wrong) return wrong;
   const d = direction - 1;
-  const loop = shortestLoop(family, d);
-  if (!loop) return noCycle(family, direction);
+  const loop = shortestLoop(family, direction);
+  if (isLatticeProblem(loop)) return loop;
   const vertices = [...component(family, loop.start).reached.keys()].sort((p, q) => p - q);
   const links = family.links.map(({ a, b }) => ({ a: a.index, b: b.index, low: a.offset[d]!, high: b.offset[d]! }));
   const inside = new Set(vertices);

@@ -93,6 +93,29 @@ it('a lattice without symmetry has the identity alone', () => {
   expect(familyMotions(skew)).toHaveLength(1);
 });
 
+it('reflects what stands off the span of the vectors as a whole', () => {
+  const at = (label: string, ...offset: number[]) => ({ label, offset });
+  const rails = family(
+    {
+      vectors: [[1, 0]],
+      vertices: [
+        { label: 'M', position: [0, 0] },
+        { label: 'U', position: [0, 1] },
+        { label: 'L', position: [0, -1] },
+      ],
+      links: [
+        { a: at('M'), b: at('M', 1) },
+        { a: at('M'), b: at('U') },
+        { a: at('M'), b: at('L') },
+      ],
+      plaquettes: [],
+    },
+    'rails',
+  );
+  expect(familyMotions(rails)).toHaveLength(4);
+  expect(familyMotions(rails)[0]!.images.vertices.map((c) => c.index)).toEqual([0, 1, 2]);
+});
+
 describe('motions of clusters', () => {
   const of = (name: string, size: Size, edge: 'torus' | 'cylinder' | 'open' = 'torus') => {
     const found = builtIn(name);
