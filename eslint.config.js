@@ -59,7 +59,14 @@ export const table = {
   'server/db': { may: ['server/rights', 'server/settings', 'shared/contracts'], packages: nodePackages },
   'server/middleware': { may: ['server/db', 'server/settings', 'shared/contracts'], packages: nodePackages },
   'server/evaluation': {
-    may: ['shared/derivation', 'shared/repairs', 'shared/spectra/kernel', 'server/db', 'server/settings'],
+    may: [
+      'shared/derivation',
+      'shared/repairs',
+      'shared/spectra/kernel',
+      'shared/contracts',
+      'server/db',
+      'server/settings',
+    ],
     packages: nodePackages,
   },
   'server/mail': { may: ['server/settings'], packages: nodePackages },
@@ -100,8 +107,10 @@ export const table = {
   'src/routes/guide': { may: [...page, 'src/routes', 'shared/language/reference'], packages: ['*'] },
   'src/App': { may: ['src/routes', ...page], packages: ['*'] },
   'src/main': { may: ['src/App', 'src/api', 'src/components'], packages: ['*'] },
+  'src/worker/messages': { may: ['shared/contracts'] },
   'src/worker': {
     may: [
+      'shared/contracts',
       'shared/derivation',
       'shared/repairs',
       'shared/language/assist',
