@@ -6,6 +6,7 @@ import { phaseCoefficient } from '../pauli/collect.ts';
 import { stringText } from '../pauli/string.ts';
 import type { Extended, Factor, Family, LocalString, Operator, Site, Steps } from '../pauli/types.ts';
 import { bodyKey, fromPauli, identityOn, isIdentity, multiply, pauliPhase, turned } from './string.ts';
+import { sparseFromPauli, type SparseString } from './sparse.ts';
 import type { FiniteModel, FiniteString, SiteTable } from './types.ts';
 
 /** A species on a cluster: its cells are those of the classes listed. */
@@ -104,6 +105,23 @@ export function wrapString(
   const still = needs.map((cell) => moved(cell, by));
   const landed = land(table, cluster, string, still, []);
   return landed && fromPauli(table.sites.length, landed.factors, string.phase);
+}
+
+/** `wrapString` as a sparse string, for clusters of many thousand spins. */
+export function wrapSparse(
+  table: SiteTable,
+  cluster: Cluster,
+  string: LocalString,
+  { needs = [], by = [] }: { readonly needs?: readonly Cell[]; readonly by?: Offset } = {},
+): SparseString | undefined {
+  const landed = land(
+    table,
+    cluster,
+    string,
+    needs.map((cell) => moved(cell, by)),
+    [],
+  );
+  return landed && sparseFromPauli(table.sites.length, landed.factors, string.phase);
 }
 
 /** Lowest and highest offsets of what a translate touches. */

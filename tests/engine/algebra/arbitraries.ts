@@ -46,7 +46,7 @@ export const extendedOf = (reach: number, most: number): fc.Arbitrary<Extended> 
   fc.record({
     phase: fc.constantFrom(0, 1, 2, 3),
     parts: fc.array(partOf(reach, most), { minLength: 1, maxLength: 3 }),
-  }) as fc.Arbitrary<Extended>;
+  });
 
 /** A torus (or open piece) of a built-in lattice with s on vertices and, where there are links, g on them. */
 export function clusterOf(
