@@ -1,4 +1,6 @@
 import type { Claim, Grade } from '../contracts/report.ts';
+import type { AllSizes } from '../algebra/f2/all-sizes.ts';
+import type { Kernel } from '../spectra/kernel/kernel.ts';
 import type { Size } from '../lattice/cells.ts';
 import type { AuditStatement, Values } from '../language/values.ts';
 
@@ -7,7 +9,7 @@ import type { AuditStatement, Values } from '../language/values.ts';
  * Nobody writes a grade: `decide` returns evidence of a kind, and the kind decides (`grades.ts`).
  */
 export type Evidence =
-  | { readonly kind: 'all sizes'; readonly from?: string; readonly proof: unknown }
+  | { readonly kind: 'all sizes'; readonly proof: readonly AllSizes[] }
   | { readonly kind: 'exact on'; readonly sizes: readonly string[] }
   | {
       readonly kind: 'residuals';
@@ -26,6 +28,8 @@ export interface Finding {
   readonly witness?: Readonly<Record<string, unknown>>;
   readonly cautions?: readonly string[];
   readonly sources?: readonly string[];
+  /** Set where the line itself is in error (labels of one sector that clash, a coupling without value): a problem besides. */
+  readonly problem?: string;
 }
 
 /** What answering would take; symbolic questions cost next to nothing. */
@@ -55,6 +59,7 @@ export interface Question {
 }
 
 export interface Means {
+  readonly kernel: Kernel;
   /** Largest cost that is answered here and now; dearer questions stand open with their cost. */
   readonly limit: { readonly operations: number; readonly bytes: number };
 }

@@ -1,0 +1,44 @@
+import type { MapDeclaration, MapValue, Values } from '../language/values.ts';
+import type { Audit, Finding } from './audit.ts';
+import { dictionaryFindings } from './map-dictionary.ts';
+import { openFinding } from './numeric.ts';
+import { cheap, keyOf } from './question.ts';
+
+/** What is claimed of a map, by its kind. */
+type FindingsOf = {
+  readonly [K in MapDeclaration['kind']]?: (
+    value: MapValue,
+    declaration: Extract<MapDeclaration, { kind: K }>,
+    values: Values,
+  ) => readonly Finding[];
+};
+
+const findingsOf: FindingsOf = {
+  dictionary: dictionaryFindings,
+};
+
+function decide(value: MapValue, values: Values): readonly Finding[] {
+  const { declaration } = value;
+  // One entry of the table fits the declaration of its own kind; TypeScript cannot follow the pairing.
+  const find = findingsOf[declaration.kind] as
+    | ((value: MapValue, declaration: MapDeclaration, values: Values) => readonly Finding[])
+    | undefined;
+  return find ? find(value, declaration, values) : [openFinding(value.name, `no audit of a ${declaration.kind} map`)];
+}
+
+export const map: Audit = {
+  name: 'map',
+  help: 'Does a map hold? Commutation kept for every size; product relations and their signs, sectors and dimensions for each size.',
+  example: 'audit map bonds',
+  questions: (statement, values) => [
+    { audit: 'map', statement, values, size: undefined, part: '', key: keyOf(statement, values, '', ['law', 'symmetry']) },
+  ],
+  cost: () => cheap,
+  // eslint-disable-next-line require-yield -- symbolic and exact, answered in one go
+  *decide({ statement, values }) {
+    return statement.subjects.flatMap((subject) => {
+      const value = values.find(subject.name);
+      return value?.what === 'map' ? decide(value, values) : [openFinding(subject.name, `${subject.name} is not a map`)];
+    });
+  },
+};

@@ -1,0 +1,134 @@
+import type { FiniteModel, FiniteString, SiteTable } from '../algebra/finite/types.ts';
+import { isWrapProblem, siteTable, wrapExtended, wrapOperator, wrapOrbit, type SpeciesCells } from '../algebra/finite/wrap.ts';
+import type { Operator } from '../algebra/pauli/types.ts';
+import type { LawValue, MapValue, RuleValue, SectorLabel, Subject, SymmetryValue, Values } from '../language/values.ts';
+import { newCluster, sizeText, type Cluster } from '../lattice/cluster.ts';
+import { isLatticeProblem, type Size } from '../lattice/cells.ts';
+import type { DiagonalRule } from '../spectra/bases/enumerated.ts';
+import { diagonalRules } from './finite-rules.ts';
+import { fitting, Unanswerable } from './unanswerable.ts';
+
+/** A signed Pauli string of a sector on a cluster: in the sector it equals `value`. */
+export interface SectorConstraint {
+  readonly label: string;
+  readonly string: FiniteString;
+  readonly value: 1 | -1;
+}
+
+/** A model in its sector, on one cluster. */
+export interface FiniteSubject {
+  readonly name: string;
+  readonly cluster: Cluster;
+  readonly table: SiteTable;
+  readonly model: FiniteModel;
+  readonly constraints: readonly SectorConstraint[];
+  readonly rules: readonly DiagonalRule[];
+  /** State maps named in the sector: the subspace is their image. */
+  readonly images: readonly MapValue[];
+}
+
+/** The cluster of a size. Throws Unanswerable. */
+export function clusterOf(values: Values, size: Size): Cluster {
+  const { lattice } = values;
+  if (!lattice) throw new Unanswerable('no lattice is declared');
+  const cluster = newCluster(lattice, size);
+  if (isLatticeProblem(cluster)) throw new Unanswerable(cluster.message);
+  return cluster;
+}
+
+/** Species on which an operator acts. */
+export function speciesOfOperator(operator: Operator, into: Set<string>): void {
+  const parts = operator.extended.flatMap((term) => term.extended.parts);
+  for (const { string } of [...operator.families, ...parts]) for (const factor of string.factors) into.add(factor.species);
+}
+
+function speciesOfLabel(values: Values, label: SectorLabel, into: Set<string>): void {
+  const value = values.find(label.name);
+  const add = (strings: readonly { readonly string: { readonly factors: readonly { readonly species: string }[] } }[]): void => {
+    for (const { string } of strings) for (const factor of string.factors) into.add(factor.species);
+  };
+  if (value?.what === 'law') add(value.families);
+  if (value?.what === 'symmetry') add(value.extended.parts);
+  if (value?.what === 'rule') for (const family of value.families) speciesOfOperator(family.operator, into);
+  if (value?.what === 'map') for (const name of value.map.to) into.add(name);
+}
+
+/** Cells of the named species, in the order of their declaration. */
+export function speciesCells(values: Values, names: ReadonlySet<string>): SpeciesCells[] {
+  const all = [...values.all.values()];
+  return all.flatMap((value) =>
+    value.what === 'spins' && names.has(value.name) ? [{ name: value.name, kind: value.kind, classes: value.classes }] : [],
+  );
+}
+
+/** All instances of a law on a cluster, in the order of its classes; what an open edge leaves out is not there. */
+export function lawConstraints(cluster: Cluster, table: SiteTable, law: LawValue, value: 1 | -1 = law.value): SectorConstraint[] {
+  return fitting(`law ${law.name}`, cluster, () =>
+    law.families.flatMap((family) =>
+      wrapOrbit(table, cluster, family).map((string) => ({ label: law.name, string, value })),
+    ),
+  );
+}
+
+/** The one constraint of a symmetry on a cluster. */
+export function symmetryConstraint(cluster: Cluster, table: SiteTable, symmetry: SymmetryValue, value: 1 | -1 = 1): SectorConstraint {
+  const string = fitting(`symmetry ${symmetry.name}`, cluster, () => wrapExtended(table, cluster, symmetry.extended));
+  return { label: symmetry.name, string, value };
+}
+
+interface Labels {
+  readonly constraints: SectorConstraint[];
+  readonly rules: RuleValue[];
+  readonly images: MapValue[];
+}
+
+function resolve(values: Values, cluster: Cluster, table: SiteTable, sector: readonly SectorLabel[]): Labels {
+  const labels: Labels = { constraints: [], rules: [], images: [] };
+  for (const label of sector) {
+    const value = values.find(label.name);
+    if (value?.what === 'law') labels.constraints.push(...lawConstraints(cluster, table, value, label.value));
+    else if (value?.what === 'symmetry') labels.constraints.push(symmetryConstraint(cluster, table, value, label.value));
+    else if (value?.what === 'rule') labels.rules.push(value);
+    else if (value?.what === 'map') labels.images.push(value);
+    else throw new Unanswerable(`${label.name} is not a law, a symmetry, a rule or a state map`, true);
+  }
+  return labels;
+}
+
+/**
+ * The model of a subject on a cluster of the given size, with its sector. A model lives on all spins of the species that
+ * occur in it or in the sector. Throws Unanswerable.
+ */
+export function finiteSubject(values: Values, subject: Subject, size: Size): FiniteSubject {
+  const value = values.find(subject.name);
+  if (value?.what !== 'model' && value?.what !== 'operator') throw new Unanswerable(`${subject.name} is not a model`, true);
+  const cluster = clusterOf(values, size);
+  const names = new Set<string>(value.what === 'model' ? value.species : []);
+  speciesOfOperator(value.operator, names);
+  for (const label of subject.sector) speciesOfLabel(values, label, names);
+  const table = siteTable(cluster, speciesCells(values, names));
+  const model = wrapOperator(table, cluster, value.operator);
+  if (isWrapProblem(model)) throw new Unanswerable(`${subject.name} does not fit on ${sizeText(size)}: ${model.message}`);
+  const { constraints, rules, images } = resolve(values, cluster, table, subject.sector);
+  return {
+    name: subject.name,
+    cluster,
+    table,
+    model,
+    constraints,
+    rules: rules.flatMap((rule) => diagonalRules(cluster, table, rule)),
+    images,
+  };
+}
+
+/** "ising [flip = +1]" as the line has it. */
+export function subjectWords(values: Values, subject: Subject): string {
+  if (subject.sector.length === 0) return subject.name;
+  const labels = subject.sector.map((label) => {
+    const value = values.find(label.name);
+    if (value?.what === 'rule' || value?.what === 'map') return label.name;
+    const sign = label.value ?? (value?.what === 'law' ? value.value : 1);
+    return `${label.name} = ${sign === 1 ? '+1' : '-1'}`;
+  });
+  return `${subject.name} [${labels.join(', ')}]`;
+}
