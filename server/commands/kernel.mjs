@@ -20,7 +20,7 @@ export async function compileKernel() {
   const { error, stderr } = await asc.main([
     join(sources, 'kernel.ts'),
     ...['--outFile', partial, '--optimizeLevel', '3', '--noAssert', '--converge', '--enable', 'simd'],
-    ...['--runtime', 'stub', '--importMemory', '--initialMemory', '1', '--maximumMemory', '4096'],
+    ...['--runtime', 'stub', '--importMemory', '--initialMemory', '1', '--maximumMemory', '65536'],
   ]);
   if (error) {
     rmSync(partial, { force: true });

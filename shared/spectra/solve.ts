@@ -5,7 +5,7 @@ import type { Constraint } from './bases/packed.ts';
 import { qubitSector, type Sector } from './bases/sector.ts';
 import type { Hamiltonian, NumericTerm } from './hamiltonian.ts';
 import type { Kernel, Vector } from './kernel/kernel.ts';
-import { hermitianEigen, symmetricEigen } from './solvers/dense.ts';
+import { hermitianEigen, symmetricEigen, type Eigen } from './solvers/dense.ts';
 import { lowestLevels, type Lowest } from './solvers/lanczos.ts';
 import { multiplets, wholeMultiplets, type Multiplet } from './solvers/levels.ts';
 
@@ -216,7 +216,7 @@ function* solveDense(
   const n = sector.dimension;
   const { re, im } = yield* denseMatrix(h, kernel);
   const wanted = question.vectors === true;
-  const eigen = h.real ? symmetricEigen(re, n, wanted, kernel.tridiagonalise) : hermitianEigen(re, im, n, wanted);
+  const eigen = h.real ? realLevels(re, n, wanted, kernel) : hermitianEigen(re, im, n, wanted);
   const scale = Math.max(Math.abs(eigen.values[0] ?? 0), Math.abs(eigen.values[n - 1] ?? 0));
   const kept = wholeMultiplets(eigen.values, question.levels, tolerances.degenerate * scale);
   const energies = Array.from(eigen.values.subarray(0, kept));
@@ -236,6 +236,15 @@ function* solveDense(
       space: wanted ? space(sector, h.real, vectors, kernel) : undefined,
     },
   };
+}
+
+function realLevels(matrix: Float64Array, n: number, vectors: boolean, kernel: Kernel): Eigen {
+  const space = kernel.sweep?.(n);
+  try {
+    return symmetricEigen(matrix, n, vectors, space);
+  } finally {
+    space?.free();
+  }
 }
 
 /** Columns of H, one product each; row-major, and H is Hermitian. */

@@ -77,6 +77,18 @@ export interface Kernel {
   rotate(vectors: readonly Vector[], matrix: Float64Array, columns: number): void;
   prepareFlips(form: FlipForm): Prepared;
   prepareRows(form: RowForm): Prepared;
-  /** Householder reduction of a real symmetric (n × n) matrix, as solvers/dense describes it; left out, its own loop runs. */
-  tridiagonalise?(matrix: Float64Array, n: number, diagonal: Float64Array, off: Float64Array, taus: Float64Array): void;
+  /** Space and inner loop for the Householder reduction of a real symmetric (n × n) matrix; left out, solvers/dense runs its own. */
+  readonly sweep?: (n: number) => Sweep;
+}
+
+/** Arrays of one reduction (solvers/dense). No vector may be made while it is in use. */
+export interface Sweep {
+  readonly matrix: Float64Array;
+  readonly v: Float64Array;
+  readonly w: Float64Array;
+  readonly u: Float64Array;
+  readonly y: Float64Array;
+  /** From row and column `from` on: lower triangle −= v wᵀ + w vᵀ, then y = matrix × u. */
+  run(from: number): void;
+  free(): void;
 }

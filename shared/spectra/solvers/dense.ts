@@ -1,3 +1,5 @@
+import type { Sweep } from '../kernel/kernel.ts';
+
 /**
  * All levels of a small matrix: Householder reduction to a real tridiagonal matrix, then the implicit QL method
  * (H. Bowdler, R. Martin, C. Reinsch, J. Wilkinson, Numer. Math. 11, 293 (1968); Hermitian reduction as in LAPACK zhetd2).
@@ -11,31 +13,26 @@ export interface Eigen {
   readonly imaginary: Float64Array | undefined;
 }
 
-/** Reduces the lower triangle of a row-major symmetric (n × n) matrix; may be the kernel's own loop. */
-export type Tridiagonalise = (
-  matrix: Float64Array,
-  n: number,
-  diagonal: Float64Array,
-  off: Float64Array,
-  taus: Float64Array,
-) => void;
-
-/** Eigenvalues, and eigenvectors if asked for, of a row-major real symmetric (n × n) matrix; overwrites it. n³ × 4/3 steps. */
+/**
+ * Eigenvalues, and eigenvectors if asked for, of a row-major real symmetric (n × n) matrix; only its lower triangle is
+ * read, and overwritten. 4/3 n³ steps without vectors. `space` lends the arrays and the inner loop of a kernel.
+ */
 export function symmetricEigen(
   matrix: Float64Array,
   n: number,
   vectors: boolean,
-  reduce: Tridiagonalise = tridiagonalise,
+  space: Sweep = plainSweep(matrix, n),
 ): Eigen {
   const diagonal = new Float64Array(n);
   const off = new Float64Array(n);
   const taus = new Float64Array(n);
-  reduce(matrix, n, diagonal, off, taus);
+  if (space.matrix !== matrix) space.matrix.set(matrix);
+  tridiagonalise(space, n, diagonal, off, taus);
   const rows = vectors ? identity(n) : undefined;
   implicitQl(diagonal, off, rows);
   if (rows) {
     for (let j = 0; j < n; j++) {
-      for (let i = n - 2; i >= 0; i--) reflect(rows, j * n, matrix, i * n, i + 1, n, taus[i]!);
+      for (let i = n - 2; i >= 0; i--) reflect(rows, j * n, space.matrix, i * n, i + 1, n, taus[i]!);
     }
   }
   return sorted(diagonal, rows, undefined);
@@ -70,37 +67,18 @@ function identity(n: number): Float64Array {
  * Householder reduction. The update of one step and the product of the next are one sweep over the matrix, so that each
  * entry is fetched once a step. Reflector i stands in row i of the upper triangle, from column i + 1, its first entry 1.
  */
-export const tridiagonalise: Tridiagonalise = (a, n, d, e, taus) => {
-  const v = new Float64Array(n);
-  const w = new Float64Array(n);
-  const u = new Float64Array(n);
-  const y = new Float64Array(n);
+function tridiagonalise(space: Sweep, n: number, d: Float64Array, e: Float64Array, taus: Float64Array): void {
+  const { matrix: a, v, w, u, y } = space;
+  v.fill(0);
+  w.fill(0);
   for (let i = 0; i < n - 1; i++) {
-    if (i > 0) {
-      // Column i must be up to date before its reflector can be made.
-      const [vi, wi] = [v[i]!, w[i]!];
-      for (let r = i; r < n; r++) a[r * n + i] = a[r * n + i]! - v[r]! * wi - w[r]! * vi;
-    }
+    // Column i must be up to date before its reflector can be made.
+    const [vi, wi] = [v[i]!, w[i]!];
+    for (let r = i; r < n; r++) a[r * n + i] = a[r * n + i]! - v[r]! * wi - w[r]! * vi;
     d[i] = a[i * n + i]!;
     const tau = makeReflector(a, n, i, u, e);
     taus[i] = tau;
-    y.fill(0, i + 1);
-    for (let r = i + 1; r < n; r++) {
-      const row = r * n;
-      const vr = i > 0 ? v[r]! : 0;
-      const wr = i > 0 ? w[r]! : 0;
-      const ur = u[r]!;
-      let sum = 0;
-      for (let c = i + 1; c < r; c++) {
-        const value = a[row + c]! - vr * w[c]! - wr * v[c]!;
-        a[row + c] = value;
-        sum += value * u[c]!;
-        y[c] = y[c]! + value * ur;
-      }
-      const value = a[row + r]! - 2 * vr * wr;
-      a[row + r] = value;
-      y[r] = y[r]! + sum + value * ur;
-    }
+    space.run(i + 1);
     let yu = 0;
     for (let r = i + 1; r < n; r++) yu += y[r]! * u[r]!;
     const shift = 0.5 * tau * tau * yu;
@@ -110,11 +88,39 @@ export const tridiagonalise: Tridiagonalise = (a, n, d, e, taus) => {
       a[i * n + r] = u[r]!;
     }
   }
-  if (n > 0) {
-    const last = n - 1;
-    d[last] = a[last * n + last]! - (n > 1 ? 2 * v[last]! * w[last]! : 0);
-  }
-};
+  const last = n - 1;
+  if (n > 0) d[last] = a[last * n + last]! - 2 * v[last]! * w[last]!;
+}
+
+/** The arrays and the loop of `Sweep` without a kernel. */
+function plainSweep(a: Float64Array, n: number): Sweep {
+  const [v, w, u, y] = [new Float64Array(n), new Float64Array(n), new Float64Array(n), new Float64Array(n)];
+  return {
+    matrix: a,
+    v,
+    w,
+    u,
+    y,
+    run(from) {
+      y.fill(0, from);
+      for (let r = from; r < n; r++) {
+        const row = r * n;
+        const [vr, wr, ur] = [v[r]!, w[r]!, u[r]!];
+        let sum = 0;
+        for (let c = from; c < r; c++) {
+          const value = a[row + c]! - vr * w[c]! - wr * v[c]!;
+          a[row + c] = value;
+          sum += value * u[c]!;
+          y[c] = y[c]! + value * ur;
+        }
+        const value = a[row + r]! - 2 * vr * wr;
+        a[row + r] = value;
+        y[r] = y[r]! + sum + value * ur;
+      }
+    },
+    free: () => undefined,
+  };
+}
 
 /** Reflector of column i below the diagonal into u; sets e[i] and returns tau (0: nothing to do). */
 function makeReflector(a: Float64Array, n: number, i: number, u: Float64Array, e: Float64Array): number {
