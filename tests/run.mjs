@@ -39,9 +39,9 @@ async function check(name, ...steps) {
     if (code === 0 && words === steps.at(-1)) say(`${name}: holds (${seconds} s)`);
     if (code === 0) continue;
     say(`${name}: FAILS (${seconds} s)\n${output}`);
-    return { passed: 0, failed: 1 };
+    return { name, passed: 0, failed: 1 };
   }
-  return { passed: 1, failed: 0 };
+  return { name, passed: 1, failed: 0 };
 }
 
 const tool = (path) => join('node_modules', ...path.split('/'));
@@ -53,12 +53,12 @@ async function tests(filters) {
   rmSync(report, { force: true });
   const reporters = ['--reporter=default', '--reporter=json', `--outputFile.json=${report}`];
   const { code } = await run([tool('vitest/vitest.mjs'), 'run', ...reporters, ...filters], { quiet: false });
-  if (!existsSync(report)) return { passed: 0, failed: 1 };
+  if (!existsSync(report)) return { name: 'tests', passed: 0, failed: 1 };
   const { numPassedTests, numFailedTests, testResults } = JSON.parse(readFileSync(report, 'utf8'));
   const unloaded = testResults.filter((file) => file.status === 'failed' && file.assertionResults.length === 0).length;
   const failed = numFailedTests + unloaded;
   // Vitest may also fail as a whole, on an error outside every test: that is a failure too.
-  return { passed: numPassedTests, failed: failed === 0 && code !== 0 ? 1 : failed };
+  return { name: 'tests', passed: numPassedTests, failed: failed === 0 && code !== 0 ? 1 : failed };
 }
 
 function ensureChromium() {
@@ -91,6 +91,8 @@ try {
   }
   results.push(await tests(filters));
   const sum = (key) => results.reduce((total, one) => total + one[key], 0);
+  const broken = results.filter((one) => one.failed > 0).map((one) => one.name);
+  if (broken.length > 0) say(`\nFailed: ${broken.join(', ')}; the reasons stand above.`);
   say(`\n${sum('passed')} passed, ${sum('failed')} failed`);
   process.exitCode = sum('failed') === 0 && sum('passed') > 0 ? 0 : 1;
 } catch (error) {
