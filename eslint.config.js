@@ -89,6 +89,7 @@ export const table = {
     may: ['server/services', 'server/middleware', 'server/live', 'shared/contracts'],
     packages: nodePackages,
   },
+  'server/program': { may: ['server/settings'], packages: nodePackages },
   'server/app': { may: ['server'], packages: nodePackages },
   'server/index': { may: ['server'], packages: nodePackages },
   'server/worker': { may: ['server'], packages: nodePackages },

@@ -101,6 +101,7 @@ CREATE TABLE "editions" (
 	"published_at" timestamp (3) with time zone DEFAULT now() NOT NULL,
 	"status" "edition_status" DEFAULT 'computing' NOT NULL,
 	"reason" text,
+	"attempts" integer DEFAULT 0 NOT NULL,
 	"engine" text,
 	"sealed_at" timestamp (3) with time zone,
 	"report" json,

@@ -43,7 +43,7 @@ export interface Endpoint<P extends z.ZodType, Q extends z.ZodType, B extends z.
 
 const none = z.object({});
 type None = typeof none;
-const silence = z.undefined();
+const silence = z.void();
 
 type Given<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodType, A extends z.ZodType> = Pick<
   Endpoint<P, Q, B, A>,

@@ -163,7 +163,7 @@ export async function reopenEdition(
 ): Promise<string | null> {
   const [row] = await db
     .update(editions)
-    .set({ status: 'computing', reason: null })
+    .set({ status: 'computing', reason: null, attempts: 0 })
     .where(and(thatEdition(standing, number), eq(editions.status, 'failed')))
     .returning({ id: editions.id });
   return row?.id ?? null;
@@ -251,4 +251,14 @@ export async function revokeLink({ db }: Asking, standing: NotebookStanding, id:
     .set({ revokedAt: sql`now()` })
     .where(and(eq(links.id, id), isNull(links.revokedAt), sql`${links.edition} in (${own})`));
   return rowCount === 1;
+}
+
+/** Counts one more attempt at an edition's claims (or takes one back); returns how many there were. */
+export async function countAttempt({ db }: Asking, id: string, by: 1 | -1): Promise<number> {
+  const [row] = await db
+    .update(editions)
+    .set({ attempts: sql`${editions.attempts} + ${by}` })
+    .where(and(eq(editions.id, id), eq(editions.status, 'computing')))
+    .returning({ attempts: editions.attempts });
+  return row?.attempts ?? 0;
 }

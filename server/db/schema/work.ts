@@ -26,6 +26,8 @@ export const editions = pgTable(
     publishedAt: timestamp({ withTimezone: true, precision: 3 }).notNull().defaultNow(),
     status: editionStatus().notNull().default('computing'),
     reason: text(),
+    /** How often the computation of the claims was begun; an engine that ends its process is not asked for ever. */
+    attempts: integer().notNull().default(0),
     engine: text(),
     sealedAt: timestamp({ withTimezone: true, precision: 3 }),
     report: json().$type<Report>(),

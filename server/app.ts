@@ -1,0 +1,129 @@
+import { existsSync, readFileSync } from 'node:fs';
+import { dirname, join } from 'node:path';
+import { fileURLToPath } from 'node:url';
+import express, { type Express, type RequestHandler, Router } from 'express';
+import passport from 'passport';
+import type { Logger } from 'pino';
+import type { Database } from './db/connection.ts';
+import type { FakeGithub } from './fakes/github.ts';
+import type { Live } from './live.ts';
+import { binder } from './middleware/endpoint.ts';
+import { headers, nonceOf, ownPagesOnly, rates } from './middleware/guard.ts';
+import { health, observe } from './middleware/observe.ts';
+import { sessions, whoAsks } from './middleware/person.ts';
+import { nothingHere, problems } from './middleware/problem.ts';
+import { editionRoutes } from './routes/editions.ts';
+import { entryRoutes } from './routes/entries.ts';
+import { liveRoutes } from './routes/live.ts';
+import { notebookRoutes } from './routes/notebooks.ts';
+import { peopleRoutes } from './routes/people.ts';
+import { type GithubAccess, signInRoutes } from './routes/sign-in.ts';
+import type { Context } from './services/context.ts';
+import type { Settings } from './settings.ts';
+
+export interface Parts {
+  readonly settings: Settings;
+  readonly log: Logger;
+  readonly database: Database;
+  readonly live: Live;
+  readonly askForClaims: Context['askForClaims'];
+  /** The stand-in for GitHub, where the settings name it. */
+  readonly fakeGithub: FakeGithub | null;
+}
+
+/** Where the stand-in's page is; under /auth, so that whatever stands in front of the server hands it on. */
+const standInPath = '/auth/stand-in/github';
+/** An imported source in UTF-8, as JSON. */
+const bodyLimit = '5mb';
+
+/** The whole of the web server but its port: guard, person, routes, pages. */
+export function makeApp(parts: Parts): Express {
+  const { settings, log, database, fakeGithub } = parts;
+  const app = express();
+  app.disable('x-powered-by');
+  app.set('trust proxy', settings.trustProxy);
+  app.use(observe(log));
+  app.get('/healthz', health(database));
+  app.use(headers(settings));
+  app.use(answers(parts));
+  if (fakeGithub !== null) app.use(standInPath, fakeGithub.pages);
+  app.use(['/api', '/auth', '/healthz'], nothingHere);
+  app.use(pages());
+  app.use(problems);
+  return app;
+}
+
+/** Everything that knows who asks: the rows of the table, and the sign-in. */
+function answers({ settings, database, live, askForClaims, fakeGithub }: Parts): RequestHandler {
+  const context: Context = { database, askForClaims };
+  const auth = new passport.Passport();
+  const rate = rates(settings);
+  const router = Router();
+  const bind = binder(router, database);
+  const signIn = signInRoutes(bind, context, auth, githubAccess(settings, fakeGithub), settings.publicUrl);
+  peopleRoutes(bind, context);
+  notebookRoutes(bind, context);
+  entryRoutes(bind, context);
+  editionRoutes(bind, context);
+  liveRoutes(bind, live);
+
+  const chain = Router();
+  chain.use(rate.all, ownPagesOnly(settings), sessions(database, settings), whoAsks(database, auth), rate.writing);
+  chain.use('/auth/github', rate.signingIn);
+  chain.use(express.json({ limit: bodyLimit }), signIn, router);
+  // Not mounted: the rows of the table are whole paths.
+  return (request, response, next) => {
+    if (/^\/(api|auth)(\/|$)/.test(request.path)) chain(request, response, next);
+    else next();
+  };
+}
+
+function githubAccess({ github }: Settings, fake: FakeGithub | null): GithubAccess | null {
+  if (github !== null) {
+    const { id, secret, web, api } = github;
+    const oauth = `${web}/login/oauth`;
+    return {
+      id,
+      secret,
+      authorizationUrl: `${oauth}/authorize`,
+      tokenUrl: `${oauth}/access_token`,
+      apiUrl: api,
+      standIn: false,
+    };
+  }
+  if (fake === null) return null;
+  return {
+    id: 'stand-in',
+    secret: 'stand-in',
+    authorizationUrl: `${standInPath}/login/oauth/authorize`,
+    tokenUrl: `${fake.url}/login/oauth/access_token`,
+    apiUrl: fake.url,
+    standIn: true,
+  };
+}
+
+/** dist/client, seen from a bundle in dist/server or from the source in server. */
+function clientFolder(): string {
+  const here = dirname(fileURLToPath(import.meta.url));
+  return import.meta.url.endsWith('.ts') ? join(here, '..', 'dist', 'client') : join(here, '..', 'client');
+}
+
+/** The built client: its files, and for every other address its page, with the answer's nonce in it. */
+function pages(): Router {
+  const folder = clientFolder();
+  const page = join(folder, 'index.html');
+  const router = Router();
+  // Names in assets/ carry a hash of what they hold.
+  const assets = { immutable: true, maxAge: '1y', fallthrough: false, index: false } as const;
+  router.use('/assets', express.static(join(folder, 'assets'), assets));
+  router.use(express.static(folder, { index: false }));
+  router.get('/{*path}', (_request, response) => {
+    response.set('Cache-Control', 'no-store').type('html');
+    if (!existsSync(page)) {
+      response.status(503).send('<!doctype html><title>Gaugewright</title><p>The pages were not built: npm run build.');
+      return;
+    }
+    response.send(readFileSync(page, 'utf8').replaceAll('__CSP_NONCE__', nonceOf(response)));
+  });
+  return router;
+}

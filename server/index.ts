@@ -1,0 +1,82 @@
+import { createServer, type Server } from 'node:http';
+import type { AddressInfo } from 'node:net';
+import type { Logger } from 'pino';
+import { makeApp } from './app.ts';
+import { openDatabase } from './db/connection.ts';
+import { openPool } from './evaluation/pool.ts';
+import { openQueue } from './evaluation/queue.ts';
+import { openFakeGithub } from './fakes/github.ts';
+import { openLive } from './live.ts';
+import { nonceOf } from './middleware/guard.ts';
+import { openLog } from './middleware/observe.ts';
+import { runProgram, type Undo } from './program.ts';
+import { sealEditionJob } from './services/sealing.ts';
+import type { Settings } from './settings.ts';
+
+export interface Running {
+  /** The port that the server listens on. */
+  readonly port: number;
+  readonly stop: () => Promise<void>;
+}
+
+/** Starts the web server. What was opened is closed again, in reverse order, by `stop` or when the start fails. */
+export async function startWeb(settings: Settings, log: Logger = openLog(settings)): Promise<Running> {
+  const undo: Undo = [];
+  const trouble = (error: unknown): void => log.warn({ err: error }, 'trouble in the background');
+  try {
+    const database = openDatabase(settings, trouble);
+    undo.push(database.close);
+    const queue = await openQueue(database, { ...settings.evaluation, supervise: settings.evaluation.here }, trouble);
+    undo.push(queue.close);
+    if (settings.evaluation.here) {
+      const pool = openPool(settings.evaluation);
+      undo.push(pool.close);
+      await queue.work(settings.evaluation.threads, (edition) => sealEditionJob(database, pool, edition));
+    }
+    const live = openLive(database, trouble);
+    const fakeGithub = settings.fakes.includes('github') ? await openFakeGithub(nonceOf) : null;
+    if (fakeGithub !== null) {
+      undo.push(fakeGithub.close);
+      log.warn('a stand-in for GitHub signs people in: anyone can be anyone here');
+    }
+    const app = makeApp({ settings, log, database, live, askForClaims: queue.ask, fakeGithub });
+    const server = createServer(app);
+    await listening(server, settings);
+    undo.push(() => closed(server));
+    // Ends the streams first: a server waits for its open answers.
+    undo.push(live.close);
+    const { port } = server.address() as AddressInfo;
+    log.info({ port }, 'listening');
+    return { port, stop: () => undoAll(undo) };
+  } catch (error) {
+    await undoAll(undo);
+    throw error;
+  }
+}
+
+async function undoAll(undo: Undo): Promise<void> {
+  for (const step of undo.splice(0).reverse()) await step();
+}
+
+function listening(server: Server, { host, port }: Settings): Promise<void> {
+  return new Promise((resolve, reject) => {
+    server.once('error', reject);
+    server.listen(port, host, () => resolve());
+  });
+}
+
+/** How long requests in progress may take to end after the server stopped listening. */
+const graceMs = 3_000;
+
+function closed(server: Server): Promise<void> {
+  return new Promise((resolve) => {
+    const late = setTimeout(() => server.closeAllConnections(), graceMs);
+    server.close(() => {
+      clearTimeout(late);
+      resolve();
+    });
+    server.closeIdleConnections();
+  });
+}
+
+runProgram(import.meta.url, startWeb);
