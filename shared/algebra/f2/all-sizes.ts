@@ -1,7 +1,7 @@
 declare const seal: unique symbol;
 
 /**
- * Evidence that a statement holds for every size of a lattice family. Only `pauli/commutation` and `f2/module` make one (a test reads the imports),
+ * Evidence that a statement holds for every size of a lattice family. Only `pauli/commutation`, `pauli/keeping` and `f2/module` make one (a test reads the imports),
  * so that no number from a cluster can pass for it.
  */
 export interface AllSizes {
