@@ -32,7 +32,7 @@ export const table = {
   'shared/notebook': { may: ['shared/contracts'] },
   'shared/checker': { types: ['shared/contracts/certificate'] },
   // what was said, and the numbers of a finite model
-  'shared/language': { may: ['grammar', ...ground], never: ['shared/algebra/finite'] },
+  'shared/language': { may: ['grammar', ...ground], never: ['shared/algebra/finite'], packages: ['nearley'] },
   'shared/spectra': { may: ['shared/limits', 'shared/lattice', 'shared/algebra'] },
   // what becomes what, and how it reads
   'shared/maps': { may: ['shared/language', ...ground] },
@@ -156,7 +156,7 @@ export default defineConfig(
     },
     linterOptions: { reportUnusedDisableDirectives: 'error' },
     rules: {
-      eqeqeq: 'error',
+      eqeqeq: ['error', 'always', { null: 'ignore' }],
       'no-eval': 'error',
       'no-restricted-syntax': ['error', environment],
       '@typescript-eslint/consistent-type-imports': 'error',
