@@ -1,0 +1,3 @@
+import type { MapDeclaration } from '../../language/values.ts';
+
+export type DictionaryDeclaration = Extract<MapDeclaration, { kind: 'dictionary' }>;

@@ -1,0 +1,248 @@
+import type { Coefficient } from '../algebra/numbers/coefficient.ts';
+import { phaseCoefficient } from '../algebra/pauli/collect.ts';
+import { bodyKey } from '../algebra/pauli/string.ts';
+import type { Family, Operator, Steps } from '../algebra/pauli/types.ts';
+import type { Offset } from '../lattice/cells.ts';
+import { coefficientSpoken, coefficientTex } from './coefficients.ts';
+import { labelsOf, type Style, type TypesetContext } from './context.ts';
+import { extendedSpoken, extendedTex } from './extended.ts';
+import { placed, type Placed, type Shape } from './shapes.ts';
+import { anchorLetter, hasEnds, placeTex, shapeSpoken, shapeTex, usesAnchor } from './shape-tex.ts';
+
+/** Families of one shape and coefficient, to be written as one sum. */
+export interface Gathered {
+  /** Numbers of the members: families first, then the extended terms, as they stand in the operator. */
+  readonly members: readonly number[];
+  readonly coefficient: Coefficient;
+  /** The sum without its coefficient. */
+  tex(style: Style): string;
+  readonly spoken: string;
+}
+
+interface Bucket {
+  readonly shape: Shape;
+  readonly coefficient: Coefficient;
+  readonly steps: Steps;
+  readonly members: { readonly number: number; readonly index: number; readonly residue: Offset }[];
+}
+
+const residueOf = (offset: Offset, steps: Steps): number[] =>
+  offset.map((c, d) => (steps[d] ? ((c % steps[d]) + steps[d]) % steps[d] : c));
+
+const axis = (letter: string, d: number, dimension: number): string =>
+  dimension === 1 ? letter : `${letter}_{${String(d + 1)}}`;
+
+/** Conditions on the unit cell of the anchor: pinned coordinates and residues; empty for a plain sum over all cells. */
+function conditions(letter: string, steps: Steps, residues: readonly Offset[]): string[] {
+  const n = steps.length;
+  if (steps.every((m) => m === 1)) return [];
+  const one = residues.length === 1 ? residues[0] : undefined;
+  if (one)
+    return steps.flatMap((m, d) =>
+      m === 1
+        ? []
+        : m === 0
+          ? [`${axis(letter, d, n)}=${String(one[d] ?? 0)}`]
+          : [`${axis(letter, d, n)}\\equiv ${String(one[d] ?? 0)}\\,(${String(m)})`],
+    );
+  const list = residues.map((r) => (n === 1 ? String(r[0] ?? 0) : `(${r.join(',')})`)).join(',');
+  const modulus = steps.map(String);
+  return [`${letter}\\equiv ${list}\\;(${n === 1 ? (modulus[0] ?? '') : modulus.join(',')})`];
+}
+
+const labelTex = (label: string): string => (/^[\dA-Z]$/.test(label) ? label : `\\mathrm{${label}}`);
+
+/** What stands under the sum sign: `v`, `l\in 1`, `\langle a,b\rangle`, `p\in\mathrm{triangle}`, with conditions. */
+function underSum(bucket: Bucket, context: TypesetContext): string {
+  const { shape } = bucket;
+  const letter = anchorLetter(shape);
+  const residues = unique(bucket.members.map((m) => m.residue));
+  const extra = conditions(hasEnds(shape) && !usesAnchor(shape) ? 'a' : letter, bucket.steps, residues);
+  const variable = hasEnds(shape) ? (usesAnchor(shape) ? 'l=\\langle a,b\\rangle' : '\\langle a,b\\rangle') : letter;
+  const range = shape.anchor === 'cell' ? '' : rangeTex(bucket, context);
+  return `${variable}${range}${extra.length === 0 ? '' : `:\\,${extra.join(',\\,')}`}`;
+}
+
+const unique = (offsets: readonly Offset[]): Offset[] => [...new Map(offsets.map((o) => [o.join(','), o])).values()];
+
+/** All classes that could stand under the sum: those of the kind that carry every species of the shape standing on the anchor itself. */
+function domain(shape: Shape, context: TypesetContext): readonly number[] {
+  if (shape.anchor === 'cell') return [0];
+  const all = context.family[shape.anchor].map((_, k) => k);
+  return all.filter((k) =>
+    shape.groups.every((g) => g.spot.at !== 'self' || (context.species.get(g.species)?.classes.includes(k) ?? true)),
+  );
+}
+
+function rangeTex(bucket: Bucket, context: TypesetContext): string {
+  const { shape } = bucket;
+  if (shape.anchor === 'cell') return '';
+  const indices = [...new Set(bucket.members.map((m) => m.index))].sort((a, b) => a - b);
+  if (indices.length >= domain(shape, context).length) return '';
+  const labels = labelsOf(context.family, shape.anchor, indices).map(labelTex);
+  return `\\in ${labels.length === 1 ? (labels[0] ?? '') : `\\{${labels.join(',')}\\}`}`;
+}
+
+const isPinned = (steps: Steps): boolean => steps.every((m) => m === 0);
+
+/** Where a pinned term stands: `0`, `(1,0)`, with the class where the kind has several. */
+function anchorPlace(bucket: Bucket, context: TypesetContext): string {
+  const [member] = bucket.members;
+  const where = member?.residue ?? [];
+  const text = placeTex(where);
+  const { anchor } = bucket.shape;
+  if (anchor === 'cell' || context.family[anchor].length === 1) return text;
+  const [label = ''] = labelsOf(context.family, anchor, [member?.index ?? 0]);
+  return `${text},${labelTex(label)}`;
+}
+
+function bucketTex(bucket: Bucket, context: TypesetContext, style: Style): string {
+  if (isPinned(bucket.steps)) return pinnedTex(bucket, context, style);
+  return `\\sum_{${underSum(bucket, context)}}${shapeTex(bucket.shape, style)}`;
+}
+
+/** A term that stands still is written with the places of its factors, or at the place of its anchor. */
+function pinnedTex(bucket: Bucket, context: TypesetContext, style: Style): string {
+  const { shape, members } = bucket;
+  const base = members[0]?.residue ?? [];
+  const groups = shape.groups.map((g) => {
+    if (g.spot.at !== 'shifts') return g;
+    const cells = g.spot.cells.map((c) => ({ ...c, by: c.by.map((o, d) => o + (base[d] ?? 0)) }));
+    return { ...g, spot: { at: 'shifts' as const, cells } };
+  });
+  return shapeTex({ ...shape, groups }, style, { at: anchorPlace(bucket, context) });
+}
+
+function bucketSpoken(bucket: Bucket, context: TypesetContext): string {
+  const { shape } = bucket;
+  const body = shapeSpoken(shape);
+  if (isPinned(bucket.steps)) return `${body} at unit cell ${(bucket.members[0]?.residue ?? []).join(' ')}`;
+  const indices = [...new Set(bucket.members.map((m) => m.index))];
+  const kind = shape.anchor === 'cell' ? 'unit cells' : shape.anchor;
+  const which =
+    shape.anchor === 'cell' || indices.length >= domain(shape, context).length
+      ? ''
+      : ` of class ${labelsOf(context.family, shape.anchor, indices).join(' and ')}`;
+  const every = bucket.steps.every((m) => m === 1)
+    ? ''
+    : ` at every ${bucket.steps.map(String).join(' by ')} unit cells`;
+  return `the sum over ${kind}${which}${every} of ${body}`;
+}
+
+/** Constants: for each unit cell with the number of cells N, or once. */
+const constantTex = (family: Family): string => (family.steps.some((m) => m > 0) ? 'N' : '');
+
+/**
+ * Gathers the families of an operator into sums, in the order of the operator: one sum for each shape, coefficient and steps, over all
+ * classes of cells that take part. Extended strings and constants stand by themselves, constants last.
+ */
+export function gather(operator: Operator, context: TypesetContext): Gathered[] {
+  const buckets = new Map<string, Bucket>();
+  const constants: { family: Family; number: number }[] = [];
+  operator.families.forEach((family, number) => {
+    if (family.string.factors.length === 0) {
+      constants.push({ family, number });
+      return;
+    }
+    const place: Placed = placed(family.string, family.steps, context);
+    let coefficient = family.coefficient.mul(phaseCoefficient(family.string.phase));
+    if (place.sign < 0) coefficient = coefficient.neg();
+    const pinned = isPinned(family.steps);
+    // a term that stands still is a sum by itself
+    const key = `${place.shape.key}|${coefficient.key()}|${family.steps.join(',')}|${pinned ? `${String(place.index)}@${place.offset.join(',')}` : ''}`;
+    const bucket = buckets.get(key) ?? { shape: place.shape, coefficient, steps: family.steps, members: [] };
+    buckets.set(key, bucket);
+    bucket.members.push({ number, index: place.index, residue: residueOf(place.offset, family.steps) });
+  });
+  const sums = [...buckets.values()]
+    .flatMap((b) => splitUneven(b))
+    .map((bucket): Gathered => ({
+      members: bucket.members.map((m) => m.number),
+      coefficient: bucket.coefficient,
+      tex: (style) => bucketTex(bucket, context, style),
+      spoken: bucketSpoken(bucket, context),
+    }));
+  const strings = operator.extended.map((term, k): Gathered => ({
+    members: [operator.families.length + k],
+    coefficient: term.coefficient,
+    tex: (style) => extendedTex(term.extended, context, style),
+    spoken: extendedSpoken(term.extended, context),
+  }));
+  const rest = constants.map(({ family, number }): Gathered => ({
+    members: [number],
+    coefficient: family.coefficient.mul(phaseCoefficient(family.string.phase)),
+    tex: () => constantTex(family),
+    spoken: family.steps.some((m) => m > 0) ? 'for each unit cell' : '',
+  }));
+  return [...sums, ...strings, ...rest];
+}
+
+/** Classes that stand on different residues cannot share one sum: one bucket for each set of residues. */
+function splitUneven(bucket: Bucket): Bucket[] {
+  if (bucket.steps.every((m) => m === 1)) return [bucket];
+  const byIndex = new Map<number, string[]>();
+  for (const m of bucket.members) byIndex.set(m.index, [...(byIndex.get(m.index) ?? []), m.residue.join(',')]);
+  const signature = (index: number) => [...(byIndex.get(index) ?? [])].sort().join(' ');
+  const out = new Map<string, Bucket>();
+  for (const m of bucket.members) {
+    const key = signature(m.index);
+    const own = out.get(key) ?? { ...bucket, members: [] };
+    out.set(key, own);
+    own.members.push(m);
+  }
+  return [...out.values()];
+}
+
+/** A gathered sum with its coefficient: the sign apart, as it joins others. */
+export function gatheredTex(g: Gathered, style: Style): { readonly sign: '+' | '-'; readonly tex: string } {
+  const { sign, body } = coefficientTex(g.coefficient);
+  const sum = g.tex(style);
+  const tex =
+    body === '' ? (sum === '' ? '1' : sum) : `${body}${sum === '' ? '' : sum.startsWith('\\') ? sum : ` ${sum}`}`;
+  return { sign: sign === '-' ? '-' : '+', tex };
+}
+
+/** Spoken form of a gathered sum with its coefficient. */
+export function gatheredSpoken(g: Gathered): string {
+  const { negative, words } = coefficientSpoken(g.coefficient);
+  const body = [words, g.spoken]
+    .filter((w) => w !== '')
+    .join(g.spoken.startsWith('the ') && words !== '' ? ' times ' : ' ');
+  return `${negative ? 'minus' : 'plus'} ${body === '' ? '1' : body}`;
+}
+
+/** Sums joined by their signs; 0 for none. */
+export function sumTex(sums: readonly Gathered[], style: Style): string {
+  if (sums.length === 0) return '0';
+  return sums
+    .map((g, k) => {
+      const { sign, tex } = gatheredTex(g, style);
+      return k === 0 ? `${sign === '-' ? '-' : ''}${tex}` : ` ${sign} ${tex}`;
+    })
+    .join('');
+}
+
+/** An operator as a theorist would write it. */
+export const operatorTex = (operator: Operator, context: TypesetContext, style: Style = 'plain'): string =>
+  sumTex(gather(operator, context), style);
+
+/** An operator as a screen reader says it. */
+export function operatorSpoken(operator: Operator, context: TypesetContext): string {
+  const words = gather(operator, context).map(gatheredSpoken).join(', ');
+  return words.replace(/^plus /, '') || 'zero';
+}
+
+/** Numbers the gathered sums in the order in which the pieces of a source name them; sums that no piece names come last. */
+export function inSourceOrder(operator: Operator, sums: readonly Gathered[], pieces: readonly Operator[]): Gathered[] {
+  const at = new Map<string, number>();
+  pieces.forEach((piece, k) => {
+    for (const f of piece.families) if (!at.has(bodyKey(f.string))) at.set(bodyKey(f.string), k);
+  });
+  const rank = (g: Gathered): number =>
+    Math.min(
+      ...g.members.map(
+        (m) => at.get(bodyKey(operator.families[m]?.string ?? { phase: 0, factors: [] })) ?? pieces.length,
+      ),
+    );
+  return [...sums].sort((a, b) => rank(a) - rank(b));
+}

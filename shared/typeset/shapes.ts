@@ -1,0 +1,212 @@
+import { bodyKey, compareOffsets, siteKey, translateString } from '../algebra/pauli/string.ts';
+import type { Factor, LocalString, Pauli, Steps } from '../algebra/pauli/types.ts';
+import { cellKey, cellKinds, type Cell, type CellKind, type LatticeFamily, type Offset } from '../lattice/cells.ts';
+import { boundary, coboundary } from '../lattice/incidence.ts';
+import { classLabel, rank, type TypesetContext } from './context.ts';
+
+export interface ShiftedCell {
+  readonly kind: CellKind;
+  /** Its class, where the kind has several. */
+  readonly label: string;
+  readonly by: Offset;
+}
+
+/** Where the factors of one species and Pauli stand, seen from the cell that a term is anchored at. */
+export type Spot =
+  | { readonly at: 'self' }
+  /** All cells of another kind that lie in the anchor (rim, corners) or contain it (star, sides). */
+  | { readonly at: 'incident'; readonly kind: CellKind; readonly count: number }
+  /** Vertices joined to the anchor by a link. */
+  | { readonly at: 'neighbours' }
+  /** Cells named one by one, relative to the anchor's unit cell. */
+  | { readonly at: 'shifts'; readonly cells: readonly ShiftedCell[] };
+
+export interface SpotGroup {
+  readonly species: string;
+  readonly pauli: Pauli;
+  readonly spot: Spot;
+}
+
+/** The structure of a string on its lattice, free of place: what a theorist would write after the sum sign. */
+export interface Shape {
+  readonly key: string;
+  /** `cell`: anchored at a unit cell, where factors are named one by one. */
+  readonly anchor: CellKind | 'cell';
+  readonly groups: readonly SpotGroup[];
+  /** Name of a declared operator that this is. */
+  readonly named: string | undefined;
+}
+
+export interface Placed {
+  readonly shape: Shape;
+  /** Class and unit cell of the anchor. */
+  readonly index: number;
+  readonly offset: Offset;
+  /** −1 where a named operator stands for minus the string. */
+  readonly sign: 1 | -1;
+}
+
+const unique = (cells: readonly Cell[]): Cell[] => [...new Map(cells.map((c) => [cellKey(c), c])).values()];
+
+/** All cells of `kind` incident to a cell: in its closure or containing it, once each; itself for its own kind. */
+export function incident(family: LatticeFamily, cell: Cell, kind: CellKind): Cell[] {
+  const step = rank[kind] < rank[cell.kind] ? boundary : coboundary;
+  let cells: Cell[] = [cell];
+  for (let k = rank[cell.kind]; k !== rank[kind]; k += rank[kind] < rank[cell.kind] ? -1 : 1)
+    cells = unique(cells.flatMap((c) => step(family, c)));
+  return cells;
+}
+
+/** Vertices joined to a vertex by a link, once each. */
+export const neighbours = (family: LatticeFamily, vertex: Cell): Cell[] =>
+  unique(incident(family, vertex, 'links').flatMap((l) => boundary(family, l))).filter(
+    (c) => cellKey(c) !== cellKey(vertex),
+  );
+
+interface Group {
+  readonly species: string;
+  readonly pauli: Pauli;
+  readonly cells: Cell[];
+}
+
+function grouped(string: LocalString): Group[] {
+  const groups = new Map<string, Group>();
+  for (const f of string.factors) {
+    const key = `${f.species}^${f.pauli}`;
+    const group = groups.get(key) ?? { species: f.species, pauli: f.pauli, cells: [] };
+    group.cells.push(f.cell);
+    groups.set(key, group);
+  }
+  return [...groups.values()];
+}
+
+const sameCells = (a: readonly Cell[], b: readonly Cell[]): boolean => {
+  const keys = new Set(a.map(cellKey));
+  return a.length === b.length && b.every((c) => keys.has(cellKey(c)));
+};
+
+function spotFrom(anchor: Cell, group: Group, family: LatticeFamily): Spot | undefined {
+  const [first] = group.cells;
+  if (!first) return undefined;
+  if (first.kind !== anchor.kind) {
+    const cells = incident(family, anchor, first.kind);
+    return sameCells(cells, group.cells) ? { at: 'incident', kind: first.kind, count: cells.length } : undefined;
+  }
+  if (sameCells([anchor], group.cells)) return { at: 'self' };
+  // on a chain two named neighbours read better than a product over them
+  if (anchor.kind === 'vertices' && family.dimension > 1 && sameCells(neighbours(family, anchor), group.cells))
+    return { at: 'neighbours' };
+  return undefined;
+}
+
+const spotKey = (s: Spot): string =>
+  s.at === 'incident'
+    ? `incident ${s.kind}`
+    : s.at === 'shifts'
+      ? s.cells.map((c) => `${c.kind}.${c.label}@${c.by.join(',')}`).join(' ')
+      : s.at;
+
+const shapeOf = (anchor: Shape['anchor'], groups: readonly SpotGroup[]): Shape => ({
+  key: `${anchor}: ${groups.map((g) => `${g.species}^${g.pauli} ${spotKey(g.spot)}`).join('; ')}`,
+  anchor,
+  groups,
+  named: undefined,
+});
+
+/** Order in which a product is read: the matter before, the field after; singles before products. */
+function structured(string: LocalString, family: LatticeFamily): Placed | undefined {
+  const groups = grouped(string);
+  const [smallest] = [...groups].sort((a, b) => a.cells.length - b.cells.length);
+  const [probe] = smallest?.cells ?? [];
+  if (!probe) return undefined;
+  for (const kind of cellKinds) {
+    if (family[kind].length === 0) continue;
+    const candidates =
+      probe.kind !== kind
+        ? incident(family, probe, kind)
+        : kind === 'vertices'
+          ? [probe, ...neighbours(family, probe)]
+          : [probe];
+    for (const anchor of candidates) {
+      const spots = groups.map((g) => spotFrom(anchor, g, family));
+      if (spots.some((s) => s === undefined)) continue;
+      const found = groups.flatMap((g, k): SpotGroup[] => {
+        const spot = spots[k];
+        return spot ? [{ species: g.species, pauli: g.pauli, spot }] : [];
+      });
+      return { shape: shapeOf(kind, found), index: anchor.index, offset: anchor.offset, sign: 1 };
+    }
+  }
+  return undefined;
+}
+
+/** The factor that explicit places are counted from: the only one of its species and Pauli, else the first. */
+function origin(string: LocalString): Factor | undefined {
+  const lone = string.factors.filter(
+    (f) => string.factors.filter((g) => g.species === f.species && g.pauli === f.pauli).length === 1,
+  );
+  const all = lone.length > 0 && lone.length < string.factors.length ? lone : string.factors;
+  return [...all].sort((a, b) => compareOffsets(a.cell.offset, b.cell.offset))[0];
+}
+
+function explicit(string: LocalString, family: LatticeFamily): Placed {
+  const from = origin(string);
+  const kinds = new Set(string.factors.map((f) => f.cell.kind));
+  const [kind] = kinds;
+  const single = kinds.size === 1 && kind !== undefined && family[kind].length === 1;
+  const base = from?.cell.offset ?? [];
+  const groups = [...string.factors]
+    .sort((a, b) => compareOffsets(a.cell.offset, b.cell.offset) || a.cell.index - b.cell.index)
+    .map((f): SpotGroup => ({
+      species: f.species,
+      pauli: f.pauli,
+      spot: {
+        at: 'shifts',
+        cells: [
+          {
+            kind: f.cell.kind,
+            label: single ? '' : classLabel(family, f.cell.kind, f.cell.index),
+            by: f.cell.offset.map((c, d) => c - (base[d] ?? 0)),
+          },
+        ],
+      },
+    }));
+  return { shape: shapeOf(single ? kind : 'cell', groups), index: 0, offset: base, sign: 1 };
+}
+
+/** A declared operator of which the string is one instance, with its sign. */
+function named(string: LocalString, steps: Steps, context: TypesetContext): Placed | undefined {
+  const [first] = string.factors;
+  if (!first || string.factors.length < 2) return undefined;
+  for (const shape of context.names)
+    for (const instance of shape.instances) {
+      const own = instance.string.factors[0];
+      if (!own || instance.string.factors.length !== string.factors.length || instance.string.phase % 2 === 1) continue;
+      if (
+        siteKey({ ...own, cell: { ...own.cell, offset: [] } }) !==
+        siteKey({ ...first, cell: { ...first.cell, offset: [] } })
+      )
+        continue;
+      const by = first.cell.offset.map((c, d) => c - (own.cell.offset[d] ?? 0));
+      const reached = by.every((c, d) => (instance.steps[d] ? c % instance.steps[d] === 0 : c === 0));
+      const moves = steps.every(
+        (m, d) => m === 0 || ((instance.steps[d] ?? 0) > 0 && m % (instance.steps[d] ?? 1) === 0),
+      );
+      if (!reached || !moves || bodyKey(translateString(instance.string, by)) !== bodyKey(string)) continue;
+      return {
+        shape: { key: `named ${shape.name}`, anchor: shape.kind, groups: [], named: shape.name },
+        index: instance.index,
+        offset: by,
+        sign: instance.string.phase === 2 ? -1 : 1,
+      };
+    }
+  return undefined;
+}
+
+/**
+ * The shape of a string: a declared name if it has one, else what incidence recognises on any lattice (ends, star, rim, corners, sides,
+ * faces, edges, neighbours of one cell), else its factors one by one.
+ */
+export function placed(string: LocalString, steps: Steps, context: TypesetContext): Placed {
+  return named(string, steps, context) ?? structured(string, context.family) ?? explicit(string, context.family);
+}

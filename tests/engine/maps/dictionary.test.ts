@@ -1,0 +1,196 @@
+import { describe, expect, it } from 'vitest';
+import { Coefficient } from '../../../shared/algebra/numbers/coefficient.ts';
+import { equalOperators } from '../../../shared/algebra/pauli/family.ts';
+import type { Operator } from '../../../shared/algebra/pauli/types.ts';
+import { newBudget } from '../../../shared/limits.ts';
+import { straight } from '../../../shared/lattice/cluster.ts';
+import { keptCommutation } from '../../../shared/maps/dictionary/commutation.ts';
+import { onSize } from '../../../shared/maps/dictionary/sizes.ts';
+import type { DictionaryRule, MapDeclaration } from '../../../shared/language/values.ts';
+import * as S from './support.ts';
+
+type Dictionary = Extract<MapDeclaration, { kind: 'dictionary' }>;
+const minus = (name: string) => S.symbol(name).neg();
+
+function wegner(name: string, ...size: number[]) {
+  const on = S.lattice(name, ...size);
+  const { family } = on;
+  const flip = S.symmetry('flip', S.wholeProduct(family, 's', 'x', 'vertices'));
+  const values = S.valuesOf(on, [
+    S.species(family, 's', 'vertices'),
+    S.species(family, 'g', 'links'),
+    flip,
+    ...(family.plaquettes.length > 0
+      ? [S.law(family, 'flat', 'plaquettes', (p) => S.on('g', 'z', S.around(family, p, 'links')))]
+      : []),
+  ]);
+  const declaration = S.bonds(family);
+  const ising = S.plus(
+    S.sumOver(family, 'links', minus('J'), (l) => S.on('s', 'z', S.ends(family, l))),
+    S.sumOver(family, 'vertices', minus('h'), (v) => S.on('s', 'x', [v])),
+  );
+  const gauge = S.plus(
+    S.sumOver(family, 'links', minus('J'), (l) => S.on('g', 'z', [l])),
+    S.sumOver(family, 'vertices', minus('h'), (v) => S.on('g', 'x', S.around(family, v, 'links'))),
+  );
+  return { on, family, values, declaration, ising, gauge, map: S.build(declaration, values, 'bonds') };
+}
+
+describe('images under a dictionary', () => {
+  for (const [name, ...size] of [
+    ['chain', 6],
+    ['square', 4, 4],
+    ['triangular', 3, 3],
+    ['honeycomb', 3, 3],
+    ['kagome', 3, 3],
+    ['cubic', 2, 2, 2],
+  ] as const)
+    it(`sends the Ising model of the ${name} lattice to its gauge theory`, () => {
+      const w = wegner(name, ...size);
+      const image = S.value(w.map.image(w.ising, newBudget()));
+      expect(equalOperators(image, w.gauge, { open: false })).toBe(true);
+    });
+
+  it('writes a far bond as a product of fewest generators', () => {
+    const w = wegner('square', 4, 4);
+    const far: Operator = {
+      families: [
+        {
+          coefficient: Coefficient.one,
+          string: S.on('s', 'z', [S.cellAt('vertices', 0, 0, 0), S.cellAt('vertices', 0, 2, 3)]),
+          steps: [1, 1],
+          needs: [],
+        },
+      ],
+      extended: [],
+    };
+    const [image] = S.value(w.map.image(far, newBudget())).families;
+    expect(image?.string.factors.length).toBe(5);
+    expect(new Set(image?.string.factors.map((f) => f.pauli))).toEqual(new Set(['z']));
+  });
+
+  it('keeps the phase of Y: Y Z of neighbours is i X (ZZ), with the image i (X X) Z = X Y', () => {
+    const w = wegner('chain', 6);
+    const yz: Operator = {
+      families: [
+        {
+          coefficient: Coefficient.one,
+          string: {
+            phase: 0,
+            factors: [S.factor('s', 'y', S.cellAt('vertices', 0, 0)), S.factor('s', 'z', S.cellAt('vertices', 0, 1))],
+          },
+          steps: [1],
+          needs: [],
+        },
+      ],
+      extended: [],
+    };
+    const [image] = S.value(w.map.image(yz, newBudget())).families;
+    expect(image?.coefficient.isOne()).toBe(true);
+    expect(image?.string.factors.map((f) => f.pauli).sort()).toEqual(['x', 'y']);
+  });
+
+  it('refuses a charged term and names the declared symmetry', () => {
+    const w = wegner('square', 4, 4);
+    const outcome = w.map.image(
+      S.sumOver(w.family, 'vertices', Coefficient.one, (v) => S.on('s', 'z', [v])),
+      newBudget(),
+    );
+    expect(outcome.ok).toBe(false);
+    if (outcome.ok) return;
+    expect(outcome.refusal.symmetry?.text).toBe('flip = prod(v: vertices) s^x[v]');
+  });
+
+  it('finds a symmetry that nobody declared, local or extended', () => {
+    const w = wegner('square', 4, 4);
+    const reversed: Dictionary = {
+      kind: 'dictionary',
+      from: ['g'],
+      to: ['s'],
+      rules: w.declaration.rules.map((r): DictionaryRule => ({ ...r, left: r.right, right: r.left })),
+    };
+    const map = S.build(
+      reversed,
+      S.valuesOf(w.on, [S.species(w.family, 's', 'vertices'), S.species(w.family, 'g', 'links')]),
+    );
+    const outcome = map.image(
+      S.sumOver(w.family, 'links', Coefficient.one, (l) => S.on('g', 'x', [l])),
+      newBudget(),
+    );
+    expect(outcome.ok).toBe(false);
+    if (outcome.ok) return;
+    expect(outcome.refusal.symmetry?.text).toMatch(/g\^z/);
+  });
+
+  it('sends a product over the lattice to what its parts give', () => {
+    const w = wegner('square', 4, 4);
+    const image = S.value(w.map.imageExtended(S.wholeProduct(w.family, 's', 'x', 'vertices'), newBudget()));
+    expect(image).toEqual({ phase: 0, parts: [] });
+  });
+});
+
+describe('relations of a dictionary', () => {
+  it('keeps commutation at all sizes and finds the sectors of the square torus', () => {
+    const w = wegner('square', 4, 4);
+    expect(keptCommutation(w.declaration.rules, newBudget()).kept).toBe(true);
+    const context = { values: w.values, lattice: w.on, family: w.family, open: false, name: 'bonds' };
+    const found = onSize(w.declaration, context, straight(3, 3), newBudget());
+    if ('problem' in found) throw new Error(found.problem);
+    expect(found.leftSectors.map((s) => s.text)).toEqual(['flip = +1']);
+    expect(found.rightSectors.map((s) => s.text)).toEqual([
+      'flat = +1',
+      'prod(l: loop(1)) g^z[l] = +1',
+      'prod(l: loop(2)) g^z[l] = +1',
+    ]);
+    expect([found.leftDimension, found.rightDimension]).toEqual([8, 8]);
+    expect(found.signBreak).toBeUndefined();
+  });
+
+  it("refutes XX, YY, ZZ of two spins sent to Z, Z' and ZZ': every commutator kept, one sign broken", () => {
+    const on = S.lattice('chain', 4);
+    const { family } = on;
+    const pair = (pauli: 'x' | 'y' | 'z') => (v: Parameters<typeof S.ends>[1]) => S.on('p', pauli, [v]);
+    const both = (pauli: 'x' | 'y' | 'z') => (v: Parameters<typeof S.ends>[1]) => ({
+      phase: 0 as const,
+      factors: [...pair(pauli)(v).factors, ...S.on('q', pauli, [v]).factors],
+    });
+    const declaration: Dictionary = {
+      kind: 'dictionary',
+      from: ['p', 'q'],
+      to: ['a', 'b'],
+      rules: [
+        ...S.rules(family, 'vertices', 0, both('x'), (v) => S.on('a', 'z', [v])),
+        ...S.rules(family, 'vertices', 1, both('y'), (v) => S.on('b', 'z', [v])),
+        ...S.rules(family, 'vertices', 2, both('z'), (v) => ({
+          phase: 0,
+          factors: [...S.on('a', 'z', [v]).factors, ...S.on('b', 'z', [v]).factors],
+        })),
+      ],
+    };
+    const values = S.valuesOf(
+      on,
+      ['p', 'q', 'a', 'b'].map((n) => S.species(family, n, 'vertices')),
+    );
+    expect(keptCommutation(declaration.rules, newBudget()).kept).toBe(true);
+    const found = onSize(
+      declaration,
+      { values, lattice: on, family, open: false, name: 'wrong' },
+      straight(4),
+      newBudget(),
+    );
+    if ('problem' in found) throw new Error(found.problem);
+    expect(found.signBreak?.members.length).toBe(3);
+    expect([found.signBreak?.leftPhase, found.signBreak?.rightPhase]).toEqual([2, 0]);
+  });
+
+  it('finds the pair of rules whose commutation breaks', () => {
+    const w = wegner('square', 4, 4);
+    const wrong = w.declaration.rules.map((r) =>
+      r.rule === 0 ? r : { ...r, right: S.on('g', 'x', [S.cellAt('links', 0, 0, 0)]) },
+    );
+    const verdict = keptCommutation(wrong, newBudget());
+    expect(verdict.kept).toBe(false);
+    const [first] = verdict.broken;
+    expect(first && first.leftOverlap.length % 2).not.toBe(first && first.rightOverlap.length % 2);
+  });
+});
