@@ -1,0 +1,209 @@
+import type { CallNode, Expression, Path } from '../../grammar/syntax.ts';
+import { Coefficient } from '../algebra/numbers/coefficient.ts';
+import { isPinned } from '../algebra/pauli/family.ts';
+import { translateString } from '../algebra/pauli/string.ts';
+import type { Extended, Family, Operator } from '../algebra/pauli/types.ts';
+import { shifted } from '../lattice/cells.ts';
+import { asOperator, total } from './arithmetic.ts';
+import { ProblemError, fail, say, whatIsIt } from './problem.ts';
+import { cellArgument, cellWords, integerArgument } from './sets.ts';
+import {
+  Aperiodic,
+  Refine,
+  gcd,
+  numberAmount,
+  operatorAmount,
+  textOf,
+  type Amount,
+  type MovingCell,
+  type Scene,
+} from './scene.ts';
+import type { LawValue, MapValue, OperatorValue, Value } from './values.ts';
+
+/** An operator with parameter keeps how it is evaluated inside the scene of whoever calls it, so that it moves along. */
+export interface DeclaredOperator extends OperatorValue {
+  readonly inScene?: (cell: MovingCell, scene: Scene) => Operator;
+}
+
+export const dotted = (path: Path): string => path.words.map((w) => w.text).join('.');
+
+/** A declared operator that stands somewhere or everywhere may not stand in a moving frame, unless it is a constant. */
+function unmoved(operator: Operator, path: Path, scene: Scene): Operator {
+  const whole = operator.extended.length > 0 || operator.families.some((f) => !isPinned(f));
+  if (scene.within && whole) return fail(say.wholeInside(dotted(path)), path);
+  if (scene.frame && operator.families.some((f) => f.string.factors.length > 0)) throw new Aperiodic(path);
+  return operator;
+}
+
+/** What a declared name without brackets stands for in an expression; undefined if it is not declared. */
+export function namedValue(path: Path, scene: Scene): Amount | undefined {
+  const value = scene.values.find(dotted(path));
+  if (!value) return undefined;
+  switch (value.what) {
+    case 'coupling':
+      return numberAmount(Coefficient.symbol(value.name));
+    case 'model':
+      scene.seams.push(...value.seams);
+      return operatorAmount(unmoved(value.operator, path, scene));
+    case 'symmetry':
+      return operatorAmount(unmoved(asExtendedOperator(value.extended), path, scene));
+    case 'operator':
+      if (value.parameter) return fail(say.argumentCount(value.name, `a cell of ${value.parameter.kind}`, 0), path);
+      return operatorAmount(unmoved(value.operator, path, scene));
+    case 'law':
+      return fail(say.argumentCount(value.name, `a cell of ${value.parameter.kind}`, 0), path);
+    default:
+      return fail(
+        say.wrongKind(`${whatIsIt[value.what] ?? value.what} "${dotted(path)}"`, 'an operator or a number'),
+        path,
+      );
+  }
+}
+
+/** A symmetry as an operator; one that stands on a few spins is pinned. */
+function asExtendedOperator(extended: Extended): Operator {
+  return { families: [], extended: [{ coefficient: Coefficient.one, extended }] };
+}
+
+function onlyCell(node: CallNode, name: string, kind: string, scene: Scene): MovingCell {
+  const [argument] = node.args;
+  if (!argument || node.args.length !== 1)
+    return fail(say.argumentCount(name, `one cell of ${kind}`, node.args.length), node);
+  const cell = cellArgument(argument, scene);
+  if (cell.cell.kind !== kind) return fail(say.takes(name, kind, cellWords(cell.cell, scene)), argument);
+  if (scene.cut) return fail(say.cutFactor(), argument);
+  return cell;
+}
+
+/** A law at a cell: the family of its class and residue, moved there. */
+function lawAt(value: LawValue, node: CallNode, scene: Scene): Operator {
+  const cell = onlyCell(node, value.name, value.parameter.kind, scene);
+  const frame = scene.frame;
+  for (const { string, steps, needs, anchor } of value.families) {
+    if (anchor.index !== cell.cell.index) continue;
+    steps.forEach((m, d) => {
+      const step = scene.steps[d] ?? 0;
+      if (frame?.[d] && m === 0) throw new Aperiodic(node);
+      if (frame?.[d] && step % m !== 0) throw new Refine(d, (step / gcd(step, m)) * m);
+    });
+    const by = cell.cell.offset.map((c, d) => c - (anchor.offset[d] ?? 0));
+    if (!by.every((b, d) => (steps[d] ? b % steps[d] === 0 : b === 0))) continue;
+    if (frame?.some((moves, d) => moves && !cell.moves[d])) throw new Aperiodic(node);
+    const family: Family = {
+      coefficient: Coefficient.one,
+      string: translateString(string, by),
+      steps: steps.map(() => 0),
+      needs: scene.open ? needs.map((c) => shifted(c, by)) : [],
+    };
+    return total([{ families: [family], extended: [] }], scene);
+  }
+  return fail(say.notInDomain(value.name), node);
+}
+
+function operatorAt(value: DeclaredOperator, node: CallNode, scene: Scene): Operator {
+  if (!value.parameter || !value.inScene) return fail(say.argumentCount(value.name, 'no cell', node.args.length), node);
+  const cell = onlyCell(node, value.name, value.parameter.kind, scene);
+  try {
+    return value.inScene(cell, scene);
+  } catch (error) {
+    // the problem lies in how the operator is used here
+    if (error instanceof ProblemError) return fail(error.saying, node);
+    if (error instanceof Aperiodic) throw new Aperiodic(node);
+    throw error;
+  }
+}
+
+/** Shortest steps along which a map treats all places alike; 0: it does not repeat. */
+export function mapPeriod(value: MapValue, dimension: number): number[] {
+  const lcm = (a: number, b: number): number => (a === 0 || b === 0 ? 0 : (a / gcd(a, b)) * b);
+  const join = (all: readonly (readonly number[])[]): number[] =>
+    all.reduce<number[]>((p, steps) => p.map((m, d) => lcm(m, steps[d] ?? 1)), new Array<number>(dimension).fill(1));
+  const { declaration } = value;
+  switch (declaration.kind) {
+    case 'dictionary':
+      return join(declaration.rules.filter((r) => r.anchor !== undefined).map((r) => r.steps));
+    case 'circuit':
+      return join(declaration.layers.flatMap((l) => l.gates.map((g) => g.steps)));
+    case 'solve':
+      return join(declaration.law.families.map((f) => f.steps));
+    case 'states':
+      return join(declaration.blocks.map((b) => b.steps));
+    case 'gauge':
+      return join([]);
+    case 'then':
+      return join([mapPeriod(declaration.first, dimension), mapPeriod(declaration.second, dimension)]);
+    case 'inverse':
+      return mapPeriod(declaration.of, dimension);
+  }
+}
+
+function mapped(value: MapValue, node: CallNode, scene: Scene): Operator {
+  const [argument] = node.args;
+  if (!argument || node.args.length !== 1)
+    return fail(say.argumentCount(value.name, 'one operator', node.args.length), node);
+  if (scene.frame)
+    mapPeriod(value, scene.dimension).forEach((m, d) => {
+      if (!scene.frame?.[d]) return;
+      if (m === 0) throw new Aperiodic(node);
+      const step = scene.steps[d] ?? 1;
+      if (step % m !== 0) throw new Refine(d, (step / gcd(step, m)) * m);
+    });
+  const operator = asOperator(scene.amount(argument, scene), scene, argument);
+  const refuse = (reason: string, symmetry: string | undefined): never =>
+    fail(say.mapRefuses(value.name, reason, symmetry), argument);
+  const local = value.map.image({ families: operator.families, extended: [] }, scene.budget);
+  if (!local.ok) return refuse(local.refusal.reason, local.refusal.symmetry?.text);
+  const parts: Operator[] = [local.value];
+  for (const { coefficient, extended } of operator.extended) {
+    const image = value.map.imageExtended(extended, scene.budget);
+    if (!image.ok) return refuse(image.refusal.reason, image.refusal.symmetry?.text);
+    parts.push({ families: [], extended: [{ coefficient, extended: image.value }] });
+  }
+  return total(parts, scene);
+}
+
+/** True if it is one Pauli operator on each spin it touches, all over the lattice. */
+export const isOnSite = (extended: Extended): boolean =>
+  extended.parts.length > 0 &&
+  extended.parts.every((p) => p.string.factors.length === 1 && p.steps.every((m) => m === 1));
+
+function twisted(node: CallNode, scene: Scene): Operator {
+  const [modelNode, symmetryNode, directionNode] = node.args;
+  const named = (argument: Expression | undefined): Value | undefined =>
+    argument?.type === 'name' ? scene.values.find(dotted(argument.path)) : undefined;
+  const symmetry = named(symmetryNode);
+  if (!modelNode || !symmetryNode || !directionNode || node.args.length !== 3) return fail(say.twistArguments(), node);
+  if (symmetry?.what !== 'symmetry')
+    return fail(say.wrongKind(textOf(symmetryNode, scene), 'a symmetry'), symmetryNode);
+  const model = named(modelNode);
+  if (model && model.what !== 'model' && model.what !== 'operator')
+    return fail(say.wrongKind(whatIsIt[model.what] ?? model.what, 'a model'), modelNode);
+  if (!isOnSite(symmetry.extended)) return fail(say.onSite(symmetry.name), symmetryNode);
+  const direction = integerArgument(directionNode, scene, 'A direction');
+  if (direction < 1 || direction > scene.dimension)
+    return fail(say.direction(String(direction), scene.dimension), directionNode);
+  if (!scene.lattice.periodic[direction - 1]) return fail(say.twistOpen(direction), directionNode);
+  const operator = asOperator(scene.amount(modelNode, scene), scene, modelNode);
+  if (scene.within) return fail(say.wholeInside(textOf(node, scene)), node);
+  scene.seams.push({ symmetry: symmetry.extended, direction });
+  return operator;
+}
+
+/** A call of a declared name, or of `twist`; undefined where the name is neither. */
+export function applyCall(node: CallNode, scene: Scene): Amount | undefined {
+  const value: Value | undefined = scene.values.find(dotted(node.path));
+  if (!value) return dotted(node.path) === 'twist' ? operatorAmount(twisted(node, scene)) : undefined;
+  switch (value.what) {
+    case 'law':
+      return operatorAmount(lawAt(value, node, scene));
+    case 'operator':
+      return operatorAmount(operatorAt(value, node, scene));
+    case 'map':
+      return operatorAmount(mapped(value, node, scene));
+    default:
+      return fail(
+        say.wrongKind(`${whatIsIt[value.what] ?? value.what} "${dotted(node.path)}"`, 'something that takes brackets'),
+        node.path,
+      );
+  }
+}
