@@ -105,7 +105,7 @@ export const tolerances = { residual: 1e-10, degenerate: 1e-8 } as const;
 const extraLevels = 64;
 /** Products with H after which the Lanczos method gives up. */
 const mostProducts = 20_000;
-const denseUpTo = 1024;
+const denseUpTo = 512;
 const denseUpToWhenAll = 4096;
 
 type Prepared =

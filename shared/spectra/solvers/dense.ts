@@ -273,12 +273,13 @@ function reflectComplex(
 function implicitQl(d: Float64Array, e: Float64Array, rows: Float64Array | undefined): void {
   const n = d.length;
   if (n > 0) e[n - 1] = 0;
+  // Relative to the whole matrix: among many levels near 0 the neighbours alone would give no measure.
+  let size = 0;
+  for (let k = 0; k < n; k++) size = Math.max(size, Math.abs(d[k]!) + Math.abs(e[k]!));
   for (let l = 0; l < n; l++) {
     for (let sweep = 0; ; sweep++) {
       let m = l;
-      for (; m < n - 1; m++) {
-        if (Math.abs(e[m]!) <= 2.3e-16 * (Math.abs(d[m]!) + Math.abs(d[m + 1]!)) || Math.abs(e[m]!) < 1e-300) break;
-      }
+      while (m < n - 1 && Math.abs(e[m]!) > 2.3e-16 * size) m++;
       if (m === l) break;
       if (sweep === 80)
         throw new Error(
