@@ -29,7 +29,9 @@ interface Failure {
 }
 
 const pieceText = (piece: Piece, family: LatticeFamily): string =>
-  piece.kind === 'orbit' ? stringPhrase({ ...piece.orbit.string, phase: 0 }, family) : extendedPhrase(piece.extended, family);
+  piece.kind === 'orbit'
+    ? stringPhrase({ ...piece.orbit.string, phase: 0 }, family)
+    : extendedPhrase(piece.extended, family);
 
 /** The witness as data and in one sentence. */
 function witnessOf(failure: Failure, family: LatticeFamily): Record<string, unknown> {
@@ -64,7 +66,14 @@ interface Comparison {
 /** Settles a verdict that depends on the size at the declared one; tilted sizes are not settled this way. */
 function commutesHere(on: readonly SizeParity[], values: Values): boolean {
   const size = values.lattice?.size;
-  return size !== undefined && isStraight(size) && commutesAt(on, size.periods.map((row, d) => row[d] ?? 1));
+  return (
+    size !== undefined &&
+    isStraight(size) &&
+    commutesAt(
+      on,
+      size.periods.map((row, d) => row[d] ?? 1),
+    )
+  );
 }
 
 function compare(terms: readonly Piece[], laws: ReadonlyMap<string, readonly Piece[]>, values: Values): Comparison {
@@ -131,7 +140,10 @@ function commutation(
       statement: `${name} does not commute with ${list}: ${String(failing.size)} of ${String(terms.length)} terms fail, the first is ${text}`,
       figures,
       witness: witnessOf(first, family),
-      cautions: smallTori(failures.map((f) => ({ term: terms[f.term], law: f.law })), values),
+      cautions: smallTori(
+        failures.map((f) => ({ term: terms[f.term], law: f.law })),
+        values,
+      ),
       sources: [source],
     };
   }

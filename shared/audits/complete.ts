@@ -86,7 +86,8 @@ export function completeState(
   /** Next to guess: an open spin beside one that is set, so that dead ends show early. */
   const next = (): number => {
     for (let k = trail.length - 1; k >= 0; k--)
-      for (const watch of at[trail[k] ?? 0] ?? []) for (const [spin] of watch.entries) if (bits[spin] === -1) return spin;
+      for (const watch of at[trail[k] ?? 0] ?? [])
+        for (const [spin] of watch.entries) if (bits[spin] === -1) return spin;
     return bits.indexOf(-1);
   };
   const search = (): boolean => {

@@ -36,7 +36,10 @@ function finding(words: string, size: Size, spectrum: Spectrum, notes: readonly 
   const at = sizeText(size);
   if (!ground || (!ground.complete && spectrum.energies.length < spectrum.dimension))
     return {
-      evidence: { kind: 'reason', reason: `more than ${String(spectrum.energies.length)} levels are degenerate; the multiplet was not found whole` },
+      evidence: {
+        kind: 'reason',
+        reason: `more than ${String(spectrum.energies.length)} levels are degenerate; the multiplet was not found whole`,
+      },
       statement: `the ground space of ${words} on ${at}`,
       figures: { size: at },
     };
@@ -45,9 +48,22 @@ function finding(words: string, size: Size, spectrum: Spectrum, notes: readonly 
   const states = ground.multiplicity === 1 ? 'one ground state' : `${String(ground.multiplicity)} ground states`;
   const above = gap === null ? 'no level above' : `gap ${gap.toFixed(9)}`;
   return {
-    evidence: { kind: 'residuals', tolerance: spectrum.residuals[0] ?? 0, largest: Math.max(...spectrum.residuals), sizes: [at] },
+    evidence: {
+      kind: 'residuals',
+      tolerance: spectrum.residuals[0] ?? 0,
+      largest: Math.max(...spectrum.residuals),
+      sizes: [at],
+    },
     statement: `${words} has ${states} on ${at}, energy ${energy.toFixed(9)}, ${above}`,
-    figures: { size: at, energy, degeneracy: ground.multiplicity, gap, dimension: spectrum.dimension, residual: Math.max(...spectrum.residuals), method: spectrum.method },
+    figures: {
+      size: at,
+      energy,
+      degeneracy: ground.multiplicity,
+      gap,
+      dimension: spectrum.dimension,
+      residual: Math.max(...spectrum.residuals),
+      method: spectrum.method,
+    },
     cautions: [standing.cluster, ...notes],
   };
 }

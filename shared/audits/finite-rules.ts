@@ -1,4 +1,4 @@
-import { Coefficient } from '../algebra/numbers/coefficient.ts';
+import type { Coefficient } from '../algebra/numbers/coefficient.ts';
 import type { SiteTable } from '../algebra/finite/types.ts';
 import type { Family } from '../algebra/pauli/types.ts';
 import type { RuleValue } from '../language/values.ts';
@@ -62,7 +62,9 @@ function related(rule: RuleValue, form: Linear): DiagonalRule {
  * an open edge cuts them. Throws Unanswerable for a rule that is not linear in bits or does not fit the size.
  */
 export function diagonalRules(cluster: Cluster, table: SiteTable, rule: RuleValue): DiagonalRule[] {
-  return fitting(`rule ${rule.name}`, cluster, () => rule.families.flatMap((family) => instances(cluster, table, rule, family)));
+  return fitting(`rule ${rule.name}`, cluster, () =>
+    rule.families.flatMap((family) => instances(cluster, table, rule, family)),
+  );
 }
 
 function instances(
@@ -71,7 +73,8 @@ function instances(
   rule: RuleValue,
   family: RuleValue['families'][number],
 ): DiagonalRule[] {
-  if (!cluster.admits(family.steps)) throw new Unanswerable(`rule ${rule.name} does not fit on this size: its period is ${family.steps.join(' x ')}`);
+  if (!cluster.admits(family.steps))
+    throw new Unanswerable(`rule ${rule.name} does not fit on this size: its period is ${family.steps.join(' x ')}`);
   const [low, high] = lowHigh([family.anchor], cluster.dimension);
   const rules: DiagonalRule[] = [];
   for (const by of cluster.orbit(family.steps, low, high)) {
@@ -86,4 +89,3 @@ function instances(
   }
   return rules;
 }
-

@@ -16,8 +16,7 @@ export const gradeOf = (evidence: Evidence): Grade => gradeOfKind[evidence.kind]
 export const standing = {
   levels: 'That the lowest levels agree is not equality of the spectra.',
   cluster: 'A cluster this small shows no phase.',
-  loops:
-    'An equal-time loop measured in real space is not the space-time loop that decides confinement.',
+  loops: 'An equal-time loop measured in real space is not the space-time loop that decides confinement.',
 } as const;
 
 /** The claim that a finding makes, in the form of the report. */

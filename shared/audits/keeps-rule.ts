@@ -26,7 +26,9 @@ const whole = (value: Coefficient, rule: string): bigint[] => {
 function linearRules(rule: RuleValue): LinearRule[] {
   return rule.families.map((family) => {
     if (family.steps.some((m) => m === 0))
-      throw new Unanswerable(`rule ${rule.name} stands in one place only along a direction; moves are compared with rules that stand everywhere`);
+      throw new Unanswerable(
+        `rule ${rule.name} stands in one place only along a direction; moves are compared with rules that stand everywhere`,
+      );
     let constant = Coefficient.zero;
     const weights = new Map<string, { site: Site; weight: Coefficient }>();
     for (const { coefficient, string } of family.operator.families) {
@@ -44,13 +46,19 @@ function linearRules(rule: RuleValue): LinearRule[] {
   });
 }
 
-function inWhole(rule: RuleValue, constant: Coefficient, weights: readonly { site: Site; weight: Coefficient }[], steps: readonly number[]): LinearRule {
+function inWhole(
+  rule: RuleValue,
+  constant: Coefficient,
+  weights: readonly { site: Site; weight: Coefficient }[],
+  steps: readonly number[],
+): LinearRule {
   const parity = rule.relation === 'even' || rule.relation === 'odd';
   const bound = parity ? constant : rule.bound.sub(constant);
   const pairs = [...weights.map((w) => w.weight), bound].map((c) => whole(c, rule.name));
   const gcd = (a: bigint, b: bigint): bigint => (b === 0n ? a : gcd(b, a % b));
   const den = pairs.reduce((all, [, d = 1n]) => (all * d) / gcd(all, d), 1n);
-  if (parity && den !== 1n) throw new Unanswerable(`rule ${rule.name} counts in fractions, so even and odd have no meaning`, true);
+  if (parity && den !== 1n)
+    throw new Unanswerable(`rule ${rule.name} counts in fractions, so even and odd have no meaning`, true);
   const scaled = pairs.map(([n = 0n, d = 1n]) => Number((n * den) / d));
   if (!scaled.every(Number.isSafeInteger)) throw new Unanswerable(`rule ${rule.name} has numbers past 2^53`);
   const last = scaled.pop() ?? 0;
@@ -113,19 +121,34 @@ export function keepsRule(name: string, rule: RuleValue, values: Values): Findin
   });
   const parts = familiesOf(value);
   if (!lattice || !parts) return open(`${name} is not a model, operator, law or symmetry`);
-  if (parts.global) return open(`${name} holds a product over the whole lattice; moves are compared with ${rule.name} where they are local`);
-  const families = collectFamilies(parts.families, { open: false }).filter((family) => family.string.factors.length > 0);
+  if (parts.global)
+    return open(
+      `${name} holds a product over the whole lattice; moves are compared with ${rule.name} where they are local`,
+    );
+  const families = collectFamilies(parts.families, { open: false }).filter(
+    (family) => family.string.factors.length > 0,
+  );
   let at: string | undefined;
   try {
     const rules = linearRules(rule);
-    const period = [...families, ...rules].reduce<number[]>((all, { steps }) => all.map((m, d) => lcm(m, steps[d] ?? 1)), lattice.family.vectors.map(() => 1));
-    const verdict = keepsRules(families, rules, (leak) => (at = extended(leak, rule, period, values)) !== undefined, newBudget(8_000_000, 'operations of comparing moves with a rule'));
+    const period = [...families, ...rules].reduce<number[]>(
+      (all, { steps }) => all.map((m, d) => lcm(m, steps[d] ?? 1)),
+      lattice.family.vectors.map(() => 1),
+    );
+    const verdict = keepsRules(
+      families,
+      rules,
+      (leak) => (at = extended(leak, rule, period, values)) !== undefined,
+      newBudget(8_000_000, 'operations of comparing moves with a rule'),
+    );
     const figures = {
       terms: families.length,
       commuting: families.length - (verdict.kept ? 0 : verdict.leaving.length),
       moves: verdict.moves,
     };
-    const edges = lattice.periodic.every(Boolean) ? [] : ['decided in the bulk; at open edges the rule is cut, and that is not looked at here'];
+    const edges = lattice.periodic.every(Boolean)
+      ? []
+      : ['decided in the bulk; at open edges the rule is cut, and that is not looked at here'];
     if (verdict.kept)
       return {
         evidence: { kind: 'all sizes', proof: [verdict.evidence] },
@@ -158,13 +181,18 @@ function familiesOf(value: ReturnType<Values['find']>): { families: readonly Fam
   switch (value?.what) {
     case 'model':
     case 'operator': {
-      const diagonal = value.operator.extended.every((t) => t.extended.parts.every((p) => p.string.factors.every((f) => f.pauli === 'z')));
+      const diagonal = value.operator.extended.every((t) =>
+        t.extended.parts.every((p) => p.string.factors.every((f) => f.pauli === 'z')),
+      );
       return { families: value.operator.families, global: !diagonal };
     }
     case 'law':
       return { families: value.families.map((f) => ({ ...f, coefficient: Coefficient.one })), global: false };
     case 'symmetry':
-      return { families: [], global: !value.extended.parts.every((p) => p.string.factors.every((f) => f.pauli === 'z')) };
+      return {
+        families: [],
+        global: !value.extended.parts.every((p) => p.string.factors.every((f) => f.pauli === 'z')),
+      };
     default:
       return undefined;
   }
@@ -182,15 +210,25 @@ function cancels(leak: Leak, values: Values): string[] {
   return there ? ['the amplitude of this move vanishes for the declared values of the couplings, not in general'] : [];
 }
 
-function witnessOf(leak: Leak, rule: RuleValue, rules: readonly LinearRule[], size: string, family: LatticeFamily): Record<string, unknown> {
-  const spinText = (site: Site): string => stringPhrase({ phase: 0, factors: [{ ...site, pauli: 'z' }] }, family).replace('^z', '');
+function witnessOf(
+  leak: Leak,
+  rule: RuleValue,
+  rules: readonly LinearRule[],
+  size: string,
+  family: LatticeFamily,
+): Record<string, unknown> {
+  const spinText = (site: Site): string =>
+    stringPhrase({ phase: 0, factors: [{ ...site, pauli: 'z' }] }, family).replace('^z', '');
   const flips = new Set(leak.flip.map(siteKey));
   const before = leak.before.map(({ site, bit }) => ({ species: site.species, cell: site.cell, bit }));
   const after = before.map((b) => (flips.has(siteKey(b)) ? { ...b, bit: 1 - b.bit } : b));
   const excited = leak.before.filter(({ bit }) => bit === 1).map(({ site }) => spinText(site));
   const { broken } = leak;
   const form = rules[broken.rule];
-  const sum = form && !obeys(form.relation, broken.after, form.bound) ? `its sum goes from ${String(broken.before)} to ${String(broken.after)}` : '';
+  const sum =
+    form && !obeys(form.relation, broken.after, form.bound)
+      ? `its sum goes from ${String(broken.before)} to ${String(broken.after)}`
+      : '';
   return {
     size,
     flip: leak.flip.map(spinText),

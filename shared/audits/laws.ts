@@ -51,7 +51,14 @@ function mutual(pieces: readonly Piece[], values: Values): Mutual {
       return {
         proofs,
         proved,
-        witness: { laws: [a.name, b.name], shift: witness.shift, left: witness.left.factors, right: witness.right.factors, overlap: witness.overlap, words },
+        witness: {
+          laws: [a.name, b.name],
+          shift: witness.shift,
+          left: witness.left.factors,
+          right: witness.right.factors,
+          overlap: witness.overlap,
+          words,
+        },
       };
     }
   return { proofs, proved, witness: undefined };
@@ -79,13 +86,19 @@ function instances(values: Values, laws: readonly LawLike[], size: Size): Instan
 }
 
 /** A relation in words: which laws, how many of each, and the sign of their product with the declared values. */
-function relationWords(relation: Relation, all: readonly SectorConstraint[], totals: ReadonlyMap<string, number>): string {
+function relationWords(
+  relation: Relation,
+  all: readonly SectorConstraint[],
+  totals: ReadonlyMap<string, number>,
+): string {
   const counts = new Map<string, number>();
   for (const member of relation.members) {
     const label = all[member]?.label ?? '';
     counts.set(label, (counts.get(label) ?? 0) + 1);
   }
-  const words = [...counts].map(([label, count]) => (count === totals.get(label) ? `all ${label}` : `${String(count)} of ${label}`));
+  const words = [...counts].map(([label, count]) =>
+    count === totals.get(label) ? `all ${label}` : `${String(count)} of ${label}`,
+  );
   return `${words.join(' times ')} = ${relation.phase === 0 ? '+1' : relation.phase === 2 ? '-1' : `i^${String(relation.phase)}`}`;
 }
 
@@ -100,7 +113,9 @@ function contradictionWords(relation: Relation, { all, table }: Instances, value
       const site = table.sites[spin];
       return site ? [{ ...site, pauli }] : [];
     });
-    return [`${constraint.label}: ${stringPhrase({ phase: 0, factors }, family)} = ${constraint.value === 1 ? '+1' : '-1'}`];
+    return [
+      `${constraint.label}: ${stringPhrase({ phase: 0, factors }, family)} = ${constraint.value === 1 ? '+1' : '-1'}`,
+    ];
   });
   const more = relation.members.length - shown.length;
   return `${shown.join('; ')}${more > 0 ? `; and ${String(more)} more` : ''}`;
@@ -119,7 +134,14 @@ function count(words: string, values: Values, laws: readonly LawLike[], together
   for (const { label } of all) totals.set(label, (totals.get(label) ?? 0) + 1);
   const relationList = relations.slice(0, listed).map((relation) => relationWords(relation, all, totals));
   const spins = table.sites.length;
-  const figures = { size: at, spins, instances: all.length, independent: rank, relations: relations.length, relationList };
+  const figures = {
+    size: at,
+    spins,
+    instances: all.length,
+    independent: rank,
+    relations: relations.length,
+    relationList,
+  };
   const pair = group.anticommutingPair();
   if (pair) {
     const labels = pair.map((k) => all[k]?.label ?? '');
@@ -137,7 +159,11 @@ function count(words: string, values: Values, laws: readonly LawLike[], together
   const dimension = `2^${String(spins - rank)}`;
   const proof = together.proved ? `they commute at ${sizesWords(together.proofs)}` : `they commute on ${at}`;
   const cautions = [
-    ...(together.proved ? [] : [`On the infinite lattice not all of them commute${typeof together.witness?.['words'] === 'string' ? `: ${together.witness['words']}` : ''}; what holds here is of this size only.`]),
+    ...(together.proved
+      ? []
+      : [
+          `On the infinite lattice not all of them commute${typeof together.witness?.['words'] === 'string' ? `: ${together.witness['words']}` : ''}; what holds here is of this size only.`,
+        ]),
     ...(odd ? [`${odd.label} is not Hermitian on ${at}: factors that anticommute meet on one spin.`] : []),
   ];
   const what = `${words}: ${proof}; ${String(rank)} independent of ${String(all.length)} on ${at}, ${String(relations.length)} relations`;
@@ -147,7 +173,9 @@ function count(words: string, values: Values, laws: readonly LawLike[], together
       ? `${what}, a sector of dimension ${dimension} (${String(spins - rank)} logical spins)`
       : `${what}, and no state obeys them all: -1 is in the group they generate`,
     figures: { commute: true, consistent, ...figures, logical: spins - rank, dimension },
-    ...(contradiction ? { witness: { members: contradiction.members, words: contradictionWords(contradiction, found, values) } } : {}),
+    ...(contradiction
+      ? { witness: { members: contradiction.members, words: contradictionWords(contradiction, found, values) } }
+      : {}),
     cautions,
     sources: [source],
   };
@@ -159,7 +187,10 @@ function decide({ statement, values, size }: Question): readonly Finding[] {
   const words = statement.subjects.map((subject) => subject.name).join(', ');
   if (laws.length < named.length || !size) return [openFinding(words, 'not all of these are laws or symmetries')];
   try {
-    const together = mutual(laws.flatMap((law) => piecesOf(law) ?? []), values);
+    const together = mutual(
+      laws.flatMap((law) => piecesOf(law) ?? []),
+      values,
+    );
     return [count(words, values, laws, together, size)];
   } catch (error) {
     return [failureFinding(`${words} on ${sizeText(size)}`, values, error)];

@@ -15,7 +15,12 @@ export function differenceHint(
     return `all levels differ by ${(a0 - b0).toFixed(9)}: a constant is missing`;
   const spread = last[1] - b0;
   const ratio = spread === 0 ? NaN : (last[0] - a0) / spread;
-  if (shared > 2 && Number.isFinite(ratio) && !near(ratio, 1) && pairs.every(([a, b]) => near(a - a0, ratio * (b - b0))))
+  if (
+    shared > 2 &&
+    Number.isFinite(ratio) &&
+    !near(ratio, 1) &&
+    pairs.every(([a, b]) => near(a - a0, ratio * (b - b0)))
+  )
     return `the levels are in the ratio ${ratio.toFixed(6)}: a factor is missing`;
   const whole = left.length === leftDimension && right.length === rightDimension;
   if (whole && shared === left.length && pairs.every(([a], k) => near(a, -(right[shared - 1 - k] ?? 0))))
@@ -30,7 +35,11 @@ export function differenceHint(
 }
 
 /** Whether the levels of `small` that lie within the range of `large` occur there, each as often at least. */
-function contained(small: readonly number[], large: readonly number[], near: (a: number, b: number) => boolean): boolean {
+function contained(
+  small: readonly number[],
+  large: readonly number[],
+  near: (a: number, b: number) => boolean,
+): boolean {
   const top = large.at(-1) ?? -Infinity;
   let from = 0;
   for (const level of small) {

@@ -21,8 +21,9 @@ const source =
 const extents = [1, 2, 3, 4];
 const mostSpins = 512;
 
-/** The declared size, and small straight ones of the same dimension that stay small, each once. */
-export function sizesToDecide(lattice: Lattice): Size[] {
+/** The sizes of the line; without any the declared one, and small straight ones of the same dimension, each once. */
+export function sizesToDecide(lattice: Lattice, asked: readonly Size[] = []): readonly Size[] {
+  if (asked.length > 0) return asked;
   const dimension = lattice.family.dimension;
   const cells = lattice.family.vertices.length + lattice.family.links.length + lattice.family.plaquettes.length;
   const small = extents
@@ -38,7 +39,11 @@ const sideText = (side: LocalString | Extended, by: readonly number[], context: 
     : stringPhrase(translateString(side, by), context.family);
 
 /** The pair of rules that commute on one side only, in words and as data. */
-function breakWitness(found: CommutationBreak, { rules }: DictionaryDeclaration, context: Context): Record<string, unknown> {
+function breakWitness(
+  found: CommutationBreak,
+  { rules }: DictionaryDeclaration,
+  context: Context,
+): Record<string, unknown> {
   const [first, second] = [rules[found.first], rules[found.second]];
   if (!first || !second) return {};
   const zero = found.shift.map(() => 0);
@@ -57,7 +62,12 @@ function breakWitness(found: CommutationBreak, { rules }: DictionaryDeclaration,
 const phaseWord = (phase: number): string => ['+1', 'i', '-1', '-i'][phase & 3] ?? '';
 
 /** A product of generators whose two sides are ±1 with opposite signs, written out. */
-function signWitness(found: SignBreak, { rules }: DictionaryDeclaration, context: Context, size: string): Record<string, unknown> {
+function signWitness(
+  found: SignBreak,
+  { rules }: DictionaryDeclaration,
+  context: Context,
+  size: string,
+): Record<string, unknown> {
   const shown = found.members.slice(0, 8);
   const written = (side: 'left' | 'right'): string =>
     shown
@@ -77,7 +87,13 @@ function signWitness(found: SignBreak, { rules }: DictionaryDeclaration, context
   };
 }
 
-function commutationFinding(name: string, kept: KeptCommutation, declaration: DictionaryDeclaration, context: Context, figures: Record<string, unknown>): Finding {
+function commutationFinding(
+  name: string,
+  kept: KeptCommutation,
+  declaration: DictionaryDeclaration,
+  context: Context,
+  figures: Record<string, unknown>,
+): Finding {
   if (kept.kept === false) {
     const [first] = kept.broken;
     return {
@@ -111,8 +127,15 @@ const dimensionWords = (found: SizeFindings): string =>
     ? `both sectors have dimension 2^${String(found.leftDimension)}`
     : `the sectors have dimensions 2^${String(found.leftDimension)} and 2^${String(found.rightDimension)}: the larger side holds spins that the map does not see`;
 
-function holdsFinding(name: string, all: readonly SizeFindings[], declared: SizeFindings, figures: Record<string, unknown>): Finding {
-  const good = all.filter((found) => !found.signBreak && !found.commutationBroken);
+function holdsFinding(
+  name: string,
+  all: readonly SizeFindings[],
+  declared: SizeFindings,
+  figures: Record<string, unknown>,
+): Finding {
+  const good = all
+    .filter((found) => !found.signBreak && !found.commutationBroken)
+    .sort((a, b) => a.leftSpins - b.leftSpins);
   const bad = all.filter((found) => found.signBreak ?? found.commutationBroken);
   const left = declared.leftSectors.map((sector) => sector.text);
   const right = declared.rightSectors.map((sector) => sector.text);
@@ -123,14 +146,21 @@ function holdsFinding(name: string, all: readonly SizeFindings[], declared: Size
     figures,
     cautions: [
       `Signs of global relations do not follow from commutation: they hold on the listed sizes. On ${declared.size} ${dimensionWords(declared)}.`,
-      ...(bad.length === 0 ? [] : [`On ${failing} the map fails: the sign of a relation, or commutation, is broken there.`]),
+      ...(bad.length === 0
+        ? []
+        : [`On ${failing} the map fails: the sign of a relation, or commutation, is broken there.`]),
     ],
     sources: [source],
   };
 }
 
 /** Claims of a dictionary: commutation for every size; relations with their signs, sectors and dimensions per size. */
-export function dictionaryFindings(value: MapValue, declaration: DictionaryDeclaration, values: Values): Finding[] {
+export function dictionaryFindings(
+  value: MapValue,
+  declaration: DictionaryDeclaration,
+  values: Values,
+  asked: readonly Size[] = [],
+): Finding[] {
   const { lattice } = values;
   if (!lattice) return [];
   const budget = newBudget();
@@ -142,9 +172,11 @@ export function dictionaryFindings(value: MapValue, declaration: DictionaryDecla
     name: value.name,
   };
   const kept = keptCommutation(declaration.rules, budget);
-  const decided = sizesToDecide(lattice).map((size) => ({ size, found: onSize(declaration, context, size, budget) }));
+  const sizes = sizesToDecide(lattice, asked);
+  const decided = sizes.map((size) => ({ size, found: onSize(declaration, context, size, budget) }));
   const all = decided.flatMap(({ found }) => ('problem' in found ? [] : [found]));
-  const declared = all.find((found) => found.size === sizeText(lattice.size));
+  const [main = lattice.size] = sizes;
+  const declared = all.find((found) => found.size === sizeText(main));
   const signs = kept.kept === false || !declared ? false : !declared.signBreak && !declared.commutationBroken;
   const figures = {
     commutation: kept.kept === true || (kept.kept === 'depends' && declared?.commutationBroken === undefined),
@@ -157,7 +189,8 @@ export function dictionaryFindings(value: MapValue, declaration: DictionaryDecla
   const first = commutationFinding(value.name, kept, declaration, context, figures);
   if (kept.kept === false) return [first];
   if (!declared) {
-    const problem = decided.flatMap(({ found }) => ('problem' in found ? [found.problem] : []))[0] ?? 'no size was decided';
+    const problem =
+      decided.flatMap(({ found }) => ('problem' in found ? [found.problem] : []))[0] ?? 'no size was decided';
     return [first, openFinding(`product relations of ${value.name}`, problem, { ...figures })];
   }
   if (declared.signBreak) {
@@ -173,8 +206,18 @@ export function dictionaryFindings(value: MapValue, declaration: DictionaryDecla
     ];
   }
   if (declared.commutationBroken)
-    return [first, openFinding(`product relations of ${value.name} on ${declared.size}`, 'wrapping breaks commutation on this size; take a larger one', figures)];
-  const tilted = isStraight(lattice.size) ? [] : ['The declared size is tilted; the small sizes decided besides it are straight.'];
+    return [
+      first,
+      openFinding(
+        `product relations of ${value.name} on ${declared.size}`,
+        'wrapping breaks commutation on this size; take a larger one',
+        figures,
+      ),
+    ];
+  const tilted =
+    isStraight(main) || asked.length > 0
+      ? []
+      : ['The declared size is tilted; the small sizes decided besides it are straight.'];
   const holds = holdsFinding(value.name, all, declared, figures);
   return [first, { ...holds, cautions: [...(holds.cautions ?? []), ...tilted] }];
 }

@@ -1,4 +1,5 @@
 import type { MapDeclaration, MapValue, Values } from '../language/values.ts';
+import type { Size } from '../lattice/cells.ts';
 import type { Audit, Finding } from './audit.ts';
 import { dictionaryFindings } from './map-dictionary.ts';
 import { openFinding } from './numeric.ts';
@@ -10,6 +11,8 @@ type FindingsOf = {
     value: MapValue,
     declaration: Extract<MapDeclaration, { kind: K }>,
     values: Values,
+    /** Sizes that the line asks for; empty: the declared one and small ones. */
+    sizes: readonly Size[],
   ) => readonly Finding[];
 };
 
@@ -17,13 +20,15 @@ const findingsOf: FindingsOf = {
   dictionary: dictionaryFindings,
 };
 
-function decide(value: MapValue, values: Values): readonly Finding[] {
+function decide(value: MapValue, values: Values, sizes: readonly Size[]): readonly Finding[] {
   const { declaration } = value;
   // One entry of the table fits the declaration of its own kind; TypeScript cannot follow the pairing.
   const find = findingsOf[declaration.kind] as
-    | ((value: MapValue, declaration: MapDeclaration, values: Values) => readonly Finding[])
+    | ((value: MapValue, declaration: MapDeclaration, values: Values, sizes: readonly Size[]) => readonly Finding[])
     | undefined;
-  return find ? find(value, declaration, values) : [openFinding(value.name, `no audit of a ${declaration.kind} map`)];
+  return find
+    ? find(value, declaration, values, sizes)
+    : [openFinding(value.name, `no audit of a ${declaration.kind} map`)];
 }
 
 export const map: Audit = {
@@ -31,14 +36,23 @@ export const map: Audit = {
   help: 'Does a map hold? Commutation kept for every size; product relations and their signs, sectors and dimensions for each size.',
   example: 'audit map bonds',
   questions: (statement, values) => [
-    { audit: 'map', statement, values, size: undefined, part: '', key: keyOf(statement, values, '', ['law', 'symmetry']) },
+    {
+      audit: 'map',
+      statement,
+      values,
+      size: undefined,
+      part: '',
+      key: keyOf(statement, values, '', ['law', 'symmetry']),
+    },
   ],
   cost: () => cheap,
   // eslint-disable-next-line require-yield -- symbolic and exact, answered in one go
   *decide({ statement, values }) {
     return statement.subjects.flatMap((subject) => {
       const value = values.find(subject.name);
-      return value?.what === 'map' ? decide(value, values) : [openFinding(subject.name, `${subject.name} is not a map`)];
+      return value?.what === 'map'
+        ? decide(value, values, statement.sizes)
+        : [openFinding(subject.name, `${subject.name} is not a map`)];
     });
   },
 };

@@ -27,7 +27,11 @@ export const openFinding = (statement: string, reason: string, figures: Record<s
 });
 
 const big = (n: number): string => (n < 1e4 ? String(n) : n.toExponential(1));
-export const costWords = (cost: { readonly dimension: number; readonly bytes: number; readonly operations: number }): string =>
+export const costWords = (cost: {
+  readonly dimension: number;
+  readonly bytes: number;
+  readonly operations: number;
+}): string =>
   `dimension ${String(cost.dimension)}, about ${String(Math.ceil(cost.bytes / 2 ** 20))} MiB and ${big(cost.operations)} multiplications`;
 
 /** What a fault of the solver means, as a finding: a term that leaves the sector refutes, the rest stays open or is a problem. */
@@ -45,7 +49,10 @@ export class Fault extends Error {
 /** A constraint by its label and the spins it acts on. */
 const constraintWords = ({ constraints }: FiniteSubject, k: number): string => constraints[k]?.label ?? 'a label';
 
-function faultSentence(fault: SolveFault, subject: FiniteSubject): { readonly reason: string; readonly isProblem: boolean } {
+function faultSentence(
+  fault: SolveFault,
+  subject: FiniteSubject,
+): { readonly reason: string; readonly isProblem: boolean } {
   const size = sizeText(subject.cluster.size);
   switch (fault.code) {
     case 'constraints clash':
@@ -54,21 +61,42 @@ function faultSentence(fault: SolveFault, subject: FiniteSubject): { readonly re
         isProblem: true,
       };
     case 'no state':
-      return { reason: `the sector holds no state on ${size}: the labels contradict each other at ${constraintWords(subject, fault.constraint)}`, isProblem: true };
+      return {
+        reason: `the sector holds no state on ${size}: the labels contradict each other at ${constraintWords(subject, fault.constraint)}`,
+        isProblem: true,
+      };
     case 'not Hermitian':
-      return { reason: `${constraintWords(subject, fault.constraint)} is not Hermitian on ${size}: factors that anticommute meet on one spin`, isProblem: true };
+      return {
+        reason: `${constraintWords(subject, fault.constraint)} is not Hermitian on ${size}: factors that anticommute meet on one spin`,
+        isProblem: true,
+      };
     case 'rules allow no state':
       return { reason: `the rules allow no state on ${size}`, isProblem: true };
     case 'rule broken by constraint':
-      return { reason: `${constraintWords(subject, fault.constraint)} does not keep the rules, so no sector has both`, isProblem: true };
+      return {
+        reason: `${constraintWords(subject, fault.constraint)} does not keep the rules, so no sector has both`,
+        isProblem: true,
+      };
     case 'too many states':
-      return { reason: `more than ${String(fault.limit)} states obey the rules on ${size}; take a smaller size`, isProblem: false };
+      return {
+        reason: `more than ${String(fault.limit)} states obey the rules on ${size}; take a smaller size`,
+        isProblem: false,
+      };
     case 'too many spins':
-      return { reason: `${String(fault.spins)} spins are left in the sector on ${size}; name more symmetries or take a smaller size`, isProblem: false };
+      return {
+        reason: `${String(fault.spins)} spins are left in the sector on ${size}; name more symmetries or take a smaller size`,
+        isProblem: false,
+      };
     case 'too large':
-      return { reason: `needs ${costWords(fault.cost)}, over the limit of ${big(fault.limit)} ${fault.what}`, isProblem: false };
+      return {
+        reason: `needs ${costWords(fault.cost)}, over the limit of ${big(fault.limit)} ${fault.what}`,
+        isProblem: false,
+      };
     case 'not converged':
-      return { reason: `the eigensolver found ${String(fault.found)} levels and stopped after ${String(fault.products)} products`, isProblem: false };
+      return {
+        reason: `the eigensolver found ${String(fault.found)} levels and stopped after ${String(fault.products)} products`,
+        isProblem: false,
+      };
     case 'term leaves':
       return { reason: `a term does not commute with ${constraintWords(subject, fault.constraint)}`, isProblem: false };
   }
@@ -90,7 +118,11 @@ function leavingFinding(statement: string, fault: Fault, family: Values['lattice
   };
 }
 
-function named(string: FiniteSubject['model']['terms'][number]['string'], subject: FiniteSubject, lattice: NonNullable<Values['lattice']>): string {
+function named(
+  string: FiniteSubject['model']['terms'][number]['string'],
+  subject: FiniteSubject,
+  lattice: NonNullable<Values['lattice']>,
+): string {
   const factors = pauliFactors(string).flatMap(({ spin, pauli }) => {
     const site = subject.table.sites[spin];
     return site ? [{ ...site, pauli }] : [];
@@ -99,7 +131,11 @@ function named(string: FiniteSubject['model']['terms'][number]['string'], subjec
 }
 
 /** Pauli matrices of a finite string, by spin. */
-export function pauliFactors(string: { readonly n: number; readonly x: Uint32Array; readonly z: Uint32Array }): { spin: number; pauli: 'x' | 'y' | 'z' }[] {
+export function pauliFactors(string: {
+  readonly n: number;
+  readonly x: Uint32Array;
+  readonly z: Uint32Array;
+}): { spin: number; pauli: 'x' | 'y' | 'z' }[] {
   const factors: { spin: number; pauli: 'x' | 'y' | 'z' }[] = [];
   for (let spin = 0; spin < string.n; spin++) {
     const x = ((string.x[spin >>> 5] ?? 0) >>> (spin & 31)) & 1;
@@ -129,7 +165,12 @@ export function subjectCost(values: Values, subject: Subject, size: Size, levels
     if (!told.ok) return { operations: 0, bytes: 0, words: told.fault.code };
     return { operations: told.cost.operations, bytes: told.cost.bytes, words: costWords(told.cost) };
   } catch (error) {
-    if (error instanceof Unanswerable || error instanceof MissingValue || error instanceof NotHermitian || error instanceof BudgetSpent)
+    if (
+      error instanceof Unanswerable ||
+      error instanceof MissingValue ||
+      error instanceof NotHermitian ||
+      error instanceof BudgetSpent
+    )
       return { operations: 0, bytes: 0, words: error.message };
     throw error;
   }
@@ -167,11 +208,14 @@ export function failureFinding(statement: string, values: Values, error: unknown
     const leaving = leavingFinding(statement, error, values.lattice);
     if (leaving) return leaving;
     const { reason, isProblem } = faultSentence(error.fault, error.subject);
-    return { ...openFinding(statement, reason, { size: sizeText(error.subject.cluster.size) }), ...(isProblem ? { problem: reason } : {}) };
+    return {
+      ...openFinding(statement, reason, { size: sizeText(error.subject.cluster.size) }),
+      ...(isProblem ? { problem: reason } : {}),
+    };
   }
-  if (error instanceof Unanswerable) return { ...openFinding(statement, error.message), ...(error.isProblem ? { problem: error.message } : {}) };
-  if (error instanceof MissingValue)
-    return { ...openFinding(statement, error.message), problem: error.message };
+  if (error instanceof Unanswerable)
+    return { ...openFinding(statement, error.message), ...(error.isProblem ? { problem: error.message } : {}) };
+  if (error instanceof MissingValue) return { ...openFinding(statement, error.message), problem: error.message };
   if (error instanceof NotHermitian || error instanceof BudgetSpent) return openFinding(statement, error.message);
   throw error;
 }

@@ -22,7 +22,11 @@ export function verticesOf(family: LatticeFamily, cell: Cell): Offset[] {
 }
 
 /** Lowest and highest coordinates of the vertices of some cells along direction d; undefined without cells. */
-export function spanOf(family: LatticeFamily, cells: readonly Cell[], d: number): { low: number; high: number } | undefined {
+export function spanOf(
+  family: LatticeFamily,
+  cells: readonly Cell[],
+  d: number,
+): { low: number; high: number } | undefined {
   const along = cells.flatMap((cell) => verticesOf(family, cell)).map((offset) => offset[d] ?? 0);
   if (along.length === 0) return undefined;
   return { low: along.reduce((a, b) => Math.min(a, b)), high: along.reduce((a, b) => Math.max(a, b)) };

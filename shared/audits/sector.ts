@@ -1,5 +1,12 @@
 import type { FiniteModel, FiniteString, SiteTable } from '../algebra/finite/types.ts';
-import { isWrapProblem, siteTable, wrapExtended, wrapOperator, wrapOrbit, type SpeciesCells } from '../algebra/finite/wrap.ts';
+import {
+  isWrapProblem,
+  siteTable,
+  wrapExtended,
+  wrapOperator,
+  wrapOrbit,
+  type SpeciesCells,
+} from '../algebra/finite/wrap.ts';
 import type { Operator } from '../algebra/pauli/types.ts';
 import type { LawValue, MapValue, RuleValue, SectorLabel, Subject, SymmetryValue, Values } from '../language/values.ts';
 import { newCluster, sizeText, type Cluster } from '../lattice/cluster.ts';
@@ -39,12 +46,15 @@ export function clusterOf(values: Values, size: Size): Cluster {
 /** Species on which an operator acts. */
 export function speciesOfOperator(operator: Operator, into: Set<string>): void {
   const parts = operator.extended.flatMap((term) => term.extended.parts);
-  for (const { string } of [...operator.families, ...parts]) for (const factor of string.factors) into.add(factor.species);
+  for (const { string } of [...operator.families, ...parts])
+    for (const factor of string.factors) into.add(factor.species);
 }
 
 function speciesOfLabel(values: Values, label: SectorLabel, into: Set<string>): void {
   const value = values.find(label.name);
-  const add = (strings: readonly { readonly string: { readonly factors: readonly { readonly species: string }[] } }[]): void => {
+  const add = (
+    strings: readonly { readonly string: { readonly factors: readonly { readonly species: string }[] } }[],
+  ): void => {
     for (const { string } of strings) for (const factor of string.factors) into.add(factor.species);
   };
   if (value?.what === 'law') add(value.families);
@@ -57,12 +67,19 @@ function speciesOfLabel(values: Values, label: SectorLabel, into: Set<string>): 
 export function speciesCells(values: Values, names: ReadonlySet<string>): SpeciesCells[] {
   const all = [...values.all.values()];
   return all.flatMap((value) =>
-    value.what === 'spins' && names.has(value.name) ? [{ name: value.name, kind: value.kind, classes: value.classes }] : [],
+    value.what === 'spins' && names.has(value.name)
+      ? [{ name: value.name, kind: value.kind, classes: value.classes }]
+      : [],
   );
 }
 
 /** All instances of a law on a cluster, in the order of its classes; what an open edge leaves out is not there. */
-export function lawConstraints(cluster: Cluster, table: SiteTable, law: LawValue, value: 1 | -1 = law.value): SectorConstraint[] {
+export function lawConstraints(
+  cluster: Cluster,
+  table: SiteTable,
+  law: LawValue,
+  value: 1 | -1 = law.value,
+): SectorConstraint[] {
   return fitting(`law ${law.name}`, cluster, () =>
     law.families.flatMap((family) =>
       wrapOrbit(table, cluster, family).map((string) => ({ label: law.name, string, value })),
@@ -71,7 +88,12 @@ export function lawConstraints(cluster: Cluster, table: SiteTable, law: LawValue
 }
 
 /** The one constraint of a symmetry on a cluster. */
-export function symmetryConstraint(cluster: Cluster, table: SiteTable, symmetry: SymmetryValue, value: 1 | -1 = 1): SectorConstraint {
+export function symmetryConstraint(
+  cluster: Cluster,
+  table: SiteTable,
+  symmetry: SymmetryValue,
+  value: 1 | -1 = 1,
+): SectorConstraint {
   const string = fitting(`symmetry ${symmetry.name}`, cluster, () => wrapExtended(table, cluster, symmetry.extended));
   return { label: symmetry.name, string, value };
 }
@@ -87,7 +109,8 @@ function resolve(values: Values, cluster: Cluster, table: SiteTable, sector: rea
   for (const label of sector) {
     const value = values.find(label.name);
     if (value?.what === 'law') labels.constraints.push(...lawConstraints(cluster, table, value, label.value));
-    else if (value?.what === 'symmetry') labels.constraints.push(symmetryConstraint(cluster, table, value, label.value));
+    else if (value?.what === 'symmetry')
+      labels.constraints.push(symmetryConstraint(cluster, table, value, label.value));
     else if (value?.what === 'rule') labels.rules.push(value);
     else if (value?.what === 'map') labels.images.push(value);
     else throw new Unanswerable(`${label.name} is not a law, a symmetry, a rule or a state map`, true);
@@ -101,14 +124,16 @@ function resolve(values: Values, cluster: Cluster, table: SiteTable, sector: rea
  */
 export function finiteSubject(values: Values, subject: Subject, size: Size): FiniteSubject {
   const value = values.find(subject.name);
-  if (value?.what !== 'model' && value?.what !== 'operator') throw new Unanswerable(`${subject.name} is not a model`, true);
+  if (value?.what !== 'model' && value?.what !== 'operator')
+    throw new Unanswerable(`${subject.name} is not a model`, true);
   const cluster = clusterOf(values, size);
   const names = new Set<string>(value.what === 'model' ? value.species : []);
   speciesOfOperator(value.operator, names);
   for (const label of subject.sector) speciesOfLabel(values, label, names);
   const table = siteTable(cluster, speciesCells(values, names));
   const model = wrapOperator(table, cluster, value.operator);
-  if (isWrapProblem(model)) throw new Unanswerable(`${subject.name} does not fit on ${sizeText(size)}: ${model.message}`);
+  if (isWrapProblem(model))
+    throw new Unanswerable(`${subject.name} does not fit on ${sizeText(size)}: ${model.message}`);
   const { constraints, rules, images } = resolve(values, cluster, table, subject.sector);
   return {
     name: subject.name,

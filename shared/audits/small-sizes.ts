@@ -15,7 +15,10 @@ import { speciesCells } from './sector.ts';
 
 /** All tuples of extents, shortest first. */
 function tuples(ranges: readonly (readonly number[])[]): number[][] {
-  const all = ranges.reduce<number[][]>((heads, range) => heads.flatMap((head) => range.map((l) => [...head, l])), [[]]);
+  const all = ranges.reduce<number[][]>(
+    (heads, range) => heads.flatMap((head) => range.map((l) => [...head, l])),
+    [[]],
+  );
   const volume = (extents: readonly number[]): number => extents.reduce((product, l) => product * l, 1);
   return all.sort((a, b) => volume(a) - volume(b) || Math.max(...a) - Math.max(...b));
 }
@@ -62,7 +65,10 @@ const smallCells = 36;
  * the infinite lattice commute after all, because the overlap wraps onto itself. Empty where there are none, or the
  * lattice is no torus. Sizes that a period does not fit are passed over.
  */
-export function smallTori(pairs: readonly { readonly term: Piece | undefined; readonly law: Piece }[], values: Values): string[] {
+export function smallTori(
+  pairs: readonly { readonly term: Piece | undefined; readonly law: Piece }[],
+  values: Values,
+): string[] {
   const { lattice } = values;
   const whole = pairs.flatMap(({ term, law }) => (term ? [{ term, law }] : []));
   if (!lattice || whole.length === 0 || !lattice.periodic.every(Boolean)) return [];
@@ -80,7 +86,10 @@ export function smallTori(pairs: readonly { readonly term: Piece | undefined; re
       if (isLatticeProblem(cluster)) continue;
       const table = siteTable(cluster, species);
       const commutes = whole.every(({ term, law }) => {
-        const strings = fits(() => ({ a: wrapPiece(table, cluster, term, budget), b: wrapPiece(table, cluster, law, budget) }));
+        const strings = fits(() => ({
+          a: wrapPiece(table, cluster, term, budget),
+          b: wrapPiece(table, cluster, law, budget),
+        }));
         return strings && !clash(strings.a, strings.b, budget);
       });
       if (commutes) wrapped.push(sizeText(size));
@@ -90,7 +99,9 @@ export function smallTori(pairs: readonly { readonly term: Piece | undefined; re
   }
   if (wrapped.length === 0) return [];
   const here = wrapped.includes(declared) ? ', the declared size among them' : '';
-  return [`on ${inWords(wrapped)} the overlap wraps onto itself and cancels${here}; the verdict speaks of the lattice at large`];
+  return [
+    `on ${inWords(wrapped)} the overlap wraps onto itself and cancels${here}; the verdict speaks of the lattice at large`,
+  ];
 }
 
 function fits<T>(run: () => T): T | undefined {
@@ -106,7 +117,11 @@ const inWords = (list: readonly string[]): string =>
   list.length < 2 ? list.join('') : `${list.slice(0, -1).join(', ')} and ${list.at(-1) ?? ''}`;
 
 /** What decides the boundary along one direction: the widest string, the common step, and how far pinned strings stand from the corner. */
-function widths(family: LatticeFamily, pieces: readonly Piece[], d: number): { width: number; step: number; pinned: number } {
+function widths(
+  family: LatticeFamily,
+  pieces: readonly Piece[],
+  d: number,
+): { width: number; step: number; pinned: number } {
   let [width, step, pinned] = [1, 1, 0];
   for (const { cells, steps } of pieces.flatMap(stringsOf)) {
     const span = spanOf(family, cells, d);
@@ -145,9 +160,13 @@ export function boundaryPairs(terms: readonly Piece[], laws: readonly Piece[], v
   const reach = family.vectors.map((_, d) => widths(family, all, d));
   const enough = reach.map(({ width, pinned }) => 2 * width + pinned);
   const top = reach.map(({ step }, d) => (enough[d] ?? 1) + step - 1);
-  const ranges = reach.map(({ step }, d) => (periodic[d] ? [Math.ceil((enough[d] ?? 1) / step) * step] : upTo(top[d] ?? 1)));
+  const ranges = reach.map(({ step }, d) =>
+    periodic[d] ? [Math.ceil((enough[d] ?? 1) / step) * step] : upTo(top[d] ?? 1),
+  );
   const sizes = tuples(ranges);
-  const fitting = sizes.filter((extents) => extents.reduce((product, l) => product * l, 1) <= edgeLimits.cells).slice(0, edgeLimits.sizes);
+  const fitting = sizes
+    .filter((extents) => extents.reduce((product, l) => product * l, 1) <= edgeLimits.cells)
+    .slice(0, edgeLimits.sizes);
   const species = speciesCells(values, speciesOfPieces(all));
   const budget = newBudget(edgeLimits.operations, 'operations at open edges');
   const failing = new Set<number>();
@@ -160,7 +179,9 @@ export function boundaryPairs(terms: readonly Piece[], laws: readonly Piece[], v
       const found = clashesOn(extents, terms, laws, values, species, budget);
       looked++;
       if (found.size === 0) continue;
-      const counts = extents.every((l, d) => periodic[d] || l >= (enough[d] ?? 1)) || extents.every((l, d) => periodic[d] || l === here[d]);
+      const counts =
+        extents.every((l, d) => periodic[d] || l >= (enough[d] ?? 1)) ||
+        extents.every((l, d) => periodic[d] || l === here[d]);
       if (!counts) {
         small.push(sizeText(straight(...extents)));
         continue;
@@ -174,12 +195,16 @@ export function boundaryPairs(terms: readonly Piece[], laws: readonly Piece[], v
     if (!(error instanceof BudgetSpent)) throw error;
   }
   if (witness) return { words: '', cautions: [], failure: { terms: failing.size, witness } };
-  const cautions = small.length > 0 ? [`on open lattices as small as ${inWords(small.slice(0, 6))} edges meet and it fails`] : [];
+  const cautions =
+    small.length > 0 ? [`on open lattices as small as ${inWords(small.slice(0, 6))} edges meet and it fails`] : [];
   if (looked === sizes.length) return { words: ', also at the open boundary', cautions };
   const last = fitting[looked - 1];
   return {
     words: last ? `, at the open boundary on the ${String(looked)} smallest sizes` : '',
-    cautions: [...cautions, `the open boundary was looked at on ${String(looked)} of the ${String(sizes.length)} sizes that decide it${last ? `, up to ${sizeText(straight(...last))}` : ''}`],
+    cautions: [
+      ...cautions,
+      `the open boundary was looked at on ${String(looked)} of the ${String(sizes.length)} sizes that decide it${last ? `, up to ${sizeText(straight(...last))}` : ''}`,
+    ],
   };
 }
 

@@ -12,7 +12,11 @@ import { finiteSubject, subjectWords } from './sector.ts';
 const defaultLevels = 6;
 
 /** Levels of both sides that can be held against each other: the last multiplet whole on both, else K of each. */
-function compared(left: Spectrum, right: Spectrum, levels: number): { left: readonly number[]; right: readonly number[] } {
+function compared(
+  left: Spectrum,
+  right: Spectrum,
+  levels: number,
+): { left: readonly number[]; right: readonly number[] } {
   const whole = [left, right].every((side) => side.multiplets.at(-1)?.complete === true);
   return whole
     ? { left: left.energies, right: right.energies }
@@ -54,7 +58,13 @@ function verdict(words: string, size: Size, left: Spectrum, right: Spectrum, lev
       evidence: { kind: 'counterexample' },
       statement: `the levels of ${words} differ ${at}`,
       figures,
-      witness: { level: first >= 0 ? first + 1 : shared + 1, left: a[first] ?? null, right: b[first] ?? null, suggests: hint, words: hint ? `${where}; ${hint}` : where },
+      witness: {
+        level: first >= 0 ? first + 1 : shared + 1,
+        left: a[first] ?? null,
+        right: b[first] ?? null,
+        suggests: hint,
+        words: hint ? `${where}; ${hint}` : where,
+      },
     };
   }
   const count = figures.all ? `all ${String(a.length)} levels` : `the lowest ${String(a.length)} levels`;
@@ -75,7 +85,12 @@ function* decide(question: Question, means: Means): Generator<Progress, readonly
   const words = `${subjectWords(values, left)} and ${subjectWords(values, right)}`;
   const solved = function* (side: Subject): Generator<Progress, { spectrum: Spectrum; notes: readonly string[] }> {
     const subject = finiteSubject(values, side, size);
-    const spectrum = yield* levelsOf(spectrumQuestion(values, subject, levels), subject, means, `${side.name} on ${sizeText(size)}`);
+    const spectrum = yield* levelsOf(
+      spectrumQuestion(values, subject, levels),
+      subject,
+      means,
+      `${side.name} on ${sizeText(size)}`,
+    );
     return { spectrum, notes: sideNotes(side.name, subject.model.notes, spectrum) };
   };
   try {
@@ -92,7 +107,9 @@ function* decide(question: Question, means: Means): Generator<Progress, readonly
 export function sideNotes(name: string, notes: readonly string[], spectrum: Spectrum): string[] {
   const leaving = spectrum.leaving.length;
   const projected =
-    leaving === 0 ? [] : [`${name} is taken as PHP: ${String(leaving)} terms lead out of the states that the rules allow`];
+    leaving === 0
+      ? []
+      : [`${name} is taken as PHP: ${String(leaving)} terms lead out of the states that the rules allow`];
   return [...notes.map((note) => `${name}: ${note}`), ...projected];
 }
 

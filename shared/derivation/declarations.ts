@@ -40,7 +40,10 @@ function ruleOf(rule: DictionaryRule, context: TypesetContext): NonNullable<Repo
 }
 
 /** Rules of a dictionary, one for each line and form that its classes have. */
-function dictionaryRules(rules: readonly DictionaryRule[], context: TypesetContext): NonNullable<ReportDeclaration['rules']> {
+function dictionaryRules(
+  rules: readonly DictionaryRule[],
+  context: TypesetContext,
+): NonNullable<ReportDeclaration['rules']> {
   const all = new Map<string, NonNullable<ReportDeclaration['rules']>[number]>();
   for (const rule of rules) {
     const set = ruleOf(rule, context);
@@ -58,7 +61,12 @@ function mapDeclared(value: MapValue, context: TypesetContext): Declared {
     case 'dictionary': {
       const rules = dictionaryRules(declaration.rules, context);
       const tex = rules.map((rule) => `${rule.left} \\mapsto ${rule.right}`).join(',\\quad ');
-      return { ...both, tex: `${name}:\\ ${tex}`, spoken: `map ${nameSpoken(value.name)}, a dictionary of ${String(rules.length)} rules`, rules };
+      return {
+        ...both,
+        tex: `${name}:\\ ${tex}`,
+        spoken: `map ${nameSpoken(value.name)}, a dictionary of ${String(rules.length)} rules`,
+        rules,
+      };
     }
     case 'gauge': {
       const { symmetry, gauge } = declaration;
@@ -71,7 +79,11 @@ function mapDeclared(value: MapValue, context: TypesetContext): Declared {
     case 'circuit': {
       const gates = declaration.layers.map((layer) => `\\mathrm{${layer.gate}}`).join(',\\ ');
       const words = declaration.layers.map((layer) => layer.gate).join(', ');
-      return { ...both, tex: `${name}:\\ \\text{circuit } ${gates}`, spoken: `map ${nameSpoken(value.name)}, a circuit of ${words}` };
+      return {
+        ...both,
+        tex: `${name}:\\ \\text{circuit } ${gates}`,
+        spoken: `map ${nameSpoken(value.name)}, a circuit of ${words}`,
+      };
     }
     case 'solve':
       return {
@@ -91,7 +103,12 @@ function mapDeclared(value: MapValue, context: TypesetContext): Declared {
         return { left: `|${rule.bits}\\rangle`, right, leftOrbit: [], rightOrbit: [] };
       });
       const tex = rules.map((rule) => `${rule.left} \\mapsto ${rule.right}`).join(',\\quad ');
-      return { ...both, tex: `${name}:\\ ${tex}`, spoken: `map ${nameSpoken(value.name)}, a state map of ${String(rules.length)} states`, rules };
+      return {
+        ...both,
+        tex: `${name}:\\ ${tex}`,
+        spoken: `map ${nameSpoken(value.name)}, a state map of ${String(rules.length)} states`,
+        rules,
+      };
     }
     case 'then':
       return {
@@ -119,7 +136,13 @@ function declared(value: Value, context: TypesetContext): Declared | undefined {
     }
     case 'coupling': {
       const right = value.value ? ` = ${coefficientText(value.value)}` : '';
-      return { what: 'couplings', tex: `${nameTex(value.name)}${right}`, spoken: `coupling ${nameSpoken(value.name)}`, supports: [], language: 'both' };
+      return {
+        what: 'couplings',
+        tex: `${nameTex(value.name)}${right}`,
+        spoken: `coupling ${nameSpoken(value.name)}`,
+        supports: [],
+        language: 'both',
+      };
     }
     case 'law': {
       const strings = value.families.map((family) => family.string);
@@ -127,7 +150,10 @@ function declared(value: Value, context: TypesetContext): Declared | undefined {
         what: 'law',
         tex: lawTex(value, context, 'page'),
         spoken: lawSpoken(value, context),
-        supports: value.families.map((family) => ({ orbit: orbitOf(family.string.factors, context), steps: [...family.steps] })),
+        supports: value.families.map((family) => ({
+          orbit: orbitOf(family.string.factors, context),
+          steps: [...family.steps],
+        })),
         language: languageOf(speciesOf(strings), context),
       };
     }
@@ -143,7 +169,10 @@ function declared(value: Value, context: TypesetContext): Declared | undefined {
       const { operator } = value;
       const strings = [...operator.families.map((f) => f.string), ...operator.extended.map((term) => term.extended)];
       const head = value.parameter ? `_{${letters[value.parameter.kind]}}` : '';
-      const tex = namedOperatorTex(value.name, operator, context, 'page').replace(nameTex(value.name), `${nameTex(value.name)}${head}`);
+      const tex = namedOperatorTex(value.name, operator, context, 'page').replace(
+        nameTex(value.name),
+        `${nameTex(value.name)}${head}`,
+      );
       return {
         what: 'operator',
         tex,
@@ -168,12 +197,24 @@ function declared(value: Value, context: TypesetContext): Declared | undefined {
             .filter((f) => f.string.factors.length > 0)
             .map((f) => ({ orbit: orbitOf(f.string.factors, context), steps: [...family.steps] })),
         ),
-        language: languageOf(speciesOf(value.families.flatMap((f) => f.operator.families.map((g) => g.string))), context),
+        language: languageOf(
+          speciesOf(value.families.flatMap((f) => f.operator.families.map((g) => g.string))),
+          context,
+        ),
       };
     }
     case 'reference': {
-      const words = value.state.kind === 'uniform' ? `uniform over ${value.state.rules.join(', ')}` : `stabilizer state of ${value.state.laws.join(', ')}`;
-      return { what: 'reference', tex: `${nameTex(value.name)}:\\ \\text{${words}}`, spoken: `reference ${nameSpoken(value.name)}, ${words}`, supports: [], language: 'both' };
+      const words =
+        value.state.kind === 'uniform'
+          ? `uniform over ${value.state.rules.join(', ')}`
+          : `stabilizer state of ${value.state.laws.join(', ')}`;
+      return {
+        what: 'reference',
+        tex: `${nameTex(value.name)}:\\ \\text{${words}}`,
+        spoken: `reference ${nameSpoken(value.name)}, ${words}`,
+        supports: [],
+        language: 'both',
+      };
     }
     case 'map':
       return mapDeclared(value, context);

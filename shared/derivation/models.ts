@@ -4,7 +4,15 @@ import type { Kind, ReportModel, ReportTerm } from '../contracts/report.ts';
 import { newBudget } from '../limits.ts';
 import type { ModelValue, Values } from '../language/values.ts';
 import { classLabel, type TypesetContext } from '../typeset/context.ts';
-import { gather, gatheredSpoken, gatheredTex, inSourceOrder, operatorSpoken, sumTex, type Gathered } from '../typeset/operators.ts';
+import {
+  gather,
+  gatheredSpoken,
+  gatheredTex,
+  inSourceOrder,
+  operatorSpoken,
+  sumTex,
+  type Gathered,
+} from '../typeset/operators.ts';
 import { rolesOf } from '../typeset/roles.ts';
 
 /** Models as the report has them: families one by one, gathered sums, roles, and which sum of the origin each comes from. */
@@ -64,21 +72,39 @@ function pairsWith(
     const families = sum.members.flatMap((member) => origin.operator.families[member] ?? []);
     const image = value.map.image({ families, extended: [] }, budget);
     if (!image.ok) return [];
-    const targets = new Set(image.value.families.filter((f) => !isConstant(f)).flatMap((f) => groupOf.get(bodyOf(f)) ?? []));
+    const targets = new Set(
+      image.value.families.filter((f) => !isConstant(f)).flatMap((f) => groupOf.get(bodyOf(f)) ?? []),
+    );
     return [...targets].map((target): [number, number] => [k, target]);
   });
 }
 
 /** Gathered sums of a model, constants left out, in the order of its source; of an image, in the order of its origin. */
-function sumsOf(model: ModelValue, values: Values, context: TypesetContext): { sums: Gathered[]; image: ReportModel['image'] } {
-  const all = gather(model.operator, context).filter((sum) => !sum.members.every((m) => isConstantAt(model.operator, m)));
-  const ordered = inSourceOrder(model.operator, all, model.pieces.map((piece) => piece.operator));
+function sumsOf(
+  model: ModelValue,
+  values: Values,
+  context: TypesetContext,
+): { sums: Gathered[]; image: ReportModel['image'] } {
+  const all = gather(model.operator, context).filter(
+    (sum) => !sum.members.every((m) => isConstantAt(model.operator, m)),
+  );
+  const ordered = inSourceOrder(
+    model.operator,
+    all,
+    model.pieces.map((piece) => piece.operator),
+  );
   const { image } = model;
   const origin = image && values.find(image.of);
   if (!image || origin?.what !== 'model') return { sums: ordered, image: null };
   const from = sumsOf(origin, values, context);
-  const pairs = pairsWith({ operator: origin.operator, sums: from.sums }, { operator: model.operator, sums: ordered }, values, image.map);
-  const first = (k: number): number => Math.min(...pairs.filter(([, target]) => target === k).map(([source]) => source));
+  const pairs = pairsWith(
+    { operator: origin.operator, sums: from.sums },
+    { operator: model.operator, sums: ordered },
+    values,
+    image.map,
+  );
+  const first = (k: number): number =>
+    Math.min(...pairs.filter(([, target]) => target === k).map(([source]) => source));
   const order = ordered.map((_, k) => k).sort((a, b) => first(a) - first(b) || a - b);
   const moved = new Map(order.map((old, now) => [old, now]));
   return {
@@ -94,8 +120,12 @@ const isConstantAt = (operator: Operator, member: number): boolean => {
 
 /** Place of the piece of source that a sum comes from. */
 function placeOf(model: ModelValue, sum: Gathered): ReportModel['groups'][number]['place'] {
-  const bodies = new Set(sum.members.flatMap((m) => (model.operator.families[m] ? [bodyKey(model.operator.families[m].string)] : [])));
-  const piece = model.pieces.find(({ operator }) => operator.families.some((family) => bodies.has(bodyKey(family.string))));
+  const bodies = new Set(
+    sum.members.flatMap((m) => (model.operator.families[m] ? [bodyKey(model.operator.families[m].string)] : [])),
+  );
+  const piece = model.pieces.find(({ operator }) =>
+    operator.families.some((family) => bodies.has(bodyKey(family.string))),
+  );
   return piece ? { line: piece.place.line, column: piece.place.column, length: piece.place.length } : null;
 }
 
@@ -104,7 +134,12 @@ const signed = (sum: Gathered, style: 'page' | 'plain'): string => {
   return `${sign === '-' ? '-' : ''}${tex}`;
 };
 
-function termsOf(model: ModelValue, sums: readonly Gathered[], roles: readonly Kind[], context: TypesetContext): ReportTerm[] {
+function termsOf(
+  model: ModelValue,
+  sums: readonly Gathered[],
+  roles: readonly Kind[],
+  context: TypesetContext,
+): ReportTerm[] {
   return sums.flatMap((sum, group) =>
     sum.members.map((member): ReportTerm => {
       const family = model.operator.families[member];
@@ -113,7 +148,9 @@ function termsOf(model: ModelValue, sums: readonly Gathered[], roles: readonly K
         family ? { families: [family], extended: [] } : { families: [], extended: extended ? [extended] : [] },
         context,
       )[0];
-      const factors = family ? family.string.factors : (extended?.extended.parts.flatMap((part) => part.string.factors) ?? []);
+      const factors = family
+        ? family.string.factors
+        : (extended?.extended.parts.flatMap((part) => part.string.factors) ?? []);
       const steps = family ? family.steps : (extended?.extended.parts[0]?.steps ?? []);
       const coefficient = family?.coefficient ?? extended?.coefficient;
       return {
@@ -130,7 +167,10 @@ function termsOf(model: ModelValue, sums: readonly Gathered[], roles: readonly K
 }
 
 /** Kinds of cell by species, for roles. */
-const kindsOf = (context: TypesetContext, names: ReadonlySet<string>): Map<string, 'vertices' | 'links' | 'plaquettes' | 'cubes'> =>
+const kindsOf = (
+  context: TypesetContext,
+  names: ReadonlySet<string>,
+): Map<string, 'vertices' | 'links' | 'plaquettes' | 'cubes'> =>
   new Map([...context.species].filter(([name]) => names.has(name)).map(([name, carrier]) => [name, carrier.kind]));
 
 /** The page a model stands on: images and models of a gauge field on the right, spin models on the left. */
@@ -148,7 +188,12 @@ export function reportModel(model: ModelValue, values: Values, context: TypesetC
     value.what === 'map' ? [...value.map.laws.values()].flatMap((law) => law.families) : [],
   );
   const kinds = kindsOf(context, names);
-  const roles = rolesOf({ family: context.family, operator: model.operator, species: kinds, laws: [...laws, ...declared] });
+  const roles = rolesOf({
+    family: context.family,
+    operator: model.operator,
+    species: kinds,
+    laws: [...laws, ...declared],
+  });
   const groups = sums.map((sum) => ({
     tex: signed(sum, 'page'),
     kind: roles[sum.members[0] ?? -1] ?? 'other',
@@ -167,4 +212,3 @@ export function reportModel(model: ModelValue, values: Values, context: TypesetC
     image,
   };
 }
-
