@@ -1,4 +1,4 @@
-import { and, asc, eq, gt, isNotNull, isNull, max, sql } from 'drizzle-orm';
+import { and, asc, eq, gt, isNotNull, isNull, lt, max, sql } from 'drizzle-orm';
 import { alias } from 'drizzle-orm/pg-core';
 import type { Entry, EntryKind } from '../../../shared/contracts/notebooks.ts';
 import type { Asking } from '../connection.ts';
@@ -150,16 +150,13 @@ async function roomBefore(
   standing: NotebookStanding,
   id: string,
 ): Promise<{ readonly lower: number; readonly upper: number } | null> {
-  const earlier = alias(entries, 'earlier');
-  const [row] = await db
-    .select({
-      upper: entries.position,
-      lower: sql<number>`coalesce((select max(${earlier.position}) from ${entries} as ${earlier}
-        where ${earlier.notebook} = ${entries.notebook} and ${earlier.position} < ${entries.position}), 0)`,
-    })
+  const [row] = await db.select({ upper: entries.position }).from(entries).where(thatEntry(standing, id));
+  if (row === undefined) return null;
+  const [before] = await db
+    .select({ lower: max(entries.position) })
     .from(entries)
-    .where(thatEntry(standing, id));
-  return row ?? null;
+    .where(and(inNotebook(standing), lt(entries.position, row.upper)));
+  return { upper: row.upper, lower: before?.lower ?? 0 };
 }
 
 /** Numbers all entries of the notebook anew, deleted ones too, in their order. */
