@@ -228,4 +228,46 @@ export const commutesAt = (on: readonly SizeParity[], extents: readonly number[]
     2 ===
   0;
 
+/** Two operators each of which has a counterpart: the two sides of a rule of a map. Both sides move together, by `steps`. */
+export interface PairOfStrings {
+  readonly left: LocalString;
+  readonly right: LocalString;
+  readonly steps: Steps;
+}
+
+export type SameCommutation =
+  | { readonly same: true; readonly evidence: AllSizes }
+  | {
+      readonly same: false;
+      /** Relative translations of b at which one side commutes and the other does not, shortest first, with the strings there. */
+      readonly witnesses: readonly { readonly shift: Offset; readonly left: Witness; readonly right: Witness }[];
+    };
+
+/**
+ * Do the left sides of a and b commute in exactly those relative positions in which the right sides do? Then the correspondence keeps commutation at every
+ * size: the parities on either side are equal Laurent polynomials, and wrapping sends equal ones to equal ones.
+ */
+export function commuteAlike(a: PairOfStrings, b: PairOfStrings, budget: Budget = newBudget()): SameCommutation {
+  const steps = relativeSteps(a.steps, b.steps);
+  const differing = new Map<string, Offset>();
+  for (const shift of [...oddShifts(a.left, b.left, budget), ...oddShifts(a.right, b.right, budget)])
+    if (!differing.delete(shift.join(','))) differing.set(shift.join(','), shift);
+  const from = steps.map(() => 1);
+  const bad: Offset[] = [];
+  for (const shift of differing.values()) {
+    if (inGroup(shift, steps)) bad.push(shift);
+    else raise(from, shift, steps);
+  }
+  if (bad.length === 0) return { same: true, evidence: shownForAllSizes(from, commonMultiples(a.steps, b.steps)) };
+  bad.sort((s, t) => size(s) - size(t) || compareOffsets(s, t));
+  return {
+    same: false,
+    witnesses: bad.map((shift) => ({
+      shift,
+      left: witness(a.left, b.left, shift),
+      right: witness(a.right, b.right, shift),
+    })),
+  };
+}
+
 export type { AllSizes };
