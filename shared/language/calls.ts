@@ -174,7 +174,10 @@ function twisted(node: CallNode, scene: Scene): Operator {
   const symmetry = named(symmetryNode);
   if (!modelNode || !symmetryNode || !directionNode || node.args.length !== 3) return fail(say.twistArguments(), node);
   if (symmetry?.what !== 'symmetry')
-    return fail(say.wrongKind(textOf(symmetryNode, scene), 'a symmetry'), symmetryNode);
+    return fail(
+      say.wrongKind((symmetry && whatIsIt[symmetry.what]) ?? textOf(symmetryNode, scene), 'a symmetry'),
+      symmetryNode,
+    );
   const model = named(modelNode);
   if (model && model.what !== 'model' && model.what !== 'operator')
     return fail(say.wrongKind(whatIsIt[model.what] ?? model.what, 'a model'), modelNode);

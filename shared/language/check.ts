@@ -7,6 +7,7 @@ import type {
   Rule,
   SpinPlace,
   Statement,
+  SubjectNode,
   Word,
 } from '../../grammar/syntax.ts';
 import { cellKinds } from '../lattice/cells.ts';
@@ -22,6 +23,8 @@ export interface Scope {
   /** Line of the first later declaration of a name. */
   later(name: string): number | undefined;
   readonly names: Iterable<string>;
+  /** Words that an audit measures (`gap`), which need no declaration there. */
+  measured(audit: string): readonly string[];
 }
 
 /** What a statement needs, and what is wrong with its names. */
@@ -57,7 +60,7 @@ class Checker {
     const line = this.scope.later(word.text);
     if (line !== undefined) return this.fault(say.later(word.text, line), word);
     const cellLike = position === 'cell' || (path.words.length > 1 && partLike.test(path.words[1]?.text ?? ''));
-    const known = position === 'set' ? setWords : [...this.scope.names, ...bound, ...(cellLike ? [] : ['twist'])];
+    const known = position === 'set' ? setWords : cellLike ? bound : [...this.scope.names, ...bound, 'twist'];
     const near = nearest(word.text, known);
     if (word.text === 'i' && !cellLike) return this.fault(say.imaginary(), word);
     if (cellLike && near === undefined)
@@ -190,6 +193,29 @@ class Checker {
     }
   }
 
+  private subject(node: SubjectNode): void {
+    this.use(node.path);
+    node.sector.forEach((label) => this.use(label.path));
+  }
+
+  private audit(node: Statement & { readonly type: 'audit' }): void {
+    const words = this.scope.measured(node.audit.text);
+    node.subjects.forEach((one) => {
+      const word = one.path.words[0]?.text ?? '';
+      if (one.path.words.length > 1 || !words.includes(word)) {
+        const near = words.length > 0 && this.scope.state(word) === undefined ? nearest(word, words) : undefined;
+        if (near !== undefined) return this.fault(say.unknownName(word, near), one.path);
+        this.subject(one);
+      }
+    });
+    for (const clause of node.clauses) {
+      if ('subject' in clause) this.subject(clause.subject);
+      else if (clause.name === 'with') clause.paths.forEach((path) => this.use(path));
+      else if (clause.name === 'from') this.use(clause.path);
+      else if (clause.name === 'over') clause.ranges.forEach((range) => this.word(range.coupling));
+    }
+  }
+
   statement(node: Statement): void {
     const nothing: ReadonlySet<string> = new Set();
     switch (node.type) {
@@ -198,9 +224,11 @@ class Checker {
         return;
       case 'spins':
         return;
-      case 'couplings': {
-        return node.items.forEach((item) => item.value && this.expression(item.value, nothing));
-      }
+      case 'couplings':
+        // a value may use the couplings before it, also those of its own line
+        return node.items.forEach((item, k) => {
+          if (item.value) this.expression(item.value, new Set(node.items.slice(0, k).map((i) => i.name.text)));
+        });
       case 'model':
       case 'operator':
       case 'symmetry':
@@ -231,8 +259,7 @@ class Checker {
       case 'composition':
         return this.map(node.map);
       case 'audit':
-        // names of audits are judged with their form: some are words of the audit
-        return;
+        return this.audit(node);
     }
   }
 }

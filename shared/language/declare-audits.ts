@@ -14,7 +14,7 @@ import type { Size } from '../lattice/cells.ts';
 import { dotted } from './calls.ts';
 import { sizesOf } from './declare-lattice.ts';
 import type { AuditForm } from './forms.ts';
-import { fail, nearest, say, whatIsIt } from './problem.ts';
+import { fail, say, whatIsIt } from './problem.ts';
 import type { AuditStatement, Place, ScanRange, SectorLabel, Subject, Value, Values } from './values.ts';
 
 type AuditNode = Statement & { readonly type: 'audit' };
@@ -126,10 +126,6 @@ function quantityOf(node: AuditNode, form: AuditForm, scene: AuditScene): string
   if (label) fail(say.sectorHere(form.name), label);
   const name = dotted(first.path);
   if (form.quantity.words.includes(name)) return name;
-  if (!scene.values.find(name) && form.quantity.words.length > 0) {
-    const near = nearest(name, form.quantity.words);
-    if (near !== undefined) return fail(say.unknownName(name, near), first.path);
-  }
   ofKind(first.path, form.quantity.kinds, form.name, scene);
   return name;
 }

@@ -1,5 +1,5 @@
 import type { CustomCell, CustomLine, Expression, SizeItem, Span, Statement, Word } from '../../grammar/syntax.ts';
-import { Coefficient } from '../algebra/numbers/coefficient.ts';
+import type { Coefficient } from '../algebra/numbers/coefficient.ts';
 import { builtInFamilies, builtInFamily } from '../lattice/built-in.ts';
 import type { Lattice, LatticeFamily, LatticeProblem, Size } from '../lattice/cells.ts';
 import { checkSize, periodicDirections, straight } from '../lattice/cluster.ts';

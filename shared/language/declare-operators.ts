@@ -45,7 +45,7 @@ function offending(part: Operator): string {
   return `${coefficient.toFactorText()} ${body === '' ? '1' : body}`;
 }
 
-const isUnhermitian = (operator: Operator, scene: Scene): Operator | undefined => {
+const unhermitian = (operator: Operator, scene: Scene): Operator | undefined => {
   const rest = notHermitian(operator, options(scene));
   return rest.families.length + rest.extended.length > 0 ? rest : undefined;
 };
@@ -69,15 +69,21 @@ type PlaceOf = (node: { readonly start: number; readonly end: number }) => Place
 export function declareModel(node: Of<'model'>, heading: Heading, scene: Scene, placeOf: PlaceOf): ModelValue {
   if (node.head.parameter) return fail(say.headNone('model', heading.name), node.head.parameter);
   const { body } = node;
-  const operator = operatorOf(body, scene);
-  const bad = isUnhermitian(operator, scene);
-  if (bad) return fail(say.notHermitian(offending(bad)), blame(body, scene) ?? body);
+  // `+ hc` closes the whole, so that its terms are no pieces of their own
   const terms = body.type === 'sum' && !body.hc ? body.terms : [{ sign: '' as const, term: body }];
   const pieces = terms.map(({ sign, term }) => {
-    const piece = operatorOf(term, { ...scene, seams: [], note: () => undefined });
-    const signed = sign === '-' ? total([negate(piece)], scene) : piece;
-    return { place: placeOf(term), operator: signed };
+    const piece = operatorOf(term, scene);
+    return { place: placeOf(term), operator: sign === '-' ? negate(piece) : piece };
   });
+  const operator = total(
+    pieces.map((p) => p.operator),
+    scene,
+  );
+  const bad = unhermitian(operator, scene);
+  if (bad) {
+    const guilty = terms.find((_, k) => unhermitian(pieces[k]?.operator ?? operator, scene));
+    return fail(say.notHermitian(offending(bad)), guilty?.term ?? body);
+  }
   return {
     ...heading,
     what: 'model',
@@ -93,13 +99,6 @@ const negate = (o: Operator): Operator => ({
   families: o.families.map((f) => ({ ...f, coefficient: f.coefficient.neg() })),
   extended: o.extended.map((t) => ({ ...t, coefficient: t.coefficient.neg() })),
 });
-
-/** The first term of a sum that alone is not Hermitian, for the place of the problem. */
-function blame(body: Expression, scene: Scene): Expression | undefined {
-  if (body.type !== 'sum' || body.hc) return undefined;
-  const quiet: Scene = { ...scene, seams: [], note: () => undefined };
-  return body.terms.find(({ term }) => isUnhermitian(operatorOf(term, quiet), quiet))?.term;
-}
 
 /** Evaluates something at each representative of a parameter's domain. */
 export interface Placed<T> {

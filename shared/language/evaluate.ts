@@ -1,8 +1,9 @@
-import type { Clause, Statement } from '../../grammar/syntax.ts';
+import type { Statement } from '../../grammar/syntax.ts';
 import type { Problem } from '../contracts/report.ts';
 import type { Lattice } from '../lattice/cells.ts';
 import { BudgetSpent, newBudget, type Budget } from '../limits.ts';
 import { check, type Scope } from './check.ts';
+import { auditForms, type AuditForm } from './forms.ts';
 import { declaredWords, guessedNames, newValues } from './names.ts';
 import { parseStatement, type Parsed } from './parse.ts';
 import { problemAt, say, type Fault } from './problem.ts';
@@ -82,28 +83,6 @@ const movedOutcome = (outcome: Outcome, by: number): Outcome =>
         audit: outcome.audit && movedAudit(outcome.audit, by),
       };
 
-/** Names that an audit line speaks of. */
-function auditNames(node: Statement): string[] {
-  if (node.type !== 'audit') return [];
-  const subjects = (
-    all: readonly {
-      path: { words: readonly { text: string }[] };
-      sector: readonly { path: { words: readonly { text: string }[] } }[];
-    }[],
-  ): string[] => all.flatMap((s) => [s.path, ...s.sector.map((l) => l.path)].map((p) => p.words[0]?.text ?? ''));
-  const clause = (c: Clause): string[] =>
-    'subject' in c
-      ? subjects([c.subject])
-      : c.name === 'with'
-        ? c.paths.map((p) => p.words[0]?.text ?? '')
-        : c.name === 'from'
-          ? [c.path.words[0]?.text ?? '']
-          : c.name === 'over'
-            ? c.ranges.map((r) => r.coupling.text)
-            : [];
-  return [...subjects(node.subjects), ...node.clauses.flatMap(clause)];
-}
-
 class Run {
   private readonly all = new Map<string, Value>();
   private readonly broken = new Set<string>();
@@ -120,8 +99,11 @@ class Run {
   private readonly budget: Budget;
   private readonly previous: Program | undefined;
 
+  private readonly forms: readonly AuditForm[];
+
   constructor(context: EvaluationContext, budget: Budget, previous: Program | undefined) {
     this.context = context;
+    this.forms = context.forms ?? auditForms;
     this.budget = budget;
     this.previous = previous;
   }
@@ -151,6 +133,7 @@ class Run {
       hasPart: (name, part) => newValues(this.lattice, this.all).find(`${name}.${part}`) !== undefined,
       later: (name) => this.later.get(name)?.find((l) => l > line),
       names: [...this.all.keys(), ...this.broken],
+      measured: (audit) => this.forms.find((f) => f.name === audit)?.quantity?.words ?? [],
     };
   }
 
@@ -198,7 +181,7 @@ class Run {
     const names = declaredWords(node).map((w) => w.text);
     const scope = this.scope(layout.line);
     const { faults, uses } = check(node, scope);
-    const mentioned = new Set([...uses, ...auditNames(node)]);
+    const mentioned = uses;
     const wrong = [...this.conflicts(node), ...faults];
     wrong.forEach((fault) => this.report(fault, layout));
     const errors = wrong.some((f) => f.severity !== 'caution');
@@ -211,6 +194,7 @@ class Run {
       this.claim(names, layout.line);
       return this.finish(layout, names, false, waitsForLattice ? ['lattice', ...waits] : waits);
     }
+    if (this.budget.left <= 0 && !before?.outcome) return this.finish(layout, names, false, ['limit']);
     const outcome = this.outcome(node, layout, before, used, isLattice);
     this.keep(layout, { line: layout.line, parsed, used, lattice: this.lattice, outcome });
     this.accept(layout, names, outcome);

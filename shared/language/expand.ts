@@ -241,10 +241,7 @@ function sum(node: SumNode, scene: Scene): Amount {
   }
   const whole = addAll(parts, node, scene);
   if (!node.hc) return whole;
-  node.terms.forEach(({ term }, k) => {
-    const part = parts[k];
-    if (part && isHermitian(part, scene)) scene.note({ ...say.hcDoubles(), start: term.start, end: term.end });
-  });
+  noteDoubled(node, parts, scene);
   return add(whole, adjoint(whole, scene, node), 1, scene, node);
 }
 
@@ -260,6 +257,37 @@ function addAll(parts: readonly Amount[], node: SumNode, scene: Scene): Amount {
       scene,
     ),
   );
+}
+
+/** The addends of an expression, each with the brackets and sums around it, so that each can be looked at alone. */
+function addends(node: Expression): { readonly node: Expression; readonly at: Expression }[] {
+  if (node.type === 'bracket') return addends(node.body);
+  if (node.type === 'sum' && !node.hc) return node.terms.flatMap((t) => addends(t.term));
+  if (node.type === 'big' && node.which === 'sum')
+    return addends(node.body).map((one) => ({ node: { ...node, body: one.node }, at: one.at }));
+  const last = node.type === 'product' ? node.factors.at(-1) : undefined;
+  if (node.type === 'product' && last && (last.factor.type === 'bracket' || last.factor.type === 'big')) {
+    const parts = addends(last.factor);
+    if (parts.length > 1)
+      return parts.map((one) => ({
+        node: { ...node, factors: [...node.factors.slice(0, -1), { ...last, factor: one.node }] },
+        at: one.at,
+      }));
+  }
+  return [{ node, at: node }];
+}
+
+/** Cautions for Hermitian parts before `+ hc`: whole terms, else single addends inside them. */
+function noteDoubled(sum: SumNode, parts: readonly Amount[], scene: Scene): void {
+  const quiet: Scene = { ...scene, note: () => undefined, seams: [] };
+  sum.terms.forEach(({ term }, k) => {
+    const part = parts[k];
+    const doubled = (at: Expression): void => scene.note({ ...say.hcDoubles(), start: at.start, end: at.end });
+    if (!part || part.what === 'number' || part.what === 'kets') return;
+    if (isHermitian(part, scene)) return doubled(term);
+    const inner = addends(term);
+    if (inner.length > 1) for (const one of inner) if (isHermitian(amount(one.node, quiet), quiet)) doubled(one.at);
+  });
 }
 
 function isHermitian(part: Amount, scene: Scene): boolean {

@@ -20,7 +20,7 @@ const inWords: Readonly<Record<string, string>> = {
   spin: '^x, ^y or ^z with its cell',
 };
 /** Said only where nothing plainer is expected. */
-const dull = new Set(['+', '-', '*', '/', '%', '^', '.', 'sum', 'prod', 'sqrt', '{', '}']);
+const dull = new Set(['+', '-', '*', '/', '%', '^', '.', 'sum', 'prod', 'sqrt', '{', '}', 'hc']);
 
 /** What was expected, in words, plainest first, at most six. */
 function words(expected: readonly Expected[]): string[] {
@@ -55,8 +55,11 @@ function likely(layout: Layout, tokens: readonly Token[], index: number, expecte
   const token = tokens[index] as Token;
   const before = tokens[index - 1];
   const named = token.type === 'rule' ? 'The end of the line' : `"${token.text}"`;
-  if (before?.text === '^' && /^(?:word|call)$/u.test(token.type))
-    return say.spinWithoutCell(tokens[index - 2]?.value ?? 's', token.text);
+  if (before?.text === '^' && /^(?:word|call)$/u.test(token.type)) {
+    const species = tokens[index - 2]?.value ?? 's';
+    if (/^[xyzn]$/u.test(token.text)) return say.spinWithoutCell(species, token.text);
+    return tokens[index + 1]?.text === '[' ? say.noSpinOperator(species, token.text) : say.exponentForm();
+  }
   if (before?.text === '^' && /^[+-]$/u.test(token.text))
     return say.spinWithoutCell(tokens[index - 2]?.value ?? 's', token.text);
   if (/^[+-]$/u.test(before?.text ?? '') && tokens[index - 2]?.text === '^')
@@ -69,7 +72,7 @@ function likely(layout: Layout, tokens: readonly Token[], index: number, expecte
   if (token.text === '..' && before?.type === 'number' && layout.keyword !== 'audit') return say.decimal();
   if (/^[+-]$/u.test(token.text) && before && !takes(expected, '+'))
     return before.text === ')' ? say.emptySum('sum or product') : say.straySign(token.text);
-  if (token.type === 'reserved' && takesName(expected)) return say.reservedName(token.text);
+  if (token.type === 'reserved' && takesName(expected) && !takes(expected, '*')) return say.reservedName(token.text);
   if (layout.keyword === 'audit' && token.type === 'call') return say.auditName();
   if (layout.keyword === 'map' && token.type === 'rule' && index > 2 && !takes(expected, 'from')) {
     const rest = words(expected);

@@ -70,6 +70,7 @@ const meant = (near: string | undefined): Pick<Saying, 'hint' | 'fix'> =>
   near === undefined ? { hint: '' } : { hint: `Did you mean "${near}"?`, fix: near };
 const plain = (code: string, message: string, hint = ''): Saying => ({ code, message, hint });
 const caution = (code: string, message: string, hint = ''): Saying => ({ code, message, hint, severity: 'caution' });
+const kinds = ['vertices', 'links', 'plaquettes', 'cubes'];
 /** A reason as a sentence. */
 const sentence = (text: string): string =>
   `${text.charAt(0).toUpperCase()}${text.slice(1)}${/[.!?]$/u.test(text) ? '' : '.'}`;
@@ -119,6 +120,9 @@ export const say = {
       `${species}^${operator} lacks its cell.`,
       `Write ${species}^${operator}[c]; an exponent is an integer or stands in brackets.`,
     ),
+  noSpinOperator: (species: string, operator: string) =>
+    plain('spin-operator', `There is no operator ${species}^${operator}.`, 'Operators are ^x ^y ^z ^n ^+ ^-.'),
+  exponentForm: () => plain('exponent', 'An exponent is an integer or stands in brackets.', 'Put it in brackets.'),
   strayHc: () =>
     plain(
       'hc',
@@ -236,12 +240,12 @@ export const say = {
       : {}),
   }),
   noCells: (kind: string, family: string) => plain('no-cells', `The ${family} lattice has no ${kind}.`),
-  notCells: (text: string) =>
-    plain(
-      'not-cells',
-      `"${text}" is no set of cells.`,
-      'Sets are vertices, links, plaquettes, cubes, their classes, and geometry functions such as star(v).',
-    ),
+  notCells: (text: string) => ({
+    code: 'not-cells',
+    message: `"${text}" is no set of cells.`,
+    hint: 'Sets are vertices, links, plaquettes, cubes, their classes, and geometry functions such as star(v).',
+    ...(nearest(text, kinds) === undefined ? {} : meant(nearest(text, kinds))),
+  }),
   notACell: (text: string) =>
     plain('not-a-cell', `"${text}" is no cell.`, 'Name a bound cell such as v, a part such as l.a, or vertices(0, 0).'),
   takes: (name: string, wanted: string, given: string) => plain('wrong-cell', `${name} takes ${wanted}, got ${given}.`),

@@ -1,5 +1,5 @@
 import type { Expression, Path, Span, Statement } from '../../grammar/syntax.ts';
-import { Coefficient } from '../algebra/numbers/coefficient.ts';
+import type { Coefficient } from '../algebra/numbers/coefficient.ts';
 import type { Lattice } from '../lattice/cells.ts';
 import { BudgetSpent, type Budget } from '../limits.ts';
 import { classesOfPath } from './sets.ts';
