@@ -1,4 +1,4 @@
-import type { Coefficient} from '../algebra/numbers/coefficient.ts';
+import type { Coefficient } from '../algebra/numbers/coefficient.ts';
 import { type TermParts } from '../algebra/numbers/coefficient.ts';
 import { nameSpoken, nameTex } from './names.ts';
 
