@@ -25,8 +25,9 @@ export function useLive(notebook: string, me: string | null): readonly Person[] 
       if (by === null || by !== me) void rereadNotebook(client, notebook);
     });
     on('hold', ({ entry, hold }) => {
-      client.setQueryData<Notebook>(['notebook', notebook], (kept) =>
-        kept && { ...kept, entries: kept.entries.map((one) => (one.id === entry ? { ...one, hold } : one)) },
+      client.setQueryData<Notebook>(
+        ['notebook', notebook],
+        (kept) => kept && { ...kept, entries: kept.entries.map((one) => (one.id === entry ? { ...one, hold } : one)) },
       );
     });
     on('notebook', () => void rereadNotebook(client, notebook));

@@ -57,8 +57,6 @@ export class Guard extends Component<GuardProps, { error: unknown; failedAt: unk
 
   override render() {
     if (this.state.error === undefined) return this.props.children;
-    return (
-      <Failed what={this.props.what} error={this.state.error} retry={() => this.setState({ error: undefined })} />
-    );
+    return <Failed what={this.props.what} error={this.state.error} retry={() => this.setState({ error: undefined })} />;
   }
 }

@@ -6,8 +6,7 @@ export type GradeName = 'proved' | 'exact' | 'numerical' | 'refuted' | 'open';
 /** Shapes in a square from −1 to 1; the plate draws the same ones. */
 export function PauliShape({ pauli, paper = 'var(--paper)' }: { pauli: Pauli; paper?: string }) {
   if (pauli === 'x') return <rect x={-1} y={-0.3} width={2} height={0.6} fill="var(--x)" />;
-  if (pauli === 'y')
-    return <path d="M0 -1 L0.8 0 L0 1 L-0.8 0 Z" fill={paper} stroke="var(--y)" strokeWidth={0.24} />;
+  if (pauli === 'y') return <path d="M0 -1 L0.8 0 L0 1 L-0.8 0 Z" fill={paper} stroke="var(--y)" strokeWidth={0.24} />;
   return (
     <>
       <circle r={0.84} fill={paper} stroke="var(--z)" strokeWidth={0.24} />

@@ -97,7 +97,11 @@ export function inline(text: string): ReactNode {
       {code !== undefined && <code className="code">{code}</code>}
       {strong !== undefined && <strong>{inline(strong)}</strong>}
       {emphasis !== undefined && <em>{inline(emphasis)}</em>}
-      {label !== undefined && <a href={href} rel="noreferrer noopener">{inline(label)}</a>}
+      {label !== undefined && (
+        <a href={href} rel="noreferrer noopener">
+          {inline(label)}
+        </a>
+      )}
       {inline(text.slice(match.index + whole.length))}
     </>
   );

@@ -61,7 +61,10 @@ const isError = (item: Item<Problem>): boolean => item.value.severity === 'error
 
 /** Line (from 0) of the statement in `text` that declares `name`, or −1. Couplings and spins may share a line. */
 function lineOfName(text: string, name: string): number {
-  const declares = new RegExp(`^[a-z]+\\s(?:.*[\\s,])?${name.replace(/[^\p{L}\p{N}_]/gu, '\\$&')}(?![\\p{L}\\p{N}_])`, 'u');
+  const declares = new RegExp(
+    `^[a-z]+\\s(?:.*[\\s,])?${name.replace(/[^\p{L}\p{N}_]/gu, '\\$&')}(?![\\p{L}\\p{N}_])`,
+    'u',
+  );
   return text.split('\n').findIndex((line) => declares.test(line));
 }
 
@@ -94,7 +97,12 @@ function withKept(now: Slice, before: Slice): Slice {
   };
   return {
     ...now,
-    models: keep(now.models, before.models, (a, b) => a.name === b.name, (i) => byName(i.value.name, i.line)),
+    models: keep(
+      now.models,
+      before.models,
+      (a, b) => a.name === b.name,
+      (i) => byName(i.value.name, i.line),
+    ),
     declarations: keep(
       now.declarations,
       before.declarations,

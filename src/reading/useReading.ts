@@ -1,6 +1,6 @@
 import { useEffect, useMemo, useRef, useState } from 'react';
 import { joinEntries } from '../../shared/notebook/text.ts';
-import { ask, type Answer } from '../worker/messages.ts';
+import { ask, type Answer, protocol } from '../worker/messages.ts';
 import type { Placed } from './slices.ts';
 import { answering, asking, type Reading, unread } from './state.ts';
 
@@ -55,7 +55,7 @@ export function useReading(entries: readonly EntryText[]): Reading {
       worker.terminate();
       if (engine.current === worker) engine.current = null;
       const message = 'The engine stopped. It starts again with the next change.';
-      take({ protocol: 1, version: version.current, kind: 'failed', message });
+      take({ protocol, version: version.current, part: Number.MAX_SAFE_INTEGER, kind: 'failed', message });
     };
     setReading((before) => asking(before, mine));
     worker.postMessage(ask(mine, source.text));

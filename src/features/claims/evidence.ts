@@ -27,7 +27,8 @@ function valueText(value: unknown): string | null {
   if (typeof value === 'boolean') return value ? 'yes' : 'no';
   if (Array.isArray(value) && value.length > 0 && value.every((one) => typeof one === 'number'))
     return value.map(numberText).join(', ');
-  if (Array.isArray(value) && value.length > 0 && value.every((one) => typeof one === 'string')) return value.join(', ');
+  if (Array.isArray(value) && value.length > 0 && value.every((one) => typeof one === 'string'))
+    return value.join(', ');
   return null;
 }
 
@@ -43,7 +44,8 @@ export function figuresOf(claim: Claim): readonly (readonly [string, string])[] 
 export function witnessSentence(claim: Claim): string | null {
   const words = claim.witness['tex'] ?? claim.witness['words'] ?? claim.witness['sentence'];
   if (typeof words !== 'string' || words === '' || words === claim.statement) return null;
-  const capital = words.charAt(0) === words.charAt(0).toLowerCase() ? words : words.charAt(0).toUpperCase() + words.slice(1);
+  const capital =
+    words.charAt(0) === words.charAt(0).toLowerCase() ? words : words.charAt(0).toUpperCase() + words.slice(1);
   return /[.!?]$/.test(capital) ? capital : `${capital}.`;
 }
 

@@ -86,9 +86,26 @@ export function frameOf(family: LatticeFamily, window: Window): Frame {
   };
 }
 
-/** Points of a class in a window. */
-export const pointsIn = (family: LatticeFamily, window: Window, kind: CellKind, index: number): readonly Point[] =>
-  [...cellsIn(window)].map((cell) => pointOf(family, kind, index, cell));
+/** The vertices that a cell of a class touches, in unit cells about its own. */
+function vertexOffsets(family: LatticeFamily, kind: CellKind, index: number): readonly (readonly number[])[] {
+  const link = kind === 'links' ? family.links[index] : undefined;
+  const plaquette = kind === 'plaquettes' ? family.plaquettes[index] : undefined;
+  const corners = link ? [link.a, link.b] : (plaquette?.corners ?? []);
+  return corners.map((corner) => corner.offset);
+}
+
+/** Points of a class in a window: of the cells that lie whole in it. */
+export function pointsIn(family: LatticeFamily, window: Window, kind: CellKind, index: number): readonly Point[] {
+  const touched = vertexOffsets(family, kind, index);
+  const whole = (cell: readonly number[]) =>
+    touched.every((offset) =>
+      inside(
+        window,
+        offset.map((c, d) => c + (cell[d] ?? 0)),
+      ),
+    );
+  return [...cellsIn(window)].filter(whole).map((cell) => pointOf(family, kind, index, cell));
+}
 
 /** A support as points with their marks; repeated strings fill the window, the representative first. */
 export interface Drawn {
@@ -152,7 +169,9 @@ export function wraps(lattice: PlateLattice, supports: readonly Support[]): bool
       const period = Math.abs(row[d] ?? 0);
       const at = support.sites.map((site) => site.offset[d] ?? 0);
       const straight = row.every((c, k) => k === d || c === 0);
-      return straight && (support.repeats[d] ?? 0) === 0 && at.length > 0 && Math.max(...at) - Math.min(...at) >= period;
+      return (
+        straight && (support.repeats[d] ?? 0) === 0 && at.length > 0 && Math.max(...at) - Math.min(...at) >= period
+      );
     }),
   );
 }

@@ -136,7 +136,9 @@ function Drawing({ family, lattice, side, language, height }: DrawingProps) {
       <figcaption id={caption} className="label">
         {side.answered ? <Formula tex={side.answered.tex} /> : <span>{language} language</span>}
         {words !== '' && <span className="plate-words">{words}</span>}
-        {wraps(lattice, supports) && <span className="plate-words">meets itself around the {sizeInWords(lattice)}</span>}
+        {wraps(lattice, supports) && (
+          <span className="plate-words">meets itself around the {sizeInWords(lattice)}</span>
+        )}
       </figcaption>
     </figure>
   );

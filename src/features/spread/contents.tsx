@@ -1,14 +1,21 @@
-import type { EntryRows } from './rows.ts';
+import { useState } from 'react';
+import type { EntryRows } from './row.ts';
 import { titleOf } from './rows.ts';
 import type { EntryText } from './entry.tsx';
 
 /** The outer strip on the left: entries by number. Only what does not hold is named as such, in words. */
 export function Contents({ entries, rows }: { entries: readonly EntryText[]; rows: readonly EntryRows[] }) {
   const fails = new Map(rows.map((row) => [row.id, row.fails]));
+  // Where the strip stands above the pages it begins folded.
+  const [unfolded, setUnfolded] = useState(() => globalThis.matchMedia('(min-width: 1180px)').matches);
   return (
     <nav aria-label="Contents" className="contents">
-      <h2 className="head">Contents</h2>
-      <ol>
+      <h2>
+        <button type="button" className="head fold" aria-expanded={unfolded} onClick={() => setUnfolded(!unfolded)}>
+          Contents
+        </button>
+      </h2>
+      <ol hidden={!unfolded}>
         {entries.map((entry, k) => {
           const said = fails.get(entry.id);
           return (

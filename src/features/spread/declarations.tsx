@@ -3,10 +3,12 @@ import { Formula } from '../../components/formula.tsx';
 import { GradeMark } from '../../components/marks.tsx';
 import { leave, take, togglePin, type Held } from '../../hand/hand.ts';
 import { useAnswers, useHandStore } from '../../hand/useHand.ts';
-import { ruleHeld, type Row } from './rows.ts';
+import type { Row } from './row.ts';
+import { modelTex, ruleHeld } from './rows.ts';
 import type { Open } from './terms.tsx';
 
 type DeclarationRow = Extract<Row, { what: 'declaration' }>;
+type ElsewhereRow = Extract<Row, { what: 'elsewhere' }>;
 type SettingRow = Extract<Row, { what: 'setting' }>;
 
 interface Props<R> {
@@ -26,17 +28,18 @@ const words: Readonly<Record<string, string>> = {
   reference: 'reference state',
 };
 
-/** A law, rule, map or reference spans both pages; a symmetry or an operator stands on the page of its language. */
+/** A map or a reference spans both pages; a law, symmetry, operator or rule stands on the page of its language. */
 export const Declaration = memo(function Declaration({ row, number, entry, open }: Props<DeclarationRow>) {
   const { declaration } = row;
-  const onePage = ['symmetry', 'operator'].includes(declaration.what) && declaration.language !== 'both';
+  const onePage = ['symmetry', 'operator', 'law', 'rule'].includes(declaration.what) && declaration.language !== 'both';
   const spot = { entry, line: row.line, column: 1 };
   return (
     <div className={`pair declared ${row.stale ? 'stale' : ''}`}>
       <span className="entry-number">{number}</span>
       <div className={onePage ? (declaration.language === 'gauge' ? 'page-right' : 'page-left') : 'both-pages'}>
         <span className="declared-name">
-          {words[declaration.what]} <em>{declaration.name}</em>
+          {words[declaration.what]}
+          {declaration.rules && <em> {declaration.name}</em>}
         </span>
         {declaration.rules ? (
           <span className="rules">
@@ -130,6 +133,45 @@ export const Setting = memo(function Setting({ row, number, entry, open }: Props
         ) : (
           <span className="setting">{inside}</span>
         )}
+      </div>
+    </div>
+  );
+});
+
+/** The line of an image that is set facing its source: what it is the image of, and the way there. */
+export const Elsewhere = memo(function Elsewhere({ row, number, entry, open }: Props<ElsewhereRow>) {
+  const inside = (
+    <Formula tex={`${modelTex(row.name)} = \\mathit{${row.map.replace(/_/g, '\\_')}}\\,(${modelTex(row.of)})`} />
+  );
+  return (
+    <div className={`pair declared ${row.stale ? 'stale' : ''}`}>
+      <span className="entry-number">{number}</span>
+      <div className="both-pages">
+        {open ? (
+          <button
+            type="button"
+            className="term"
+            data-term="left"
+            aria-label={`model ${row.name}, the image of ${row.of} under ${row.map}`}
+            onClick={() => open({ entry, line: row.line, column: 1 })}
+          >
+            {inside}
+          </button>
+        ) : (
+          inside
+        )}
+        <a
+          className="label"
+          href={`#${row.entry}`}
+          onClick={(event) => {
+            event.preventDefault();
+            const there = document.querySelector<HTMLElement>(`[data-entry="${CSS.escape(row.entry)}"]`);
+            there?.scrollIntoView({ block: 'center' });
+            there?.focus({ preventScroll: true });
+          }}
+        >
+          set facing {row.of}
+        </a>
       </div>
     </div>
   );

@@ -2,9 +2,9 @@ import { memo, type ReactNode } from 'react';
 import { Guard } from '../../components/faces.tsx';
 import { Prose } from '../../components/prose.tsx';
 import type { Slice } from '../../reading/slices.ts';
-import { Declaration, Setting } from './declarations.tsx';
+import { Declaration, Elsewhere, Setting } from './declarations.tsx';
 import { Problems } from './problems.tsx';
-import type { EntryRows, Row } from './rows.ts';
+import type { EntryRows, Row } from './row.ts';
 import { titleOf } from './rows.ts';
 import { Terms, type Open } from './terms.tsx';
 
@@ -114,6 +114,7 @@ function StatementRows({ entry, cite, slice, rows, open, claims }: StatementRows
         if (row.what === 'terms') return <Terms key={row.key} row={row} number={number} open={open} />;
         const common = { number, entry: entry.id, open };
         if (row.what === 'setting') return <Setting key={row.key} row={row} {...common} />;
+        if (row.what === 'elsewhere') return <Elsewhere key={row.key} row={row} {...common} />;
         if (row.what === 'declaration') return <Declaration key={row.key} row={row} {...common} />;
         return (
           <div key={row.key} className={`pair claims-row ${row.stale ? 'stale' : ''}`}>
@@ -127,7 +128,10 @@ function StatementRows({ entry, cite, slice, rows, open, claims }: StatementRows
                   data-term="left"
                   onClick={() => open({ entry: entry.id, line: row.line, column: 1 })}
                 >
-                  change this audit<span className="aside-only">, {row.audit}, entry {cite}</span>
+                  change this audit
+                  <span className="aside-only">
+                    , {row.audit}, entry {cite}
+                  </span>
                 </button>
               )}
             </div>

@@ -14,11 +14,15 @@ export function moveBetweenTerms(pages: HTMLElement, event: Key): boolean {
   const at = event.target instanceof HTMLElement ? event.target.closest<HTMLElement>('[data-term]') : null;
   if (!at) return false;
   const next =
-    event.key === 'ArrowDown' ? along(pages, at, 1)
-    : event.key === 'ArrowUp' ? along(pages, at, -1)
-    : event.key === 'ArrowRight' ? beside(at, 'right')
-    : event.key === 'ArrowLeft' ? beside(at, 'left')
-    : undefined;
+    event.key === 'ArrowDown'
+      ? along(pages, at, 1)
+      : event.key === 'ArrowUp'
+        ? along(pages, at, -1)
+        : event.key === 'ArrowRight'
+          ? beside(at, 'right')
+          : event.key === 'ArrowLeft'
+            ? beside(at, 'left')
+            : undefined;
   if (!next) return false;
   next.focus();
   next.scrollIntoView({ block: 'nearest' });

@@ -1,6 +1,6 @@
 import type { Problem } from '../../../shared/contracts/report.ts';
 import type { Item } from '../../reading/slices.ts';
-import type { Spot } from './rows.ts';
+import type { Spot } from './row.ts';
 
 interface Props {
   readonly entry: string;

@@ -1,87 +1,10 @@
-import type { Claim, Grade, Kind, ReportDeclaration } from '../../../shared/contracts/report.ts';
-import { groupRef, nameRef, type Held, type Ref, ruleRef } from '../../hand/hand.ts';
+import type { Claim, Grade, ReportDeclaration } from '../../../shared/contracts/report.ts';
+import { groupRef, nameRef, type Held, ruleRef } from '../../hand/hand.ts';
 import { sameOr, type Item, type NamedModel, type Slice } from '../../reading/slices.ts';
-import { markOf, marksOfName, type Mark } from './verdict.ts';
+import type { EntryRows, Head, Pair, Row, Term } from './row.ts';
+import { markOf, marksOfName } from './verdict.ts';
 
 /** What the page shows, row by row: term against term, and what spans both pages. Plain values, compared by value. */
-
-export type Pauli = 'x' | 'y' | 'z';
-
-export interface Term {
-  readonly ref: Ref;
-  readonly tex: string;
-  readonly spoken: string;
-  readonly kind: Kind;
-  /** Which Pauli matrices stand in it, in the order x, y, z. */
-  readonly paulis: readonly Pauli[];
-  /** Where its source is: the entry, line (from 0) and column (from 1) in it. */
-  readonly place: Spot | null;
-}
-
-export interface Spot {
-  readonly entry: string;
-  readonly line: number;
-  readonly column: number;
-}
-
-export interface Pair {
-  readonly left: Term | null;
-  readonly right: Term | null;
-  readonly mark: Mark | null;
-}
-
-/** The name a model is set under on one page, as TeX. */
-export interface Head {
-  readonly name: string;
-  readonly tex: string;
-  /** Said small beside it: where it comes from, when that is not the facing model. */
-  readonly note: string | null;
-}
-
-export type Row =
-  | {
-      readonly what: 'terms';
-      readonly key: string;
-      readonly line: number;
-      readonly stale: boolean;
-      readonly left: Head | null;
-      readonly right: Head | null;
-      /** The map that leads from one to the other. */
-      readonly map: string | null;
-      readonly pairs: readonly Pair[];
-    }
-  | {
-      readonly what: 'setting';
-      readonly key: string;
-      readonly line: number;
-      readonly stale: boolean;
-      readonly parts: readonly { readonly what: ReportDeclaration['what']; readonly tex: string; readonly spoken: string }[];
-    }
-  | {
-      readonly what: 'declaration';
-      readonly key: string;
-      readonly line: number;
-      readonly stale: boolean;
-      readonly declaration: ReportDeclaration;
-      readonly held: Held;
-      /** What is claimed of it, one mark a grade. */
-      readonly marks: readonly Mark[];
-    }
-  | {
-      readonly what: 'claims';
-      readonly key: string;
-      readonly line: number;
-      readonly stale: boolean;
-      readonly audit: string;
-      readonly claims: readonly Claim[];
-    };
-
-export interface EntryRows {
-  readonly id: string;
-  readonly rows: readonly Row[];
-  /** The worst that is said in this entry: refuted, or a problem; else null. */
-  readonly fails: 'refuted' | 'problem' | null;
-}
 
 const settings: readonly ReportDeclaration['what'][] = ['lattice', 'spins', 'couplings'];
 
@@ -117,12 +40,7 @@ function facing(name: string, language: string, models: readonly Standing[]): St
   );
 }
 
-function termRow(
-  source: Standing,
-  image: Standing | undefined,
-  claims: readonly Claim[],
-  note: string | null,
-): Row {
+function termRow(source: Standing, image: Standing | undefined, claims: readonly Claim[], note: string | null): Row {
   const model = source.item.value;
   const other = image?.item.value;
   const map = other?.image?.map ?? null;
@@ -170,7 +88,13 @@ function rowsOfSlice(slice: Slice, models: readonly Standing[], claims: readonly
     const { value } = item;
     const of = models.find((other) => other.item.value.name === value.image?.of);
     // An image is set where its source stands, unless both are on one page or another image stands there already.
-    if (of && facing(of.item.value.name, of.item.value.language, models)?.item === item) continue;
+    if (of && value.image && facing(value.image.of, of.item.value.language, models)?.item === item) {
+      const { map, of: source } = value.image;
+      const key = `model ${value.name}`;
+      const { line, stale } = item;
+      rows.push({ what: 'elsewhere', key, line, stale, name: value.name, map, of: source, entry: of.entry });
+      continue;
+    }
     const image = facing(value.name, value.language, models);
     const note = value.image ? `${value.image.map} of ${value.image.of}` : null;
     rows.push(termRow({ item, entry: slice.id }, image, claims, note));
@@ -237,3 +161,25 @@ export function titleOf(slice: { readonly kind: string; readonly text: string })
 
 const capital = (word: string): string => word.charAt(0).toUpperCase() + word.slice(1);
 const short = (text: string): string => (text.length > 42 ? `${text.slice(0, 40).replace(/\s\S*$/, '')} …` : text);
+
+/** The pair whose source the caret is in: the last one that begins at or before it in this entry. */
+export function heldAt(all: readonly EntryRows[], entry: string, line: number, column: number): Held | null {
+  let best: { held: Held; line: number; column: number } | null = null;
+  for (const { rows } of all)
+    for (const row of rows) {
+      if (row.what !== 'terms') continue;
+      for (const pair of row.pairs)
+        for (const place of [pair.left?.place, pair.right?.place]) {
+          if (place?.entry !== entry) continue;
+          if (place.line > line || (place.line === line && place.column > column)) continue;
+          const later = !best || place.line > best.line || (place.line === best.line && place.column > best.column);
+          if (later)
+            best = {
+              held: { left: pair.left?.ref ?? null, right: pair.right?.ref ?? null },
+              line: place.line,
+              column: place.column,
+            };
+        }
+    }
+  return best?.held ?? null;
+}

@@ -3,13 +3,13 @@ import { type ReactNode, useRef, useState } from 'react';
 import type { Reading } from '../../reading/state.ts';
 import { Entry, type ClaimsRow, type EntryText } from './entry.tsx';
 import { moveBetweenTerms } from './keys.ts';
-import type { EntryRows, Spot } from './rows.ts';
-import { titleOf } from './rows.ts';
+import type { EntryRows, Spot } from './row.ts';
 
 /** What can be done with entries, where the reader may write. `before` null: at the end. */
 export interface Edits {
   readonly open: (spot: Spot) => void;
-  readonly insert: (kind: 'prose' | 'statements', before: string | null) => void;
+  /** Absent where entries are fixed. */
+  readonly insert?: (kind: 'prose' | 'statements', before: string | null) => void;
 }
 
 export type PageLanguage = 'spin' | 'gauge' | 'both';
@@ -50,7 +50,7 @@ export function Spread({ entries, reading, rows, writing, source, claims, edits,
       <LanguageSwitch language={language} choose={setLanguage} />
       {entries.map((entry, k) => (
         <div key={entry.id} className="entry-frame">
-          {edits && <InsertHere edits={edits} before={entry.id} where={`before (${String(k + 1)})`} />}
+          {edits?.insert && <InsertHere insert={edits.insert} before={entry.id} where={`before (${String(k + 1)})`} />}
           <Entry
             entry={entry}
             number={k + 1}
@@ -64,7 +64,7 @@ export function Spread({ entries, reading, rows, writing, source, claims, edits,
           />
         </div>
       ))}
-      {edits && <InsertHere edits={edits} before={null} where="at the end" last />}
+      {edits?.insert && <InsertHere insert={edits.insert} before={null} where="at the end" last />}
     </div>
   );
 }
@@ -95,17 +95,22 @@ function LanguageSwitch({ language, choose }: { language: PageLanguage; choose: 
   );
 }
 
-function InsertHere({ edits, before, where, last }: { edits: Edits; before: string | null; where: string; last?: true }) {
+interface InsertProps {
+  readonly insert: NonNullable<Edits['insert']>;
+  readonly before: string | null;
+  readonly where: string;
+  readonly last?: true;
+}
+
+function InsertHere({ insert, before, where, last }: InsertProps) {
   return (
     <div className={last ? 'insert-here insert-last' : 'insert-here'}>
-      <button type="button" className="act" onClick={() => edits.insert('statements', before)}>
+      <button type="button" className="act" onClick={() => insert('statements', before)}>
         add statements<span className="aside-only"> {where}</span>
       </button>
-      <button type="button" className="act" onClick={() => edits.insert('prose', before)}>
+      <button type="button" className="act" onClick={() => insert('prose', before)}>
         add prose<span className="aside-only"> {where}</span>
       </button>
     </div>
   );
 }
-
-export { titleOf };

@@ -4,7 +4,7 @@ import { GradeMark, PauliMark } from '../../components/marks.tsx';
 import type { Held } from '../../hand/hand.ts';
 import { leave, take, togglePin } from '../../hand/hand.ts';
 import { useAnswers, useHandStore } from '../../hand/useHand.ts';
-import type { Head, Pair, Row, Spot, Term } from './rows.ts';
+import type { Head, Pair, Row, Spot, Term } from './row.ts';
 
 type TermsRow = Extract<Row, { what: 'terms' }>;
 
@@ -12,7 +12,15 @@ type TermsRow = Extract<Row, { what: 'terms' }>;
 export type Open = (spot: Spot) => void;
 
 /** A model and, facing it, its image: one line for each pair of terms, on common baselines. */
-export const Terms = memo(function Terms({ row, number, open }: { row: TermsRow; number: string; open: Open | undefined }) {
+export const Terms = memo(function Terms({
+  row,
+  number,
+  open,
+}: {
+  row: TermsRow;
+  number: string;
+  open: Open | undefined;
+}) {
   const names = [row.left?.name, row.right?.name].filter((name) => name !== undefined);
   const label = names.length === 2 ? `Model ${names[0] ?? ''} facing ${names[1] ?? ''}` : `Model ${names[0] ?? ''}`;
   return (
@@ -63,7 +71,9 @@ const PairLine = memo(function PairLine({ pair, first, number, left, right, map,
     <div className="pair" data-answers={answers || undefined} data-alone={pair.left && pair.right ? undefined : true}>
       <span className="entry-number">{number}</span>
       <div className="page-left">
-        {left && pair.left && <PageTerm head={left} term={pair.left} first={first} held={held} side="left" open={open} />}
+        {left && pair.left && (
+          <PageTerm head={left} term={pair.left} first={first} held={held} side="left" open={open} />
+        )}
       </div>
       <div className="gutter">
         {pair.mark ? (

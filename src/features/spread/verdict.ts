@@ -1,12 +1,6 @@
 import type { Claim, Grade } from '../../../shared/contracts/report.ts';
 import type { NamedModel } from '../../reading/slices.ts';
-import type { Term } from './rows.ts';
-
-/** What the gutter says about a pair of terms: a grade and, for who cannot see the mark, its words. */
-export interface Mark {
-  readonly grade: Grade;
-  readonly words: string;
-}
+import type { Mark, Term } from './row.ts';
 
 /** From strongest to weakest; a pair shows the weakest of what is claimed of it, and a refutation before all. */
 const order: readonly Grade[] = ['refuted', 'open', 'numerical', 'exact', 'proved'];
@@ -23,7 +17,7 @@ function tableOf(claim: Claim, model: NamedModel): readonly TableRow[] {
   const { table, terms } = claim.figures;
   if (!Array.isArray(table) || terms !== model.terms.length) return [];
   return table.filter(
-    (row): row is TableRow =>
+    (row: unknown): row is TableRow =>
       typeof row === 'object' && row !== null && 'term' in row && 'holds' in row && typeof row.holds === 'boolean',
   );
 }

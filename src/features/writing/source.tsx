@@ -1,0 +1,137 @@
+import './writing.css';
+import { defaultKeymap, history, historyKeymap, indentWithTab } from '@codemirror/commands';
+import { bracketMatching, indentUnit } from '@codemirror/language';
+import { EditorSelection, EditorState, type Extension, Transaction } from '@codemirror/state';
+import { EditorView, keymap } from '@codemirror/view';
+import { useEffect, useRef } from 'react';
+import { operatorLanguage } from './operator-language.ts';
+import { type Note, problemNotes, showProblems } from './problem-notes.ts';
+
+export interface SourceProps {
+  readonly label: string;
+  readonly kind: 'prose' | 'statements';
+  /** The text now; a change from outside (another's save taken over) replaces what is shown. */
+  readonly text: string;
+  /** Where the caret goes when it opens or a term is chosen: line from 0, column from 1. */
+  readonly spot: { readonly line: number; readonly column: number };
+  readonly problems: readonly Note[];
+  readonly onChange: (text: string) => void;
+  /** The caret left: by Escape, or to somewhere else on the page. */
+  readonly onLeave: (by: 'escape' | 'away') => void;
+  /** Line from 0 and column from 1 of the caret. */
+  readonly onCaret: (line: number, column: number) => void;
+  /** The caret went over the first or the last line. */
+  readonly onBeyond: (way: 'up' | 'down') => void;
+}
+
+const nonce = (): string => document.querySelector<HTMLMetaElement>('meta[property=csp-nonce]')?.nonce ?? '';
+
+/** An entry's source, open in its place. One instance for one entry: it keeps its own undo history. */
+export function Source(props: SourceProps) {
+  const host = useRef<HTMLDivElement>(null);
+  const view = useRef<EditorView | null>(null);
+  const now = useRef(props);
+  useEffect(() => {
+    now.current = props;
+  });
+
+  useEffect(() => {
+    if (!host.current) return;
+    const first = now.current;
+    const made = new EditorView({
+      parent: host.current,
+      state: EditorState.create({ doc: first.text, extensions: extensions(first, () => now.current) }),
+    });
+    view.current = made;
+    return () => {
+      view.current = null;
+      made.destroy();
+    };
+  }, []);
+
+  const { text, spot, problems } = props;
+  useEffect(() => {
+    const shown = view.current;
+    if (!shown || shown.state.doc.toString() === text) return;
+    shown.dispatch({
+      changes: { from: 0, to: shown.state.doc.length, insert: text },
+      annotations: [Transaction.addToHistory.of(false), Transaction.remote.of(true)],
+    });
+  }, [text]);
+
+  useEffect(() => {
+    const shown = view.current;
+    if (!shown) return;
+    const line = shown.state.doc.line(Math.min(shown.state.doc.lines, Math.max(1, spot.line + 1)));
+    const at = line.from + [...line.text].slice(0, Math.max(0, spot.column - 1)).join('').length;
+    shown.dispatch({ selection: EditorSelection.cursor(Math.min(at, line.to)), scrollIntoView: true });
+    shown.focus();
+  }, [spot]);
+
+  useEffect(() => {
+    const shown = view.current;
+    if (shown) for (const change of showProblems(shown.state, problems)) shown.dispatch(change);
+  }, [problems]);
+
+  return (
+    <div
+      ref={host}
+      className={`source source-${props.kind}`}
+      onBlur={(event) => {
+        // The window losing focus is no leaving; neither is a step into what belongs to the open entry.
+        const frame = event.currentTarget.closest('[data-entry]');
+        const to = event.relatedTarget;
+        if (!document.hasFocus()) return;
+        if (to instanceof Node && frame?.contains(to)) return;
+        props.onLeave('away');
+      }}
+    />
+  );
+}
+
+function extensions(props: SourceProps, now: () => SourceProps): Extension {
+  const edge = (way: 'up' | 'down') => (view: EditorView) => {
+    const { main } = view.state.selection;
+    if (!main.empty) return false;
+    const line = view.state.doc.lineAt(main.head);
+    const last = way === 'up' ? line.number === 1 : line.number === view.state.doc.lines;
+    if (!last) return false;
+    now().onBeyond(way);
+    return true;
+  };
+  const leave = () => {
+    now().onLeave('escape');
+    return true;
+  };
+  return [
+    history(),
+    keymap.of([
+      { key: 'ArrowUp', run: edge('up') },
+      { key: 'ArrowDown', run: edge('down') },
+      { key: 'Escape', run: leave },
+      // Tab leaves the source, as everywhere on the page; Shift-Alt-Arrow indents and dedents in statements.
+      ...(props.kind === 'statements' ? [{ ...indentWithTab, key: 'Alt-Shift-ArrowRight' }] : []),
+      ...defaultKeymap,
+      ...historyKeymap,
+    ]),
+    indentUnit.of('  '),
+    EditorView.lineWrapping,
+    EditorView.contentAttributes.of({
+      'aria-label': props.label,
+      spellcheck: props.kind === 'prose' ? 'true' : 'false',
+      autocapitalize: 'off',
+    }),
+    EditorView.cspNonce.of(nonce()),
+    props.kind === 'statements' ? [operatorLanguage, bracketMatching()] : [],
+    problemNotes,
+    EditorView.updateListener.of((update) => {
+      const outside = update.transactions.some((one) => one.annotation(Transaction.remote) === true);
+      if (update.docChanged && !outside) now().onChange(update.state.doc.toString());
+      if (update.selectionSet || update.docChanged) {
+        const { head } = update.state.selection.main;
+        const line = update.state.doc.lineAt(head);
+        now().onCaret(line.number - 1, [...line.text.slice(0, head - line.from)].length + 1);
+      }
+    }),
+  ];
+}

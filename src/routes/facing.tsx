@@ -1,0 +1,99 @@
+import { type ReactNode, useState } from 'react';
+import type { Claim } from '../../shared/contracts/report.ts';
+import { Guard } from '../components/faces.tsx';
+import { Claims } from '../features/claims/claims.tsx';
+import { levelsOf } from '../features/claims/evidence.ts';
+import { Key } from '../features/margin/key.tsx';
+import { Plate } from '../features/plate/plate.tsx';
+import { Levels } from '../features/plots/levels.tsx';
+import { Contents } from '../features/spread/contents.tsx';
+import type { ClaimsRow, EntryText } from '../features/spread/entry.tsx';
+import type { EntryRows } from '../features/spread/row.ts';
+import { type Edits, Spread } from '../features/spread/spread.tsx';
+import { HandContext, type HandStore, newHandStore } from '../hand/useHand.ts';
+import type { Reading } from '../reading/state.ts';
+
+const nobody: ReadonlyMap<string, string> = new Map();
+
+interface Props {
+  readonly head: ReactNode;
+  readonly entries: readonly EntryText[];
+  readonly reading: Reading;
+  readonly rows: readonly EntryRows[];
+  readonly writing?: string | null;
+  readonly source?: (entry: EntryText) => ReactNode;
+  readonly edits?: Edits | undefined;
+  readonly heldBy?: ReadonlyMap<string, string>;
+  /** Above the key in the right margin. */
+  readonly margin?: ReactNode;
+  readonly foot: ReactNode;
+  readonly hand?: HandStore;
+}
+
+const noSource = () => null;
+
+/** A derivation as it is read: title, facing pages, the outer strips, the plate. Notebook, edition and example all look so. */
+export function Facing(props: Props) {
+  const [own] = useState(newHandStore);
+  const { head, entries, reading, rows, edits, margin, foot } = props;
+  return (
+    <HandContext value={props.hand ?? own}>
+      <main id="page" tabIndex={-1} className="sheet three-strips">
+        <header className="title-block">{head}</header>
+        <div className="strip-left">
+          <Contents entries={entries} rows={rows} />
+        </div>
+        <div className="middle">
+          {reading.failed !== undefined && (
+            <p role="alert" className="ink-refuted mb-3">
+              {reading.failed}
+            </p>
+          )}
+          <Spread
+            entries={entries}
+            reading={reading}
+            rows={rows}
+            writing={props.writing ?? null}
+            source={props.source ?? noSource}
+            claims={claimsOf}
+            edits={edits}
+            heldBy={props.heldBy ?? nobody}
+          />
+          {foot}
+        </div>
+        <aside className="strip-right" aria-label="Margin">
+          <div>
+            <Guard what="The margin could not be shown." until={reading.answered}>
+              {margin}
+              <Key slices={reading.slices} />
+            </Guard>
+          </div>
+        </aside>
+      </main>
+      <Guard what="The plate could not be drawn." until={reading.answered}>
+        <Plate reading={reading} />
+      </Guard>
+    </HandContext>
+  );
+}
+
+/** The claims of an audit line; a spectrum's levels are drawn beside them. */
+function claimsOf(row: ClaimsRow): ReactNode {
+  const drawn = largest(row.claims);
+  const list = <Claims claims={row.claims} audit={row.audit} />;
+  if (!drawn) return list;
+  return (
+    <div className="audit-with-plot">
+      {list}
+      <Levels left={drawn.left} right={drawn.right} label={`Levels of ${drawn.of}`} />
+    </div>
+  );
+}
+
+function largest(claims: readonly Claim[]) {
+  const found = claims.flatMap((claim) => {
+    const levels = levelsOf(claim);
+    return levels ? [{ ...levels, of: claim.statement }] : [];
+  });
+  return found.at(-1);
+}

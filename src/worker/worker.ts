@@ -1,0 +1,93 @@
+import { type Derivation, newDerivation, type Step } from '../../shared/derivation/derive.ts';
+import kernelAddress from '../../shared/spectra/kernel/kernel.wasm?url';
+import { wasmKernel } from '../../shared/spectra/kernel/wasm.ts';
+import type { Report } from '../../shared/contracts/report.ts';
+import { type Answer, type Ask, protocol } from './messages.ts';
+
+/**
+ * The engine's home in the browser. A text is answered in slices: at once with all that is symbolic or known from before;
+ * numerical answers follow after a pause in typing, one by one. A newer text ends the run of the older.
+ */
+
+/** A browser answers what takes some seconds; the rest stands open with its cost, for the server. */
+const limit = { operations: 4e10, bytes: 2 ** 28 };
+/** Numbers wait for this pause in typing, so that no key waits for them, in milliseconds. */
+const pause = 300;
+/** Longest stretch of work before looking whether a newer text has come, in milliseconds. */
+const slice = 12;
+
+const scope = self as unknown as {
+  onmessage: ((event: MessageEvent<Ask>) => void) | null;
+  postMessage: (answer: Answer) => void;
+};
+
+let newest: Ask | undefined;
+let working = false;
+
+/** Waits until messages that have arrived are taken in; timers would be held back to 4 ms. */
+const channel = new MessageChannel();
+const turn = (): Promise<void> =>
+  new Promise((resolve) => {
+    channel.port1.onmessage = () => resolve();
+    channel.port2.postMessage(null);
+  });
+const rest = (milliseconds: number): Promise<void> => new Promise((resolve) => setTimeout(resolve, milliseconds));
+
+async function engine(): Promise<Derivation> {
+  try {
+    const answer = await fetch(kernelAddress);
+    return newDerivation({ limit, kernel: await wasmKernel(await answer.arrayBuffer()) });
+  } catch {
+    // Without WebAssembly the plain kernel does the same, more slowly.
+    return newDerivation({ limit });
+  }
+}
+const ready = engine();
+
+scope.onmessage = ({ data }) => {
+  newest = data;
+  if (!working) void work();
+};
+
+/** Answers the newest text until none newer has come. */
+async function work(): Promise<void> {
+  working = true;
+  const derivation = await ready;
+  for (let ask = newest; ask; ask = newest) {
+    newest = undefined;
+    try {
+      await answer(derivation, ask);
+    } catch (error) {
+      const message = error instanceof Error ? error.message : 'The engine could not read this text.';
+      scope.postMessage({ protocol, version: ask.version, part: Number.MAX_SAFE_INTEGER, kind: 'failed', message });
+    }
+  }
+  working = false;
+}
+
+async function answer(derivation: Derivation, { version, text, protocol: theirs }: Ask): Promise<void> {
+  let part = 0;
+  const say = (report: Report, waiting: number) => {
+    scope.postMessage({ protocol, version, part, kind: 'report', report, waiting });
+    part += 1;
+  };
+  if (theirs !== protocol) throw new Error('The page is older than the engine; load it again.');
+  const run: Generator<Step, Report> = derivation.run(text);
+  try {
+    for (let until = performance.now() + slice; ; ) {
+      const step = run.next();
+      if (step.done) return say(step.value, 0);
+      if (step.value.kind === 'report') {
+        say(step.value.report, step.value.waiting);
+        if (part === 1) await rest(pause);
+      }
+      if (performance.now() < until) continue;
+      await turn();
+      if (newest) return;
+      until = performance.now() + slice;
+    }
+  } finally {
+    // Ends a run that is left half way; what it has answered is kept by the derivation.
+    run.return(undefined as never);
+  }
+}
