@@ -85,6 +85,8 @@ export function extendedPhrase(e: Extended, family: LatticeFamily): string {
   const sorted = [...e.parts].sort((a, b) =>
     compareOffsets(a.string.factors[0]?.cell.offset ?? [], b.string.factors[0]?.cell.offset ?? []),
   );
-  const body = partsText(sorted, family).join(' ');
+  // a product's body runs to the next sign, so all but a lone one stand in brackets
+  const parts = partsText(sorted, family);
+  const body = parts.map((part) => (parts.length > 1 && part.startsWith('prod(') ? `(${part})` : part)).join(' ');
   return `${signs[e.phase]}${body === '' ? '1' : body}`;
 }

@@ -55,7 +55,16 @@ describe('moves and rules', () => {
     const chain = lattice('chain', 'torus', 6);
     const s = spins('s', 'vertices', [0]);
     // the number on three neighbours: hopping at the rim changes it, hopping within does not
-    const pair = rule('pair', '==', 1, [{ sites: [['s:v0(0)', 1], ['s:v0(1)', 1]], anchor: 'v0(0)', steps: [2] }]);
+    const pair = rule('pair', '==', 1, [
+      {
+        sites: [
+          ['s:v0(0)', 1],
+          ['s:v0(1)', 1],
+        ],
+        anchor: 'v0(0)',
+        steps: [2],
+      },
+    ]);
     const within = operator(family(1, 'sx:v0(0) sx:v0(1)', [2]), family(1, 'sy:v0(0) sy:v0(1)', [2]));
     const alone = operator(family(1, 'sx:v0(0) sx:v0(1)', [2]));
     const across = operator(family(1, 'sx:v0(1) sx:v0(2)', [2]), family(1, 'sy:v0(1) sy:v0(2)', [2]));
@@ -64,7 +73,16 @@ describe('moves and rules', () => {
     // of one excited spin of two, X X makes one again: kept as well
     expect(gradeOf(keepsRule('alone', pair, all).evidence)).toBe('proved');
     expect(gradeOf(keepsRule('across', pair, all).evidence)).toBe('refuted');
-    const most = rule('most', '<=', 1, [{ sites: [['s:v0(0)', 1], ['s:v0(1)', 1]], anchor: 'v0(0)', steps: [2] }]);
+    const most = rule('most', '<=', 1, [
+      {
+        sites: [
+          ['s:v0(0)', 1],
+          ['s:v0(1)', 1],
+        ],
+        anchor: 'v0(0)',
+        steps: [2],
+      },
+    ]);
     const more = values(chain, s, most, model('within', within), model('alone', alone));
     expect(gradeOf(keepsRule('within', most, more).evidence)).toBe('proved');
     // |00> -> |11>
@@ -74,13 +92,28 @@ describe('moves and rules', () => {
   it('a blockaded flip keeps the blockade, a free one does not', () => {
     const chain = lattice('chain', 'torus', 6);
     const s = spins('s', 'vertices', [0]);
-    const blockade = rule('blockade', '<=', 1, [{ sites: [['s:v0(0)', 1], ['s:v0(1)', 1]], anchor: 'v0(0)', steps: [1] }]);
+    const blockade = rule('blockade', '<=', 1, [
+      {
+        sites: [
+          ['s:v0(0)', 1],
+          ['s:v0(1)', 1],
+        ],
+        anchor: 'v0(0)',
+        steps: [1],
+      },
+    ]);
     const empty = (where: string): [Coefficient, string][] => [
       [number(1, 2), ''],
       [number(1, 2), `sz:${where}`],
     ];
     const pxp = product([empty('v0(-1)'), [[1, 'sx:v0(0)']], empty('v0(1)')], [1]);
-    const all = values(chain, s, blockade, model('pxp', operator(...pxp)), model('free', operator(family(1, 'sx:v0(0)', [1]))));
+    const all = values(
+      chain,
+      s,
+      blockade,
+      model('pxp', operator(...pxp)),
+      model('free', operator(family(1, 'sx:v0(0)', [1]))),
+    );
     const kept = keepsRule('pxp', blockade, all);
     expect(gradeOf(kept.evidence)).toBe('proved');
     expect(kept.figures).toMatchObject({ terms: 4, commuting: 4, moves: 1 });

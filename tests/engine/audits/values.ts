@@ -1,8 +1,24 @@
 import { Coefficient } from '../../../shared/algebra/numbers/coefficient.ts';
 import { collect, scaleOperator, multiplyOperators, pinnedOperator } from '../../../shared/algebra/pauli/family.ts';
 import { newString } from '../../../shared/algebra/pauli/string.ts';
-import type { Extended, Factor, Family, LocalString, Operator, Pauli, Steps } from '../../../shared/algebra/pauli/types.ts';
-import type { AuditStatement, LawValue, ModelValue, RuleValue, SymmetryValue, Value, Values } from '../../../shared/language/values.ts';
+import type {
+  Extended,
+  Factor,
+  Family,
+  LocalString,
+  Operator,
+  Pauli,
+  Steps,
+} from '../../../shared/algebra/pauli/types.ts';
+import type {
+  AuditStatement,
+  LawValue,
+  ModelValue,
+  RuleValue,
+  SymmetryValue,
+  Value,
+  Values,
+} from '../../../shared/language/values.ts';
 import { builtInFamily } from '../../../shared/lattice/built-in.ts';
 import type { Cell, CellKind, Lattice } from '../../../shared/lattice/cells.ts';
 import { periodicDirections, straight } from '../../../shared/lattice/cluster.ts';
@@ -33,7 +49,12 @@ export function string(text: string, phase = 0): LocalString {
     .map((word): Factor => {
       const m = /^(\w+)([xyz])(\??):(.*)$/.exec(word);
       if (!m) throw new Error(`"${word}" is no factor`);
-      return { species: m[1] ?? '', pauli: m[2] as Pauli, cell: cell(m[4] ?? ''), ...(m[3] === '?' ? { optional: true as const } : {}) };
+      return {
+        species: m[1] ?? '',
+        pauli: m[2] as Pauli,
+        cell: cell(m[4] ?? ''),
+        ...(m[3] === '?' ? { optional: true as const } : {}),
+      };
     });
   return newString(factors, phase);
 }
@@ -49,26 +70,65 @@ export const family = (coefficient: Coefficient | number, text: string, steps: S
 
 export const operator = (...families: Family[]): Operator => collect([{ families, extended: [] }], { open: false });
 
-export const spins = (name: string, kind: CellKind, classes: readonly number[]): Value => ({ what: 'spins', name, place, text: '', kind, classes });
+export const spins = (name: string, kind: CellKind, classes: readonly number[]): Value => ({
+  what: 'spins',
+  name,
+  place,
+  text: '',
+  kind,
+  classes,
+});
 
-export const coupling = (name: string, value?: Coefficient): Value => ({ what: 'coupling', name, place, text: '', value });
+export const coupling = (name: string, value?: Coefficient): Value => ({
+  what: 'coupling',
+  name,
+  place,
+  text: '',
+  value,
+});
 
 export function model(name: string, op: Operator): ModelValue {
   const species = [...new Set(op.families.flatMap((f) => f.string.factors.map((x) => x.species)))];
-  return { what: 'model', name, place, text: '', operator: op, species, image: undefined, pieces: [{ place, operator: op }], seams: [] };
+  return {
+    what: 'model',
+    name,
+    place,
+    text: '',
+    operator: op,
+    species,
+    image: undefined,
+    pieces: [{ place, operator: op }],
+    seams: [],
+  };
 }
 
-export const law = (name: string, kind: CellKind, value: 1 | -1, strings: readonly { text: string; anchor: string; steps: Steps }[]): LawValue => ({
+export const law = (
+  name: string,
+  kind: CellKind,
+  value: 1 | -1,
+  strings: readonly { text: string; anchor: string; steps: Steps }[],
+): LawValue => ({
   what: 'law',
   name,
   place,
   text: '',
   parameter: { variable: kind[0] ?? 'v', kind },
   value,
-  families: strings.map(({ text, anchor, steps }) => ({ string: string(text), steps, needs: [cell(anchor)], anchor: cell(anchor) })),
+  families: strings.map(({ text, anchor, steps }) => ({
+    string: string(text),
+    steps,
+    needs: [cell(anchor)],
+    anchor: cell(anchor),
+  })),
 });
 
-export const symmetry = (name: string, extended: Extended): SymmetryValue => ({ what: 'symmetry', name, place, text: '', extended });
+export const symmetry = (name: string, extended: Extended): SymmetryValue => ({
+  what: 'symmetry',
+  name,
+  place,
+  text: '',
+  extended,
+});
 
 /** (1 − Z)/2 of each spin, times its weight, summed. */
 function occupation(sites: readonly (readonly [site: string, weight: number])[], dimension: number): Operator {
@@ -78,7 +138,12 @@ function occupation(sites: readonly (readonly [site: string, weight: number])[],
     const optional = species.endsWith('?') ? '?' : '';
     return [
       { coefficient: number(weight, 2), string: string(''), steps: pinned, needs: [cell(where)] },
-      { coefficient: number(-weight, 2), string: string(`${species.replace('?', '')}z${optional}:${where}`), steps: pinned, needs: [cell(where)] },
+      {
+        coefficient: number(-weight, 2),
+        string: string(`${species.replace('?', '')}z${optional}:${where}`),
+        steps: pinned,
+        needs: [cell(where)],
+      },
     ];
   });
   return { families, extended: [] };
@@ -106,12 +171,17 @@ export const rule = (
 });
 
 /** Product of pinned sums, spread over the lattice: `moves([['x', …], …])` are sums of strings with coefficients. */
-export function product(factors: readonly (readonly (readonly [Coefficient | number, string])[])[], steps: Steps): Family[] {
+export function product(
+  factors: readonly (readonly (readonly [Coefficient | number, string])[])[],
+  steps: Steps,
+): Family[] {
   const dimension = steps.length;
   let whole: Operator | undefined;
   for (const sum of factors) {
     const one = collect(
-      sum.map(([c, text]) => scaleOperator(pinnedOperator(string(text), dimension), typeof c === 'number' ? number(c) : c)),
+      sum.map(([c, text]) =>
+        scaleOperator(pinnedOperator(string(text), dimension), typeof c === 'number' ? number(c) : c),
+      ),
       { open: false },
     );
     whole = whole ? multiplyOperators(whole, one, { open: false }) : one;
@@ -150,4 +220,8 @@ export const statement = (audit: string, more: Partial<AuditStatement>): AuditSt
   over: [],
   ...more,
 });
-export const subject = (name: string, sector: AuditStatement['subjects'][number]['sector'] = []) => ({ name, sector, place });
+export const subject = (name: string, sector: AuditStatement['subjects'][number]['sector'] = []) => ({
+  name,
+  sector,
+  place,
+});
