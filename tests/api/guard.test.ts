@@ -41,7 +41,7 @@ describe('requests from elsewhere', () => {
 describe('problem documents', () => {
   it('when a body is no JSON, too large or wrong, then the document says so and where', async () => {
     const headers = { 'x-gaugewright': '1', 'Content-Type': 'application/json' };
-    const send = async (body: string) =>
+    const send = async (body: string): Promise<unknown> =>
       (await client.fetch('/api/notebooks', { method: 'POST', headers, body })).json();
     expect(await send('{')).toMatchObject({ status: 400, code: 'bad-input' });
     expect(await send(`"${'x'.repeat(6_000_000)}"`)).toMatchObject({ status: 413, code: 'too-large' });

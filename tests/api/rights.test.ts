@@ -1,0 +1,195 @@
+import { beforeAll, beforeEach, describe, expect, it } from 'vitest';
+import { actionsOf, may, type Standing } from '../../server/rights.ts';
+import { address, type EndpointName, endpoints, writeHeader } from '../../shared/contracts/endpoints.ts';
+import { actions, type Action, roles, visibilities, type Visibility } from '../../shared/contracts/rights.ts';
+import { type Client, person, type Server, server, visitor } from './support/client.ts';
+
+/**
+ * Who may what on a notebook, written out by hand from the table of section 8 of the design: one column for each kind of person,
+ * as letters in the order of `columns`; `x` allowed, `-` not. A public notebook may also be read by those without a role.
+ */
+const columns = ['visitor', 'passer', 'reader', 'referee', 'coauthor', 'owner'] as const;
+type Column = (typeof columns)[number];
+const expected: Readonly<Record<Visibility, Partial<Record<Action, string>>>> = {
+  private: {
+    read: '--xxxx',
+    export: '--xxxx',
+    fork: '--xxxx',
+    leave: '--xxx-',
+    remark: '---xxx',
+    judge: '---x--',
+    edit: '----xx',
+    publish: '----xx',
+    adopt: '----xx',
+    invite: '-----x',
+    show: '-----x',
+    link: '-----x',
+    delete: '-----x',
+  },
+  public: {
+    read: 'xxxxxx',
+    export: 'xxxxxx',
+    fork: '-xxxxx',
+    leave: '--xxx-',
+    remark: '---xxx',
+    judge: '---x--',
+    edit: '----xx',
+    publish: '----xx',
+    adopt: '----xx',
+    invite: '-----x',
+    show: '-----x',
+    link: '-----x',
+    delete: '-----x',
+  },
+};
+
+const allowed = (visibility: Visibility, action: Action, column: Column): boolean =>
+  expected[visibility][action]?.[columns.indexOf(column)] === 'x';
+
+describe('the table of rights', () => {
+  const standing = (column: Column, visibility: Visibility, steward = false): Standing => ({
+    person: column === 'visitor' ? null : 'p',
+    steward,
+    on: { notebook: 'n', visibility, role: roles.find((role) => role === column) ?? null, linked: null },
+  });
+
+  it('names every action of a notebook, and grants what the design says, to stewards no more', () => {
+    const ofNotebook = actions.filter((action) => !['visit', 'keep', 'steward'].includes(action));
+    for (const visibility of visibilities) {
+      expect(Object.keys(expected[visibility]).sort()).toEqual([...ofNotebook].sort());
+      for (const action of ofNotebook) {
+        for (const column of columns) {
+          const right = allowed(visibility, action, column);
+          const where = `${visibility} ${action} ${column}`;
+          expect([where, may(standing(column, visibility), action)]).toEqual([where, right]);
+          expect([where, may(standing(column, visibility, column !== 'visitor'), action)]).toEqual([where, right]);
+        }
+      }
+    }
+  });
+
+  it('gives a link no more than reading and exporting, whoever holds it', () => {
+    for (const holder of [null, 'p']) {
+      const on = { notebook: 'n', visibility: 'private', role: 'owner', linked: 'e' } as const;
+      expect(actionsOf({ person: holder, steward: true, on })).toEqual(['read', 'export']);
+    }
+  });
+});
+
+describe('every row of the table of endpoints', () => {
+  let here: Server;
+  const clients = new Map<Column, Client>();
+  let notebook = '',
+    entry = '',
+    token = '',
+    link = '',
+    reader = '';
+
+  beforeAll(async () => {
+    here = await server({ WRITES_PER_MINUTE: '5000', REQUESTS_PER_MINUTE: '50000' });
+    const logins = { passer: 'dquell', reader: 'tvasara', referee: 'mitsuno', coauthor: 'lbrandt', owner: 'rokafor' };
+    clients.set('visitor', visitor(here));
+    for (const [column, login] of Object.entries(logins)) clients.set(column as Column, await person(here, login));
+  });
+
+  /** A notebook with one entry, one edition, one link and a person in each role; made anew, since the rows change it. */
+  beforeEach(async () => {
+    const owner = clients.get('owner') as Client;
+    const entries = [{ kind: 'statements' as const, text: 'audit x' }];
+    const made = await owner.ask('createNotebook', { body: { title: 'Matrix', entries } });
+    notebook = made.id;
+    entry = made.entries[0]?.id ?? '';
+    const params = { notebook };
+    for (const [handle, role] of [
+      ['tvasara', 'reader'],
+      ['mitsuno', 'referee'],
+      ['lbrandt', 'coauthor'],
+    ] as const) {
+      const member = await owner.ask('addMember', { params, body: { handle, role } });
+      if (role === 'reader') reader = member.person.id;
+    }
+    await owner.ask('publishEdition', { params, body: { summary: 'First' } });
+    ({ id: link, token } = await owner.ask('createLink', { params, body: { edition: 1 } }));
+  });
+
+  const bodies: Partial<Record<EndpointName, object>> = {
+    changeNotebook: { title: 'Other' },
+    setVisibility: { visibility: 'private' },
+    forkNotebook: {},
+    insertEntry: { kind: 'prose', text: 'x' },
+    saveEntry: { text: 'audit y' },
+    moveEntry: { before: null },
+    publishEdition: { summary: 'Second' },
+    createLink: { edition: 1 },
+    addMember: { handle: 'dquell', role: 'reader' },
+    changeMember: { role: 'referee' },
+    createNotebook: { title: 'New' },
+    importNotebook: { source: '# x' },
+  };
+
+  async function status(name: EndpointName, client: Client): Promise<number> {
+    const row = endpoints[name];
+    const stop = new AbortController();
+    const response = await client.fetch(
+      address(row, { notebook, entry, link, token, edition: 1, person: reader, session: 'none' }),
+      {
+        method: row.method,
+        headers: { [writeHeader]: '1', 'Content-Type': 'application/json', 'If-Match': '"1"' },
+        signal: stop.signal,
+        ...(row.method === 'GET' ? {} : { body: JSON.stringify(bodies[name] ?? {}) }),
+      },
+    );
+    if (row.form === 'events') stop.abort();
+    return response.status;
+  }
+
+  /** What a row may answer to whom: 404 where they may not read, 401 or 403 where they may read and not do this, else anything. */
+  function verdict(name: EndpointName, visibility: Visibility, column: Column): number | 'allowed' {
+    const { of, action } = endpoints[name];
+    if (of === 'link' || action === 'visit') return 'allowed';
+    const refusal = column === 'visitor' ? 401 : 403;
+    if (of === 'installation') return action === 'keep' && column !== 'visitor' ? 'allowed' : refusal;
+    if (!allowed(visibility, 'read', column)) return 404;
+    return allowed(visibility, action, column) ? 'allowed' : refusal;
+  }
+
+  // Answers to an allowed request that are right all the same: there is no such session, the edition did not fail.
+  const alsoRight: Partial<Record<EndpointName, number>> = {
+    endSession: 404,
+    evaluateEdition: 409,
+    publishEdition: 409,
+  };
+
+  const names = Object.keys(endpoints) as EndpointName[];
+  it.each(visibilities.flatMap((visibility) => names.map((name) => [visibility, name] as const)))(
+    'when the notebook is %s, then %s answers each kind of person by the table',
+    async (visibility, name) => {
+      const owner = clients.get('owner') as Client;
+      if (visibility === 'public') await owner.ask('setVisibility', { params: { notebook }, body: { visibility } });
+      for (const column of columns) {
+        // Signing out would end the session that the next rows need.
+        if (name === 'signOut' && column !== 'visitor') continue;
+        const answer = await status(name, clients.get(column) as Client);
+        const wanted = verdict(name, visibility, column);
+        const row = endpoints[name];
+        const right = wanted === 'allowed' ? [row.status, alsoRight[name]].includes(answer) : answer === wanted;
+        expect(`${column}: ${String(answer)}${right ? '' : `, not ${String(wanted)}`}`).toBe(
+          `${column}: ${String(answer)}`,
+        );
+        // Back to what the next kind of person is to find.
+        if (wanted === 'allowed' && name === 'deleteEntry') {
+          await owner.ask('restoreEntry', { params: { notebook, entry } });
+        }
+        if (wanted === 'allowed' && name === 'holdEntry') {
+          await clients.get(column)?.ask('releaseEntry', { params: { notebook, entry } });
+        }
+        if (wanted === 'allowed' && name === 'leaveNotebook') await giveBack(owner, column);
+      }
+    },
+  );
+
+  async function giveBack(owner: Client, column: Column): Promise<void> {
+    const handle = { reader: 'tvasara', referee: 'mitsuno', coauthor: 'lbrandt' }[column as 'reader'];
+    await owner.ask('addMember', { params: { notebook }, body: { handle, role: column as 'reader' } });
+  }
+});
