@@ -1,6 +1,5 @@
 import type { FiniteString } from '../algebra/finite/types.ts';
 import type { FlipForm, FlipGroup, Kernel, Prepared, SignTerm, Vector } from './kernel/kernel.ts';
-import { isZero } from './bases/packed.ts';
 
 /**
  * The Hamiltonian as numbers. Floats begin here: below, strings, signs and coefficients are exact.
@@ -145,19 +144,4 @@ export function fromParts(
       imaginary?.free();
     },
   };
-}
-
-/** Number of different bit flips: what a product costs, in sweeps. */
-const flipCount = (strings: readonly FiniteString[]): number =>
-  new Set(strings.filter((s) => !isZero(s.x)).map((s) => s.x.join(','))).size;
-
-/** Exchanges X and Z on every site when that leaves fewer different bit flips; the spectrum is that of the same H. */
-export function cheaperFrame(strings: readonly FiniteString[]): (string: FiniteString) => FiniteString {
-  const turn = (s: FiniteString): FiniteString => {
-    // H X^x Z^z H = Z^x X^z = (−1)^(x·z) X^z Z^x
-    let odd = 0;
-    for (let w = 0; w < s.x.length; w++) odd ^= overlapBits(s.x[w] ?? 0, s.z[w] ?? 0);
-    return { n: s.n, x: s.z, z: s.x, phase: (s.phase + 2 * odd) & 3 };
-  };
-  return flipCount(strings.map(turn)) < flipCount(strings) ? turn : (s) => s;
 }

@@ -2,11 +2,11 @@ import type { FiniteModel } from '../algebra/finite/types.ts';
 import { limits } from '../limits.ts';
 import { enumeratedSector, type DiagonalRule, type EnumeratedFault } from './bases/enumerated.ts';
 import type { Constraint } from './bases/packed.ts';
-import { qubitSector, type Sector } from './bases/sector.ts';
-import type { Hamiltonian, NumericTerm } from './hamiltonian.ts';
+import { qubitSector, type Block, type Sector } from './bases/sector.ts';
+import type { NumericTerm } from './hamiltonian.ts';
 import type { Kernel, Vector } from './kernel/kernel.ts';
-import { hermitianEigen, symmetricEigen, type Eigen } from './solvers/dense.ts';
-import { lowestLevels, type Lowest } from './solvers/lanczos.ts';
+import { denseLevels, diagonalLevels, type Found } from './solvers/all-levels.ts';
+import { lowestLevels, type Board, type Lowest } from './solvers/lanczos.ts';
 import { multiplets, wholeMultiplets, type Multiplet } from './solvers/levels.ts';
 
 /** The one door to spectra: lowest levels of a model on a cluster, in a sector. */
@@ -65,14 +65,17 @@ export type SolveFault =
 export interface Spectrum {
   /** States in the sector. */
   readonly dimension: number;
-  /** Spins that number them. */
+  /** Spins left by the constraints. */
   readonly spins: number;
-  /** Ascending, with multiplicity, in the unit of the couplings: at least `levels` of them (or all), the last multiplet whole where it is not too large. */
+  /**
+   * Ascending, with multiplicity, in the unit of the couplings: at least `levels` of them (or all), the last multiplet
+   * whole where it is not too large to list.
+   */
   readonly energies: readonly number[];
   /** For each energy a bound: some level lies within it. Of dense solutions an estimate of rounding. */
   readonly residuals: readonly number[];
   readonly multiplets: readonly Multiplet[];
-  readonly method: 'dense' | 'lanczos';
+  readonly method: Method;
   readonly real: boolean;
   /** Terms that lead out of the states that the rules allow, by index. */
   readonly leaving: readonly number[];
@@ -80,11 +83,21 @@ export interface Spectrum {
   readonly space: EigenSpace | undefined;
 }
 
-/** Eigenvectors in the sector's basis; vector k belongs to energies[k]. Complex ones hold real parts, then imaginary parts. */
+/** How levels were found: read off a diagonal, by reduction of the full matrix, or by iteration. */
+export type Method = 'diagonal' | 'dense' | 'lanczos';
+
+/** An eigenvector in the basis of its block, which stands for `copies` levels. Complex ones hold real parts, then imaginary parts. */
+export interface EigenVector {
+  readonly block: Block;
+  /** Number of the block in its sector. */
+  readonly blockNumber: number;
+  readonly vector: Vector;
+}
+
+/** Eigenvectors in the order of the energies, copies left out. */
 export interface EigenSpace {
-  readonly sector: Sector;
-  readonly real: boolean;
-  readonly vectors: readonly Vector[];
+  readonly copies: number;
+  readonly vectors: readonly EigenVector[];
   readonly kernel: Kernel;
   /** Gives the memory back; the vectors must not be used afterwards. */
   free(): void;
@@ -103,74 +116,103 @@ export const tolerances = { residual: 1e-10, degenerate: 1e-8 } as const;
 
 /** Levels beyond those asked for that are computed to complete the last multiplet. */
 const extraLevels = 64;
-/** Products with H after which the Lanczos method gives up. */
+/** Products with H in one block after which the Lanczos method gives up. */
 const mostProducts = 20_000;
 const denseUpTo = 512;
 const denseUpToWhenAll = 4096;
+/** Equal levels that are written out one by one; `multiplets` has the full number. */
+const mostListed = 4096;
 
-type Prepared =
-  | { readonly ok: true; readonly sector: Sector; readonly cost: Cost; readonly dense: boolean }
-  | { readonly ok: false; readonly fault: SolveFault };
+interface Plan {
+  readonly sector: Sector;
+  readonly cost: Cost;
+  readonly method: Method;
+  /** Levels wanted of one copy. */
+  readonly count: number;
+}
 
 /** Coefficients as numbers; the one place where exact ones are left. Errors of missing values are those of the coefficient. */
 export function numericTerms(terms: FiniteModel['terms'], values: ReadonlyMap<string, number>): NumericTerm[] {
   return terms.map(({ coefficient, string }) => ({ ...coefficient.toFloat(values), string }));
 }
 
-function prepare(question: SpectrumQuestion, allowed: SolveLimits): Prepared {
-  const { model, constraints, rules = [], values } = question;
+function plan(
+  question: SpectrumQuestion,
+  allowed: SolveLimits,
+): { readonly ok: true; readonly plan: Plan } | { readonly ok: false; readonly fault: SolveFault } {
+  const { model, constraints, rules = [], values, levels } = question;
   const n = model.table.sites.length;
   const terms = numericTerms(model.terms, values);
   const constant = model.constant.toFloat(values).re;
-  const built =
+  const build = (all: boolean) =>
     rules.length > 0
       ? enumeratedSector(n, terms, constant, rules, constraints, allowed.states)
-      : qubitSector(n, terms, constant, constraints);
+      : qubitSector(n, terms, constant, constraints, all);
+  let built = build(false);
+  if (!built.ok) return built;
+  const many = manyLevels(built.value, levels);
+  if (many && rules.length === 0) built = build(true);
   if (!built.ok) return built;
   const sector = built.value;
-  const { dimension } = sector;
-  const many = question.levels * 8 > dimension;
-  const dense = dimension <= denseUpTo || (many && dimension <= denseUpToWhenAll);
-  return { ok: true, sector, dense, cost: dense ? denseCost(sector) : lanczosCost(sector, question.levels) };
+  const largest = Math.max(...sector.blocks.map((b) => b.dimension));
+  const dense = largest <= denseUpTo || (many && largest <= denseUpToWhenAll);
+  const method = sector.blocks.every((b) => b.diagonal) ? 'diagonal' : dense ? 'dense' : 'lanczos';
+  const count = Math.max(1, Math.ceil(levels / sector.copies));
+  return { ok: true, plan: { sector, method, count, cost: estimate(sector, method, count) } };
 }
 
-function denseCost({ dimension, real, productCost, matrixBytes }: Sector): Cost {
+/** So many levels that the full matrix is the better road. */
+const manyLevels = ({ copies, blocks }: Sector, levels: number): boolean =>
+  8 * levels > copies * blocks.reduce((sum, b) => sum + b.dimension, 0);
+
+function estimate(sector: Sector, method: Method, count: number): Cost {
+  const blocks = sector.blocks.map((b) => blockCost(b, method, count));
+  const most = (pick: (b: { bytes: number; operations: number }) => number) =>
+    blocks.reduce((m, b) => Math.max(m, pick(b)), 0);
+  return {
+    dimension: sector.dimension,
+    // Blocks are solved side by side where memory allows, and one after the other where it does not.
+    bytes: most((b) => b.bytes),
+    operations: blocks.reduce((sum, b) => sum + b.operations, 0),
+  };
+}
+
+function blockCost(block: Block, method: Method, count: number): { bytes: number; operations: number } {
+  const { dimension, real, productCost, matrixBytes } = block;
   const parts = real ? 1 : 2;
+  if (method === 'diagonal') return { bytes: 32 * dimension, operations: 40 * dimension };
+  if (method === 'dense') {
+    return {
+      bytes: matrixBytes + 16 * parts * dimension ** 2,
+      operations: productCost * dimension + 4 * parts ** 2 * dimension ** 3,
+    };
+  }
+  const vectors = leastVectors(count);
+  const steps = 120 + 40 * count;
   return {
-    dimension,
-    bytes: matrixBytes + 16 * parts * dimension ** 2,
-    operations: productCost * dimension + 4 * parts ** 2 * dimension ** 3,
+    bytes: matrixBytes + vectors * 8 * parts * dimension,
+    operations: steps * (productCost + 2 * vectors * dimension * parts ** 2),
   };
 }
 
-function lanczosCost({ dimension, real, productCost, matrixBytes }: Sector, levels: number): Cost {
-  const vectors = levels + windowVectors(levels);
-  const steps = 120 + 40 * levels;
-  const perVector = (real ? 8 : 16) * dimension;
-  return {
-    dimension,
-    bytes: matrixBytes + vectors * perVector,
-    operations: steps * (productCost + 2 * vectors * dimension * (real ? 1 : 4)),
-  };
-}
-
-/** The least window that converges well; a larger one is used where memory allows. */
-const windowVectors = (levels: number): number => Math.min(levels, 20) + 10;
+/** Vectors without which the iteration would crawl: those found, and a window. */
+const leastVectors = (count: number): number => count + Math.min(count, 12) + 6;
 
 /** What a question will cost, before it is solved, or why it has no answer. */
 export function costOf(
   question: SpectrumQuestion,
   means: Pick<Means, 'limits'> = {},
 ): { readonly ok: true; readonly cost: Cost } | { readonly ok: false; readonly fault: SolveFault } {
-  const prepared = prepare(question, { ...solveLimits, ...means.limits });
-  return prepared.ok ? { ok: true, cost: prepared.cost } : prepared;
+  const planned = plan(question, { ...solveLimits, ...means.limits });
+  return planned.ok ? { ok: true, cost: planned.plan.cost } : planned;
 }
 
-function overLimits(sector: Sector, cost: Cost, allowed: SolveLimits): SolveFault | undefined {
+function overLimits({ sector, cost }: Plan, allowed: SolveLimits): SolveFault | undefined {
   const over = (what: 'spins' | 'bytes' | 'operations', needed: number, limit: number): SolveFault | undefined =>
     needed > limit ? { code: 'too large', what, needed, limit, cost } : undefined;
+  const states = sector.blocks.reduce((sum, b) => sum + b.dimension, 0);
   return (
-    (sector.kind === 'all states' ? over('spins', sector.spins, allowed.spins) : undefined) ??
+    (sector.kind === 'all states' ? over('spins', Math.ceil(Math.log2(states)), allowed.spins) : undefined) ??
     over('bytes', cost.bytes, allowed.bytes) ??
     over('operations', cost.operations, allowed.operations)
   );
@@ -183,19 +225,30 @@ function overLimits(sector: Sector, cost: Cost, allowed: SolveLimits): SolveFaul
  */
 export function* solve(question: SpectrumQuestion, means: Means): Generator<Progress, SolveResult> {
   const allowed = { ...solveLimits, ...means.limits };
-  const prepared = prepare(question, allowed);
-  if (!prepared.ok) return prepared;
-  const { sector, cost, dense } = prepared;
-  const fault = overLimits(sector, cost, allowed);
+  const planned = plan(question, allowed);
+  if (!planned.ok) return planned;
+  const fault = overLimits(planned.plan, allowed);
   if (fault) return { ok: false, fault };
-  const h = sector.hamiltonian(means.kernel);
-  try {
-    return dense
-      ? yield* solveDense(question, sector, h, means.kernel)
-      : yield* solveLanczos(question, sector, h, means.kernel, allowed);
-  } finally {
-    h.free();
+  const { sector, method, count } = planned.plan;
+  if (method === 'lanczos') return yield* iterate(question, planned.plan, means.kernel, allowed);
+  const found: Found[] = [];
+  const vectors = question.vectors === true ? count + extraLevels : 0;
+  for (const [k, block] of sector.blocks.entries()) {
+    const levels = block.diagonal?.();
+    if (levels) found.push(diagonalLevels(levels, count, tolerances.degenerate, vectors, means.kernel));
+    else {
+      const run = denseLevels(block, vectors, means.kernel);
+      for (let step = run.next(); ; step = run.next()) {
+        if (step.done) {
+          found.push(step.value);
+          break;
+        }
+        yield { done: (k + step.value) / sector.blocks.length };
+      }
+    }
+    yield { done: (k + 1) / sector.blocks.length };
   }
+  return { ok: true, value: join(question, planned.plan, found, means.kernel) };
 }
 
 /** `solve` driven to its end. */
@@ -207,142 +260,126 @@ export function solveNow(question: SpectrumQuestion, means: Means): SolveResult 
   }
 }
 
-function* solveDense(
+/** Lanczos in all blocks: side by side where memory allows, so that each learns early what the others have, else in turn. */
+function* iterate(
   question: SpectrumQuestion,
-  sector: Sector,
-  h: Hamiltonian,
-  kernel: Kernel,
-): Generator<Progress, SolveResult> {
-  const n = sector.dimension;
-  const { re, im } = yield* denseMatrix(h, kernel);
-  const wanted = question.vectors === true;
-  const eigen = h.real ? realLevels(re, n, wanted, kernel) : hermitianEigen(re, im, n, wanted);
-  const scale = Math.max(Math.abs(eigen.values[0] ?? 0), Math.abs(eigen.values[n - 1] ?? 0));
-  const kept = wholeMultiplets(eigen.values, question.levels, tolerances.degenerate * scale);
-  const energies = Array.from(eigen.values.subarray(0, kept));
-  const vectors = wanted ? energies.map((_, k) => denseVector(eigen, k, n, h.real, kernel)) : [];
-  return {
-    ok: true,
-    value: {
-      dimension: n,
-      spins: sector.spins,
-      energies,
-      // Backward error of the orthogonal reduction: a small multiple of n ε ‖H‖ (J. Wilkinson, The Algebraic Eigenvalue Problem (1965)).
-      residuals: energies.map(() => n * 2.3e-16 * scale),
-      multiplets: multiplets(energies, tolerances.degenerate * scale, true),
-      method: 'dense',
-      real: h.real,
-      leaving: sector.leaving,
-      space: wanted ? space(sector, h.real, vectors, kernel) : undefined,
-    },
-  };
-}
-
-function realLevels(matrix: Float64Array, n: number, vectors: boolean, kernel: Kernel): Eigen {
-  const space = kernel.sweep?.(n);
-  try {
-    return symmetricEigen(matrix, n, vectors, space);
-  } finally {
-    space?.free();
-  }
-}
-
-/** Columns of H, one product each; row-major, and H is Hermitian. */
-function* denseMatrix(h: Hamiltonian, kernel: Kernel): Generator<Progress, { re: Float64Array; im: Float64Array }> {
-  const n = h.dimension;
-  const re = new Float64Array(n * n);
-  const im = new Float64Array(h.real ? 0 : n * n);
-  const length = h.real ? n : 2 * n;
-  const [unit, column] = [kernel.vector(length), kernel.vector(length)];
-  try {
-    for (let k = 0; k < n; k++) {
-      kernel.fill(unit, 0);
-      unit.view[k] = 1;
-      h.apply(unit, column);
-      // Entry (r, k) is the conjugate of (k, r): the column, conjugated, is row k.
-      re.set(column.view.subarray(0, n), k * n);
-      if (!h.real) for (let r = 0; r < n; r++) im[k * n + r] = -(column.view[n + r] ?? 0);
-      if (k % 256 === 255) yield { done: (0.5 * k) / n };
-    }
-  } finally {
-    kernel.release(unit);
-    kernel.release(column);
-  }
-  return { re, im };
-}
-
-function denseVector(
-  eigen: { readonly vectors: Float64Array | undefined; readonly imaginary: Float64Array | undefined },
-  k: number,
-  n: number,
-  real: boolean,
-  kernel: Kernel,
-): Vector {
-  const v = kernel.vector(real ? n : 2 * n);
-  if (eigen.vectors) v.view.set(eigen.vectors.subarray(k * n, k * n + n));
-  if (eigen.imaginary) v.view.set(eigen.imaginary.subarray(k * n, k * n + n), n);
-  return v;
-}
-
-function* solveLanczos(
-  question: SpectrumQuestion,
-  sector: Sector,
-  h: Hamiltonian,
+  { sector, count }: Plan,
   kernel: Kernel,
   allowed: SolveLimits,
 ): Generator<Progress, SolveResult> {
-  const perVector = (h.real ? 8 : 16) * sector.dimension;
-  const room = Math.floor((allowed.bytes - sector.matrixBytes) / perVector);
-  const request = {
-    count: question.levels,
-    extra: Math.max(0, Math.min(extraLevels, room - question.levels - windowVectors(question.levels))),
-    tolerance: tolerances.residual,
-    degenerate: tolerances.degenerate,
-    vectors: room,
-    products: mostProducts,
-  };
-  const run = lowestLevels(h, request, kernel);
-  const expected = 120 + 40 * question.levels;
+  const { blocks } = sector;
+  const matrices = blocks.reduce((sum, b) => sum + b.matrixBytes, 0);
+  const perVector = Math.max(...blocks.map((b) => (b.real ? 8 : 16) * b.dimension));
+  const room = Math.floor((allowed.bytes - matrices) / perVector);
+  const together = room >= blocks.length * (leastVectors(count) + 8);
+  const share = together ? Math.floor(room / blocks.length) : room;
+  const boards = newBoards(blocks.length, count);
+  const results: (Lowest | undefined)[] = blocks.map(() => undefined);
+  const waiting = [...blocks.keys()];
+  const running = new Map<number, Generator<number, Lowest>>();
+  const hamiltonians = blocks.map((b) => b.hamiltonian(kernel));
+  let products = 0;
   try {
-    for (;;) {
-      const step = run.next();
-      if (step.done) return lanczosResult(question, sector, h.real, step.value, kernel);
-      yield { done: step.value / (step.value + expected) };
+    while (waiting.length > 0 || running.size > 0) {
+      while (waiting.length > 0 && (together || running.size === 0)) {
+        const k = waiting.shift() ?? 0;
+        const held = together ? 0 : results.reduce((sum, r) => sum + (r?.vectors.length ?? 0), 0);
+        running.set(k, lowestLevels(hamiltonians[k]!, request(question, count, share - held, boards[k]!), kernel));
+      }
+      for (const [k, run] of running) {
+        const step = run.next();
+        if (step.done) {
+          results[k] = step.value;
+          running.delete(k);
+        } else yield { done: ++products / (products + (120 + 40 * count) * blocks.length) };
+      }
     }
   } finally {
-    // Stopped from outside: lets the run give its memory back.
-    run.return(undefined as never);
+    // Stopped from outside, or out of memory: the runs give their memory back.
+    running.forEach((run) => run.return(undefined as never));
+    if (running.size > 0 || waiting.length > 0) results.forEach((r) => r?.vectors.forEach((v) => kernel.release(v)));
+    hamiltonians.forEach((h) => h.free());
   }
+  const found = results.filter((r) => r !== undefined);
+  if (found.some((r) => !r.converged)) {
+    found.forEach((r) => r.vectors.forEach((v) => kernel.release(v)));
+    return {
+      ok: false,
+      fault: { code: 'not converged', products, found: found.reduce((sum, r) => sum + r.energies.length, 0) },
+    };
+  }
+  return { ok: true, value: join(question, { sector, count, method: 'lanczos' }, found, kernel) };
 }
 
-function lanczosResult(
-  question: SpectrumQuestion,
-  sector: Sector,
-  real: boolean,
-  found: Lowest,
-  kernel: Kernel,
-): SolveResult {
-  const keep = question.vectors === true && found.converged;
-  if (!keep) found.vectors.forEach((v) => kernel.release(v));
-  if (!found.converged)
-    return { ok: false, fault: { code: 'not converged', products: found.products, found: found.energies.length } };
-  const energies = Array.from(found.energies);
+function request(question: SpectrumQuestion, count: number, vectors: number, board: Board) {
   return {
-    ok: true,
-    value: {
-      dimension: sector.dimension,
-      spins: sector.spins,
-      energies,
-      residuals: Array.from(found.residuals),
-      multiplets: multiplets(energies, tolerances.degenerate * found.scale, found.complete),
-      method: 'lanczos',
-      real,
-      leaving: sector.leaving,
-      space: keep ? space(sector, real, found.vectors, kernel) : undefined,
-    },
+    count,
+    extra: Math.max(0, Math.min(extraLevels, vectors - leastVectors(count))),
+    tolerance: tolerances.residual,
+    degenerate: tolerances.degenerate,
+    vectors,
+    products: mostProducts + 200 * question.levels,
+    board,
   };
 }
 
-function space(sector: Sector, real: boolean, vectors: readonly Vector[], kernel: Kernel): EigenSpace {
-  return { sector, real, vectors, kernel, free: () => vectors.forEach((v) => kernel.release(v)) };
+/** One board for each block: together they bound the count-th level of all blocks from above. */
+function newBoards(blocks: number, count: number): Board[] {
+  const bounds: (readonly number[])[] = Array.from({ length: blocks }, () => []);
+  return bounds.map((_, k) => ({
+    report: (list) => void (bounds[k] = list),
+    ceiling: () => bounds.flat().sort((a, b) => a - b)[count - 1] ?? Infinity,
+  }));
+}
+
+/** Levels of all blocks in one list. Vectors that are not kept are released. */
+function join(
+  question: SpectrumQuestion,
+  { sector, count, method }: Omit<Plan, 'cost'>,
+  found: readonly Found[],
+  kernel: Kernel,
+): Spectrum {
+  const scale = Math.max(...found.map((f) => f.scale));
+  const tolerance = tolerances.degenerate * scale;
+  const all = found.flatMap((f, b) =>
+    Array.from(f.energies, (energy, k) => ({ energy, residual: f.residuals[k] ?? 0, b, k })),
+  );
+  all.sort((x, y) => x.energy - y.energy);
+  const kept = all.slice(
+    0,
+    wholeMultiplets(
+      all.map((x) => x.energy),
+      count,
+      tolerance,
+    ),
+  );
+  const vectors: EigenVector[] = [];
+  for (const { b, k } of question.vectors === true ? kept : []) {
+    const [block, vector] = [sector.blocks[b], found[b]?.vectors[k]];
+    if (block && vector) vectors.push({ block, blockNumber: b, vector });
+  }
+  const used = new Set(vectors.map((v) => v.vector));
+  found.forEach((f) => f.vectors.forEach((v) => used.has(v) || kernel.release(v)));
+  const listed = kept.flatMap((x) => Array<typeof x>(Math.min(sector.copies, mostListed)).fill(x));
+  listed.length = Math.min(listed.length, Math.max(mostListed, question.levels));
+  return {
+    dimension: sector.dimension,
+    spins: sector.spins,
+    energies: listed.map((x) => x.energy),
+    residuals: listed.map((x) => x.residual),
+    multiplets: multiplets(
+      kept.map((x) => x.energy),
+      tolerance,
+      found.every((f) => f.complete),
+      sector.copies,
+    ),
+    method,
+    real: sector.blocks.every((b) => b.real),
+    leaving: sector.leaving,
+    space: question.vectors === true ? space(sector.copies, vectors, kernel) : undefined,
+  };
+}
+
+function space(copies: number, vectors: readonly EigenVector[], kernel: Kernel): EigenSpace {
+  return { copies, vectors, kernel, free: () => vectors.forEach((v) => kernel.release(v.vector)) };
 }

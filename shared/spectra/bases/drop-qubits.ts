@@ -1,17 +1,5 @@
 import type { FiniteString } from '../../algebra/finite/types.ts';
-import {
-  bit,
-  commute,
-  dropSite,
-  hermitian,
-  isIdentity,
-  multiply,
-  oddY,
-  overlap,
-  signed,
-  support,
-  type Constraint,
-} from './packed.ts';
+import { bit, commute, dropSite, hermitian, isIdentity, multiply, signed, support, type Constraint } from './packed.ts';
 
 /**
  * Dropping one spin for each independent constraint (S. Bravyi, J. M. Gambetta, A. Mezzacapo, K. Temme,
@@ -98,108 +86,55 @@ function step(law: FiniteString): Step {
 }
 
 function run(steps: readonly Step[], string: FiniteString): FiniteString {
+  return follow(steps, string).string;
+}
+
+/** Image of a string, and which steps multiplied it by their law. */
+function follow(steps: readonly Step[], string: FiniteString): { string: FiniteString; used: boolean[] } {
   let s = string;
-  for (const { law, site, pivotX } of steps) {
+  const used = steps.map(({ law, site, pivotX }) => {
     // Anticommutes with q: take the other representative. Commuting strings have a commuting product, in either order.
-    if (bit(pivotX ? s.z : s.x, site) === 1) s = multiply(s, law);
+    const meets = bit(pivotX ? s.z : s.x, site) === 1;
+    if (meets) s = multiply(s, law);
     s = dropSite(s, site);
-  }
-  return s;
+    return meets;
+  });
+  return { string: s, used };
 }
 
 /**
- * A frame in which Hermitian strings are real, if the strings allow one: complex conjugation K maps T to (−1)^(Y's) T,
- * so P K is kept by every T if <P, T> = Y's of T mod 2. For P with an even number of Y's, (1 + iP)/√2 carries P K to K:
- * strings that commute with P stay, the others become iPT. Derived here. Returns undefined when the linear system has
- * no such solution, and the identity when the strings are real already.
+ * A frame in which independent commuting Hermitian strings, kept by every term, are single Z's: law i is Z on spin
+ * (n − laws + i), and all images have only 1 or Z there. The image of a string is its representative where all laws are
+ * +1, times the Z's of the laws it was multiplied by. Strings that do not commute with the laws have no image.
  */
-export function realFrame(
+export function labelFrame(
   n: number,
-  terms: readonly FiniteString[],
-): ((string: FiniteString) => FiniteString) | undefined {
-  if (terms.every((t) => oddY(t) === 0)) return (string) => string;
-  const p = realPartner(n, terms, 'z') ?? realPartner(n, terms, 'any');
-  if (!p) return undefined;
+  laws: readonly FiniteString[],
+): (string: FiniteString) => FiniteString | undefined {
+  const steps: Step[] = [];
+  // A law, reduced by those before it, may have taken up some of them: then its value stands for the product.
+  const masks: boolean[][] = [];
+  for (const [k, law] of laws.entries()) {
+    const { string, used } = follow(steps, law);
+    const mask = laws.map((_, i) => i === k);
+    used.forEach((yes, i) => yes && masks[i]?.forEach((m, l) => m && (mask[l] = !mask[l])));
+    steps.push(step(string));
+    masks.push(mask);
+  }
+  const left = n - laws.length;
   return (string) => {
-    if (commute(p, string)) return string;
-    const product = multiply(p, string);
-    return { ...product, phase: (product.phase + 1) & 3 };
-  };
-}
-
-/** Hermitian string with an even number of Y's and <P, T> = Y's of T; of Z's alone (flips stay as they are) or any. */
-function realPartner(n: number, terms: readonly FiniteString[], kind: 'z' | 'any'): FiniteString | undefined {
-  const unknowns = kind === 'z' ? n : 2 * n;
-  // Unknown s < n: a Z on site s (meets X of T); n + s: an X on site s (meets Z of T).
-  const rows = terms.map((t) => {
-    const row = new Uint8Array(unknowns + 1);
-    for (let s = 0; s < n; s++) {
-      row[s] = bit(t.x, s);
-      if (kind === 'any') row[n + s] = bit(t.z, s);
-    }
-    row[unknowns] = oddY(t);
-    return row;
-  });
-  const solved = solveF2(rows, unknowns);
-  if (!solved) return undefined;
-  const found = [solved.particular, ...solved.kernel.map((v) => v.map((b, k) => b ^ (solved.particular[k] ?? 0)))];
-  for (const v of found) {
-    const p = fromBits(n, v, kind);
-    if (oddY(p) === 0) return p;
-  }
-  // A sum of two kernel vectors may have an even number of Y's where none alone has.
-  for (const [k, a] of solved.kernel.entries()) {
-    for (const b of solved.kernel.slice(0, k)) {
-      const p = fromBits(
-        n,
-        a.map((value, i) => value ^ (b[i] ?? 0) ^ (solved.particular[i] ?? 0)),
-        kind,
-      );
-      if (oddY(p) === 0) return p;
-    }
-  }
-  return undefined;
-}
-
-function fromBits(n: number, v: Uint8Array, kind: 'z' | 'any'): FiniteString {
-  const x = new Uint32Array(Math.max(1, (n + 31) >>> 5));
-  const z = new Uint32Array(x.length);
-  for (let s = 0; s < n; s++) {
-    const place = 2 ** (s & 31);
-    if (v[s]) z[s >>> 5] = (z[s >>> 5] ?? 0) | place;
-    if (kind === 'any' && v[n + s]) x[s >>> 5] = (x[s >>> 5] ?? 0) | place;
-  }
-  return { n, x, z, phase: overlap(x, z) };
-}
-
-/** Solves rows · v = last column over F2: one solution and a basis of the kernel, or undefined. */
-function solveF2(rows: Uint8Array[], unknowns: number): { particular: Uint8Array; kernel: Uint8Array[] } | undefined {
-  const pivots: number[] = [];
-  let rank = 0;
-  for (let c = 0; c < unknowns && rank < rows.length; c++) {
-    const at = rows.findIndex((row, r) => r >= rank && row[c] === 1);
-    if (at < 0) continue;
-    const pivot = rows[at];
-    const first = rows[rank];
-    if (!pivot || !first) continue;
-    rows[at] = first;
-    rows[rank] = pivot;
-    rows.forEach((row, r) => {
-      if (r !== rank && row[c] === 1) for (let k = c; k <= unknowns; k++) row[k] = (row[k] ?? 0) ^ (pivot[k] ?? 0);
+    if (!laws.every((law) => commute(law, string))) return undefined;
+    const { string: inner, used } = follow(steps, string);
+    const labels = laws.map(() => false);
+    used.forEach((yes, i) => yes && masks[i]?.forEach((m, l) => m && (labels[l] = !labels[l])));
+    const x = new Uint32Array(Math.max(1, (n + 31) >>> 5));
+    const z = new Uint32Array(x.length);
+    x.set(inner.x.subarray(0, x.length));
+    z.set(inner.z.subarray(0, x.length));
+    labels.forEach((yes, i) => {
+      const place = left + i;
+      if (yes) z[place >>> 5] = (z[place >>> 5] ?? 0) | (2 ** (place & 31));
     });
-    pivots.push(c);
-    rank++;
-  }
-  if (rows.some((row, r) => r >= rank && row[unknowns] === 1)) return undefined;
-  const particular = new Uint8Array(unknowns);
-  pivots.forEach((c, r) => (particular[c] = rows[r]?.[unknowns] ?? 0));
-  const kernel: Uint8Array[] = [];
-  for (let c = 0; c < unknowns; c++) {
-    if (pivots.includes(c)) continue;
-    const v = new Uint8Array(unknowns);
-    v[c] = 1;
-    pivots.forEach((p, r) => (v[p] = rows[r]?.[c] ?? 0));
-    kernel.push(v);
-  }
-  return { particular, kernel };
+    return { n, x, z, phase: inner.phase };
+  };
 }

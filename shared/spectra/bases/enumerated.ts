@@ -14,7 +14,7 @@ import {
   support,
   type Constraint,
 } from './packed.ts';
-import type { Sector } from './sector.ts';
+import type { Block, Sector } from './sector.ts';
 
 /** Bases of the bit states that obey diagonal rules, alone or together with commuting Pauli constraints. */
 
@@ -316,21 +316,20 @@ function sectorOf(
     all.map((t, index) => ({ t, index })).filter(({ t }) => constraints.every((c) => commute(c.string, t.string)));
   const built = project(states, within(terms), constant, flips);
   const imaginary = built.imaginary.values.length > 0;
-  return {
-    kind: 'enumerated',
-    spins: n,
+  const entries = built.real.values.length + built.imaginary.values.length;
+  const block: Block = {
     dimension: states.count,
     real: !imaginary,
-    productCost: 2 * (built.real.values.length + built.imaginary.values.length) + states.count,
-    matrixBytes:
-      12 * (built.real.values.length + built.imaginary.values.length) + 8 * states.count + states.words.byteLength * 3,
-    leaving: built.leaving,
+    productCost: 2 * entries + states.count,
+    matrixBytes: 12 * entries + 8 * states.count + 3 * states.words.byteLength,
+    diagonal: undefined,
     hamiltonian: (kernel) => prepared(built, kernel, imaginary),
     operator(others, shift, kernel, complex) {
       const o = project(states, within(others), shift, flips);
       return prepared(o, kernel, complex && o.imaginary.values.length > 0, complex);
     },
   };
+  return { kind: 'enumerated', spins: n, dimension: states.count, copies: 1, leaving: built.leaving, blocks: [block] };
 }
 
 function prepared(built: Projected, kernel: Kernel, imaginary: boolean, complex = false): Hamiltonian {

@@ -69,3 +69,50 @@ export function support(a: FiniteString): number[] {
   for (let s = 0; s < a.n; s++) if (bit(a.x, s) | bit(a.z, s)) sites.push(s);
   return sites;
 }
+
+/** The Hermitian string of a 0/1 vector: Z on site s for s < n, X on site s for n + s (kind 'any'). */
+export function fromBits(n: number, v: Uint8Array, kind: 'z' | 'any'): FiniteString {
+  const x = new Uint32Array(Math.max(1, (n + 31) >>> 5));
+  const z = new Uint32Array(x.length);
+  for (let s = 0; s < n; s++) {
+    const place = 2 ** (s & 31);
+    if (v[s]) z[s >>> 5] = (z[s >>> 5] ?? 0) | place;
+    if (kind === 'any' && v[n + s]) x[s >>> 5] = (x[s >>> 5] ?? 0) | place;
+  }
+  return { n, x, z, phase: overlap(x, z) };
+}
+
+/** Solves rows · v = last column over F2: one solution and a basis of the kernel, or undefined. */
+export function solveF2(
+  rows: Uint8Array[],
+  unknowns: number,
+): { particular: Uint8Array; kernel: Uint8Array[] } | undefined {
+  const pivots: number[] = [];
+  let rank = 0;
+  for (let c = 0; c < unknowns && rank < rows.length; c++) {
+    const at = rows.findIndex((row, r) => r >= rank && row[c] === 1);
+    if (at < 0) continue;
+    const pivot = rows[at];
+    const first = rows[rank];
+    if (!pivot || !first) continue;
+    rows[at] = first;
+    rows[rank] = pivot;
+    rows.forEach((row, r) => {
+      if (r !== rank && row[c] === 1) for (let k = c; k <= unknowns; k++) row[k] = (row[k] ?? 0) ^ (pivot[k] ?? 0);
+    });
+    pivots.push(c);
+    rank++;
+  }
+  if (rows.some((row, r) => r >= rank && row[unknowns] === 1)) return undefined;
+  const particular = new Uint8Array(unknowns);
+  pivots.forEach((c, r) => (particular[c] = rows[r]?.[unknowns] ?? 0));
+  const kernel: Uint8Array[] = [];
+  for (let c = 0; c < unknowns; c++) {
+    if (pivots.includes(c)) continue;
+    const v = new Uint8Array(unknowns);
+    v[c] = 1;
+    pivots.forEach((p, r) => (v[p] = rows[r]?.[c] ?? 0));
+    kernel.push(v);
+  }
+  return { particular, kernel };
+}

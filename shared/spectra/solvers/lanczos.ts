@@ -11,6 +11,14 @@ import { fillSeeded, newWindow, orthogonalise, type Window } from './window.ts';
  * was found fewer than b times is complete; else new starts, orthogonal to all that is locked, look for more copies until
  * the rest of the space is seen to lie higher.
  */
+/** What blocks of one sector tell each other: levels of all of them bound what each still has to look for. */
+export interface Board {
+  /** Upper bounds for the lowest levels of this block: found ones and Ritz values, with multiplicity. */
+  report(bounds: readonly number[]): void;
+  /** Levels above this are not wanted. */
+  ceiling(): number;
+}
+
 export interface LowestRequest {
   /** Levels wanted, with multiplicity. */
   readonly count: number;
@@ -24,6 +32,7 @@ export interface LowestRequest {
   readonly vectors: number;
   /** Products with H after which the search gives up. */
   readonly products: number;
+  readonly board?: Board;
 }
 
 export interface Lowest {
@@ -93,9 +102,9 @@ class Search {
   /** Energy up to which levels are wanted: the last wanted one and its multiplet; infinite while too few are known. */
   private wantedUpTo(): number {
     const { count, degenerate } = this.request;
-    if (this.locked.length < count) return Infinity;
     const sorted = this.locked.map((l) => l.energy).sort((a, b) => a - b);
-    return (sorted[count - 1] ?? Infinity) + degenerate * this.scale;
+    const ceiling = this.request.board?.ceiling() ?? Infinity;
+    return Math.min(sorted[count - 1] ?? Infinity, ceiling) + degenerate * this.scale;
   }
 
   private full(): boolean {
@@ -159,16 +168,18 @@ class Search {
     let k = 0;
     const chosen: number[] = [];
     const known = this.locked.map((l) => l.energy);
+    const { board, count, degenerate } = this.request;
+    board?.report([...known, ...ritz.values.subarray(0, count)]);
+    const ceiling = board?.ceiling() ?? Infinity;
     const limit = () => {
       const sorted = [...known, ...chosen.map((c) => ritz.values[c] ?? 0)].sort((a, b) => a - b);
-      const last = sorted[this.request.count - 1];
-      return last === undefined ? Infinity : last + this.request.degenerate * this.scale;
+      return Math.min(sorted[count - 1] ?? Infinity, ceiling) + degenerate * this.scale;
     };
     let above = false;
     for (; k < ritz.values.length; k++) {
       const value = ritz.values[k] ?? 0;
       const residual = ritz.residuals[k] ?? 0;
-      if (this.liesAbove(value - limit(), residual) && (ended || band.done >= leastSteps)) {
+      if (this.liesAbove(value - limit(), residual) && (ended || band.steps >= leastSteps)) {
         above = true;
         break;
       }
@@ -207,7 +218,7 @@ class Search {
     const suspect = found.filter((e) => e <= limit && found.filter((f) => Math.abs(f - e) <= near).length >= width);
     if (this.locked.length >= this.h.dimension) this.complete = true;
     else if (this.cut || (this.full() && suspect.length > 0)) this.complete = false;
-    else if (suspect.length > 0 || this.locked.length < this.request.count) return 'again';
+    else if (suspect.length > 0) return 'again';
     else this.complete = true;
     return 'done';
   }
@@ -253,6 +264,8 @@ interface Ritz {
 /** The window of one run: `done` vectors that H has been applied to, and after them the pending ones. */
 class Band {
   done = 0;
+  /** Products of this run, restarts notwithstanding. */
+  steps = 0;
   private readonly h: Hamiltonian;
   private readonly kernel: Kernel;
   private readonly window: Window;
@@ -312,6 +325,7 @@ class Band {
       this.put(this.vectors.length - 1, this.done, norm, 0);
     } else this.kernel.release(w);
     this.done++;
+    this.steps++;
     return this.done === this.vectors.length;
   }
 

@@ -8,10 +8,15 @@ export interface Multiplet {
 }
 
 /**
- * Groups ascending levels: neighbours closer than `tolerance` (in the unit of the energies) belong together.
- * `lastComplete` is what is known about the last one; the others end where the next begins.
+ * Groups ascending levels, each of which stands for `copies`: neighbours closer than `tolerance` (in the unit of the
+ * energies) belong together. `lastComplete` is what is known about the last one; the others end where the next begins.
  */
-export function multiplets(energies: ArrayLike<number>, tolerance: number, lastComplete: boolean): Multiplet[] {
+export function multiplets(
+  energies: ArrayLike<number>,
+  tolerance: number,
+  lastComplete: boolean,
+  copies = 1,
+): Multiplet[] {
   const groups: number[][] = [];
   for (let k = 0; k < energies.length; k++) {
     const energy = energies[k] ?? 0;
@@ -21,7 +26,7 @@ export function multiplets(energies: ArrayLike<number>, tolerance: number, lastC
   }
   return groups.map((levels, k) => ({
     energy: levels.reduce((a, b) => a + b, 0) / levels.length,
-    multiplicity: levels.length,
+    multiplicity: levels.length * copies,
     complete: k < groups.length - 1 || lastComplete,
   }));
 }
