@@ -152,7 +152,9 @@ export function spectrumQuestion(
   levels: number,
   couplings: ReadonlyMap<string, number> = couplingValues(values),
 ): SpectrumQuestion {
-  const { model, constraints, rules } = subject;
+  const { model, constraints, rules, images } = subject;
+  const [image] = images;
+  if (image) throw new Unanswerable(`levels in the image of the state map ${image.name} are not computed here`);
   return { model, constraints, rules, values: couplings, levels };
 }
 
