@@ -18,6 +18,17 @@ export class MissingValue extends Error {
   }
 }
 
+/** One product as plain data: numerator, denominator, 1 with i, radicand, powers of couplings. */
+export type TermData = readonly [
+  num: string,
+  den: string,
+  imaginary: 0 | 1,
+  radicand: string,
+  powers: readonly (readonly [string, number])[],
+];
+/** A coefficient as plain data: terms of the numerator and, where there is one, of the denominator. */
+export type CoefficientData = readonly [numerator: readonly TermData[], denominator?: readonly TermData[]];
+
 /**
  * An exact coefficient: a quotient of polynomials in real coupling symbols over Q(i, square roots). One canonical form: numerator and
  * denominator coprime, the denominator monic in the graded order of `polynomial.ts`; equal coefficients have equal keys. Immutable.
@@ -205,6 +216,29 @@ export class Coefficient {
   /** Numerator and denominator as sums of products, for typesetting; the denominator is [1] when there is none. */
   parts(): { readonly numerator: readonly TermParts[]; readonly denominator: readonly TermParts[] } {
     return { numerator: termParts(this.numerator), denominator: termParts(this.denominator) };
+  }
+  /** Plain data, whole in itself: what JSON.stringify writes and `fromData` reads. Equal coefficients give equal data. */
+  toJSON(): CoefficientData {
+    const data = (terms: readonly TermParts[]): TermData[] =>
+      terms.map((t) => [String(t.num), String(t.den), t.imaginary ? 1 : 0, String(t.radicand), t.powers]);
+    const { numerator, denominator } = this.parts();
+    return this.denominator === P.one ? [data(numerator)] : [data(numerator), data(denominator)];
+  }
+  /** Inverse of `toJSON`. Throws RangeError on a zero denominator, SyntaxError on digits that are none. */
+  static fromData([numerator, denominator]: CoefficientData): Coefficient {
+    const sum = (terms: readonly TermData[]): Coefficient =>
+      terms.reduce((all, [num, den, imaginary, radicand, powers]) => {
+        const root = S.sqrtOfRational(Q.rational(BigInt(radicand)));
+        const size = Coefficient.fromSurd(S.mul(root, S.fromRational(Q.rational(BigInt(num), BigInt(den)))));
+        const term = powers.reduce<Coefficient>(
+          (c, [name, e]) => c.mul(new Coefficient([{ monomial: P.monomial([[name, e]]), coefficient: S.one }], P.one)),
+          imaginary === 1 ? size.mul(Coefficient.i) : size,
+        );
+        return all.add(term);
+      }, Coefficient.zero);
+    const out = denominator ? sum(numerator).div(sum(denominator)) : sum(numerator);
+    if (!out) throw new RangeError('the denominator of a coefficient is 0');
+    return out;
   }
   /** Operator-language text that parses back to this: "-1/2*J", "sqrt(2)/2", "3/5", "1i", "(J + h)/(2*K)". */
   toText(): string {

@@ -16,6 +16,7 @@ import {
 import {
   isWrapProblem,
   PeriodMismatch,
+  siteTable,
   wrapExtended,
   wrapOperator,
   wrapString,
@@ -29,6 +30,9 @@ import {
 } from '../../../../shared/algebra/pauli/extended.ts';
 import { multiplyStrings, stringFromText } from '../../../../shared/algebra/pauli/string.ts';
 import type { Extended, Family } from '../../../../shared/algebra/pauli/types.ts';
+import { builtInFamily } from '../../../../shared/lattice/built-in.ts';
+import { isLatticeProblem } from '../../../../shared/lattice/cells.ts';
+import { newCluster } from '../../../../shared/lattice/cluster.ts';
 import { clusterOf, denseMatrix, extendedOf, stringOn, times } from '../arbitraries.ts';
 
 const settings = { seed: 3, numRuns: 200 };
@@ -169,5 +173,40 @@ describe('wrapping', () => {
     expect(texts([cut])).toEqual(['+IIIIX', '+IIIXI', '+IIIXX']);
     expect(texts([chain('Z0 Z1', Coefficient.one)])).toEqual(['+IZZII', '+ZZIII']);
     expect(texts([chain('X0', Coefficient.one)])).toEqual(['+IIXII', '+IXIII', '+XIIII']);
+  });
+  it('leaves out of a product what does not stand at an open edge', () => {
+    const { table, cluster } = clusterOf('chain', [3], false);
+    const all = (text: string): Extended => ({
+      phase: 0,
+      parts: [{ string: stringFromText(text), steps: [1], needs: [] }],
+    });
+    expect(toText(wrapExtended(table, cluster, all('X0')))).toBe('+XXXII');
+    expect(toText(wrapExtended(table, cluster, all('-X0')))).toBe('-XXXII');
+    // bonds 01 and 12 stand, their product is Z on the ends
+    expect(toText(wrapExtended(table, cluster, all('Z0 Z1')))).toBe('+ZIZII');
+    expect(wrapString(table, cluster, stringFromText('Z2 Z3'))).toBeUndefined();
+  });
+  it('wraps tilted tori along their periods', () => {
+    const family = builtInFamily('square');
+    const cluster =
+      family &&
+      newCluster(
+        { family, periodic: [true, true] },
+        {
+          periods: [
+            [2, 2],
+            [1, -2],
+          ],
+        },
+      );
+    if (!cluster || isLatticeProblem(cluster)) return expect.fail('a tilted torus of six cells');
+    const table = siteTable(cluster, [{ name: 's', kind: 'vertices', classes: [0] }]);
+    expect(table.sites).toHaveLength(6);
+    const at = (offset: string) => text(wrapString(table, cluster, stringFromText(`X(${offset})`)));
+    expect(at('0,0')).toBe(at('2,2'));
+    expect(at('0,0')).toBe(at('1,-2'));
+    expect(at('0,0')).not.toBe(at('1,1'));
+    const flip: Extended = { phase: 0, parts: [{ string: stringFromText('X(0,0)'), steps: [1, 1], needs: [] }] };
+    expect(toText(wrapExtended(table, cluster, flip))).toBe('+XXXXXX');
   });
 });

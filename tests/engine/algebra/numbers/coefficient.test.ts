@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { Coefficient, MissingValue } from '../../../../shared/algebra/numbers/coefficient.ts';
+import { Coefficient, MissingValue, type CoefficientData } from '../../../../shared/algebra/numbers/coefficient.ts';
 import { BudgetSpent } from '../../../../shared/limits.ts';
 
 const C = Coefficient;
@@ -77,6 +77,14 @@ describe('the field of coefficients', () => {
         fc.pre(Number.isFinite(size) && size < 1e6);
         expect(Math.abs(p.re - (x.re * y.re - x.im * y.im)) / size).toBeLessThan(1e-8);
         expect(Math.abs(p.im - (x.re * y.im + x.im * y.re)) / size).toBeLessThan(1e-8);
+      }),
+      settings,
+    );
+  });
+  it('returns from plain data', () => {
+    fc.assert(
+      fc.property(coefficient, (a) => {
+        same(C.fromData(JSON.parse(JSON.stringify(a)) as CoefficientData), a);
       }),
       settings,
     );
