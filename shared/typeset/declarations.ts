@@ -87,7 +87,7 @@ export function typesetContext(
 export function stringTex(string: LocalString, context: TypesetContext, style: Style = 'plain'): string {
   if (string.factors.length === 0) return `${signs[string.phase]}1`;
   const steps = Array<number>(context.family.dimension).fill(1);
-  return `${signs[string.phase]}${shapeTex(placed(string, steps, context).shape, style)}`;
+  return `${signs[string.phase]}${shapeTex(placed(string, steps, context).shape, style, { species: context.species.keys() })}`;
 }
 
 export function stringSpoken(string: LocalString, context: TypesetContext): string {

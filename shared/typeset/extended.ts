@@ -119,7 +119,7 @@ function partTex(p: ProductPart, context: TypesetContext, style: Style): string 
     return `\\left(${p.string.phase === 0 ? '1' : p.string.phase === 2 ? '-1' : sign.replace('\\,', '')}\\right)^{N}`;
   const { shape } = placed(p.string, p.steps, context);
   const letter = shape.anchor === 'cell' ? 'r' : letters[shape.anchor];
-  const body = shapeTex(shape, style);
+  const body = shapeTex(shape, style, { species: context.species.keys() });
   return `\\prod_{${letter}}${sign === '' ? body : `\\left(${sign}${body}\\right)`}`;
 }
 

@@ -7,7 +7,7 @@ import { coefficientSpoken, coefficientTex } from './coefficients.ts';
 import { labelsOf, type Style, type TypesetContext } from './context.ts';
 import { extendedSpoken, extendedTex } from './extended.ts';
 import { placed, type Placed, type Shape } from './shapes.ts';
-import { anchorLetter, hasEnds, placeTex, shapeSpoken, shapeTex, usesAnchor } from './shape-tex.ts';
+import { anchorLetter, endLetters, hasEnds, placeTex, shapeSpoken, shapeTex, usesAnchor } from './shape-tex.ts';
 
 /** Families of one shape and coefficient, to be written as one sum. */
 export interface Gathered {
@@ -57,8 +57,10 @@ function underSum(bucket: Bucket, context: TypesetContext): string {
   const { shape } = bucket;
   const letter = anchorLetter(shape);
   const residues = unique(bucket.members.map((m) => m.residue));
-  const extra = conditions(hasEnds(shape) && !usesAnchor(shape) ? 'a' : letter, bucket.steps, residues);
-  const variable = hasEnds(shape) ? (usesAnchor(shape) ? 'l=\\langle a,b\\rangle' : '\\langle a,b\\rangle') : letter;
+  const extra = conditions(letter, bucket.steps, residues);
+  const [a, b] = endLetters(context.species.keys());
+  const link = usesAnchor(shape) || extra.length > 0 ? 'l=' : '';
+  const variable = hasEnds(shape) ? `${link}\\langle ${a},${b}\\rangle` : letter;
   const range = shape.anchor === 'cell' ? '' : rangeTex(bucket, context);
   return `${variable}${range}${extra.length === 0 ? '' : `:\\,${extra.join(',\\,')}`}`;
 }
@@ -98,7 +100,7 @@ function anchorPlace(bucket: Bucket, context: TypesetContext): string {
 
 function bucketTex(bucket: Bucket, context: TypesetContext, style: Style): string {
   if (isPinned(bucket.steps)) return pinnedTex(bucket, context, style);
-  return `\\sum_{${underSum(bucket, context)}}${shapeTex(bucket.shape, style)}`;
+  return `\\sum_{${underSum(bucket, context)}}${shapeTex(bucket.shape, style, { species: context.species.keys() })}`;
 }
 
 /** A term that stands still is written with the places of its factors, or at the place of its anchor. */
@@ -110,7 +112,7 @@ function pinnedTex(bucket: Bucket, context: TypesetContext, style: Style): strin
     const cells = g.spot.cells.map((c) => ({ ...c, by: c.by.map((o, d) => o + (base[d] ?? 0)) }));
     return { ...g, spot: { at: 'shifts' as const, cells } };
   });
-  return shapeTex({ ...shape, groups }, style, { at: anchorPlace(bucket, context) });
+  return shapeTex({ ...shape, groups }, style, { still: { at: anchorPlace(bucket, context) } });
 }
 
 function bucketSpoken(bucket: Bucket, context: TypesetContext): string {

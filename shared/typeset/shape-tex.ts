@@ -78,8 +78,27 @@ function groupTex(shape: Shape, g: SpotGroup, style: Style, still: Standing): { 
   }
 }
 
+/** Letters of the two ends of a link: a and b, unless spins of the model bear those names. */
+export function endLetters(names: Iterable<string>): readonly [string, string] {
+  const taken = new Set(names);
+  const free = (
+    [
+      ['a', 'b'],
+      ['i', 'j'],
+      ['u', 'w'],
+    ] as const
+  ).find(([a, b]) => !taken.has(a) && !taken.has(b));
+  return free ?? ['v', "v'"];
+}
+
+/** How a product is set: where it stands, and the names of the model's species, which no letter for a link's end may bear. */
+export interface Setting {
+  readonly still?: Standing;
+  readonly species?: Iterable<string>;
+}
+
 /** The product that a shape is, at its anchor's letter or where it stands still. */
-export function shapeTex(shape: Shape, style: Style, still?: Standing): string {
+export function shapeTex(shape: Shape, style: Style, { still, species = [] }: Setting = {}): string {
   if (shape.named !== undefined)
     return `${nameTex(shape.named, { index: false })}_{${still?.at ?? anchorLetter(shape)}}`;
   const ends = hasEnds(shape) && still === undefined;
@@ -89,7 +108,7 @@ export function shapeTex(shape: Shape, style: Style, still?: Standing): string {
     .map((g) => groupTex(shape, g, style, still))
     .sort((a, b) => a.order - b.order)
     .map((g) => g.tex);
-  const [first, second] = (['a', 'b'] as const).map((end) =>
+  const [first, second] = endLetters(species).map((end) =>
     shape.groups.filter(isEnds).map((g) => pauliTex(g.species, g.pauli, end, style)),
   );
   return [...(first ?? []), ...rest, ...(second ?? [])].join(' ');
