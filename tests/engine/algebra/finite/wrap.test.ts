@@ -206,7 +206,7 @@ describe('wrapping', () => {
     expect(at('0,0')).toBe(at('2,2'));
     expect(at('0,0')).toBe(at('1,-2'));
     expect(at('0,0')).not.toBe(at('1,1'));
-    const flip: Extended = { phase: 0, parts: [{ string: stringFromText('X(0,0)'), steps: [1, 1], needs: [] }] };
-    expect(toText(wrapExtended(table, cluster, flip))).toBe('+XXXXXX');
+    const flip: Extended = { phase: 0, parts: [{ string: stringFromText('Z(0,0)'), steps: [1, 1], needs: [] }] };
+    expect(toText(wrapExtended(table, cluster, flip))).toBe('+ZZZZZZ');
   });
 });
