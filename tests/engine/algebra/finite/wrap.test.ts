@@ -180,8 +180,8 @@ describe('wrapping', () => {
       phase: 0,
       parts: [{ string: stringFromText(text), steps: [1], needs: [] }],
     });
-    expect(toText(wrapExtended(table, cluster, all('X0')))).toBe('+XXXII');
-    expect(toText(wrapExtended(table, cluster, all('-X0')))).toBe('-XXXII');
+    expect(toText(wrapExtended(table, cluster, all('Z0')))).toBe('+ZZZII');
+    expect(toText(wrapExtended(table, cluster, all('-Z0')))).toBe('-ZZZII');
     // bonds 01 and 12 stand, their product is Z on the ends
     expect(toText(wrapExtended(table, cluster, all('Z0 Z1')))).toBe('+ZIZII');
     expect(wrapString(table, cluster, stringFromText('Z2 Z3'))).toBeUndefined();
