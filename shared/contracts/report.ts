@@ -53,6 +53,8 @@ export const termSchema = z.object({
   spoken: z.string(),
   /** Number of the gathered sum (in `groups`) that this family belongs to. */
   group: z.number().int(),
+  /** Number that the tables of the audits know this family by: its place in the operator, constants left out. */
+  piece: z.number().int().optional(),
 });
 export type ReportTerm = z.infer<typeof termSchema>;
 

@@ -161,6 +161,7 @@ function termsOf(
         steps: [...steps],
         spoken: alone ? gatheredSpoken(alone) : '',
         group,
+        piece: member - model.operator.families.slice(0, member).filter(isConstant).length,
       };
     }),
   );

@@ -3,6 +3,7 @@ import { BudgetSpent } from '../limits.ts';
 import type { Program } from '../language/evaluate.ts';
 import type { Value, Values } from '../language/values.ts';
 import type { Lattice } from '../lattice/cells.ts';
+import { sizeText } from '../lattice/cluster.ts';
 import { typesetContext, type TypesetOptions } from './typeset-context.ts';
 import { reportDeclaration } from './declarations.ts';
 import { reportModel } from './models.ts';
@@ -48,6 +49,26 @@ const latticeOf = (lattice: Lattice, values: Values): NonNullable<Report['lattic
   ),
 });
 
+/** The lattice line, set in words: "square lattice, 4 × 4 torus". */
+function latticeDeclaration(program: Program): ReportDeclaration[] {
+  const { lattice } = program;
+  const statement = program.statements.find(({ keyword, ok }) => keyword === 'lattice' && ok);
+  if (!lattice || !statement) return [];
+  const { name } = lattice.family;
+  const size = sizeText(lattice.size).replaceAll(' x ', ' \\times ');
+  return [
+    {
+      name,
+      what: 'lattice',
+      line: statement.line,
+      tex: `\\text{${name} lattice, }${size}\\text{ ${lattice.boundary}}`,
+      spoken: `${name} lattice, ${sizeText(lattice.size).replaceAll(' x ', ' by ')}, ${lattice.boundary}`,
+      supports: [],
+      language: 'both',
+    },
+  ];
+}
+
 const byPlace = (a: { line: number; column?: number }, b: { line: number; column?: number }): number =>
   a.line - b.line || (a.column ?? 0) - (b.column ?? 0);
 
@@ -59,7 +80,10 @@ export function reportOf(program: Program, claims: readonly Claim[], problems: r
   const options = typesetContext(values);
   if (options) {
     try {
-      set = { models: modelsOf(values, options), declarations: declarationsOf(values, options) };
+      set = {
+        models: modelsOf(values, options),
+        declarations: [...latticeDeclaration(program), ...declarationsOf(values, options)],
+      };
     } catch (error) {
       if (!(error instanceof BudgetSpent)) throw error;
       all.push({

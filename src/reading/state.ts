@@ -42,8 +42,7 @@ export function answering(reading: Reading, answer: Answer, entries: readonly Pl
   if (!isNewer(reading, answer)) return reading;
   const { version, part } = answer;
   const answered = { ...reading, answered: version, part, waiting: 0 };
-  if (answer.protocol !== protocol)
-    return { ...answered, failed: 'The page is older than the engine; load it again.' };
+  if (answer.protocol !== protocol) return { ...answered, failed: 'The page is older than the engine; load it again.' };
   if (answer.kind === 'failed') return { ...answered, failed: answer.message };
   const { report } = answer;
   const lattice = report.lattice ?? (report.problems.length > 0 ? reading.lattice : null);

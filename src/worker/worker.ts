@@ -74,7 +74,7 @@ async function answer(derivation: Derivation, { version, text, protocol: theirs 
   if (theirs !== protocol) throw new Error('The page is older than the engine; load it again.');
   const run: Generator<Step, Report> = derivation.run(text);
   try {
-    for (let until = performance.now() + slice; ; ) {
+    for (let until = performance.now() + slice; ;) {
       const step = run.next();
       if (step.done) return say(step.value, 0);
       if (step.value.kind === 'report') {

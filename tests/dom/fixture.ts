@@ -14,6 +14,7 @@ const term = (group: number, tex: string, orbit: ReturnType<typeof families>) =>
   steps: [1, 1],
   spoken: tex,
   group,
+  piece: group,
 });
 
 const lineOf = (text: string, start: string): number => {

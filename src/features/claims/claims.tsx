@@ -4,6 +4,7 @@ import type { Claim } from '../../../shared/contracts/report.ts';
 import { Sentence } from '../../components/formula.tsx';
 import { GradeMark } from '../../components/marks.tsx';
 import { figuresOf, witnessSentence } from './evidence.ts';
+import { printed } from './typography.ts';
 
 /** The claims of one audit line: each with its grade, what it says, its figures, and what to be careful about. */
 export const Claims = memo(function Claims({ claims, audit }: { claims: readonly Claim[]; audit: string }) {
@@ -20,7 +21,7 @@ export const Claims = memo(function Claims({ claims, audit }: { claims: readonly
         <ul className="cautions label" aria-label="Cautions">
           {cautions.map((caution) => (
             <li key={caution}>
-              <Sentence text={caution} />
+              <Sentence text={printed(caution)} />
             </li>
           ))}
         </ul>
@@ -37,12 +38,12 @@ function ClaimLine({ claim }: { claim: Claim }) {
       <GradeMark grade={claim.grade} label="" />
       <div className="claim-body">
         <p className="claim-statement">
-          <Sentence text={claim.tex} />
+          <Sentence text={printed(claim.tex)} />
           <span className={`claim-grade ink-${claim.grade}`}>{claim.grade}</span>
         </p>
         {witness !== null && (
           <p className="claim-witness">
-            <Sentence text={witness} />
+            <Sentence text={printed(witness)} />
           </p>
         )}
         {(figures.length > 0 || claim.sources.length > 0) && (
@@ -52,7 +53,9 @@ function ClaimLine({ claim }: { claim: Claim }) {
               {figures.map(([name, value]) => (
                 <div key={name}>
                   <dt>{name}</dt>
-                  <dd>{value}</dd>
+                  <dd>
+                    <Sentence text={value} />
+                  </dd>
                 </div>
               ))}
             </dl>

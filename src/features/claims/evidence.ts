@@ -1,4 +1,5 @@
 import type { Claim } from '../../../shared/contracts/report.ts';
+import { printed, superscript } from './typography.ts';
 
 /** Figures and witness of a claim in words; what has no short form is left to the data (report, export). */
 
@@ -16,14 +17,9 @@ export function numberText(value: number): string {
   return `${short} × 10${superscript(String(Number(power)))}`.replace('-', '−');
 }
 
-const raised: Readonly<Record<string, string>> = Object.fromEntries(
-  [...'0123456789-'].map((digit, k) => [digit, [...'⁰¹²³⁴⁵⁶⁷⁸⁹⁻'][k] ?? digit]),
-);
-const superscript = (digits: string): string => [...digits].map((digit) => raised[digit] ?? digit).join('');
-
 function valueText(value: unknown): string | null {
   if (typeof value === 'number') return numberText(value);
-  if (typeof value === 'string') return value;
+  if (typeof value === 'string') return printed(value);
   if (typeof value === 'boolean') return value ? 'yes' : 'no';
   if (Array.isArray(value) && value.length > 0 && value.every((one) => typeof one === 'number'))
     return value.map(numberText).join(', ');

@@ -136,6 +136,7 @@ function Drawing({ family, lattice, side, language, height }: DrawingProps) {
       <figcaption id={caption} className="label">
         {side.answered ? <Formula tex={side.answered.tex} /> : <span>{language} language</span>}
         {words !== '' && <span className="plate-words">{words}</span>}
+        {(side.answered?.others ?? 0) > 0 && <span className="plate-words">and likewise in the other directions</span>}
         {wraps(lattice, supports) && (
           <span className="plate-words">meets itself around the {sizeInWords(lattice)}</span>
         )}

@@ -1,4 +1,4 @@
-import type { CellKind, LatticeFamily } from '../../../shared/lattice/drawing.ts';
+import { cellPoint, type CellKind, type LatticeFamily } from '../../../shared/lattice/drawing.ts';
 import type { Report } from '../../../shared/contracts/report.ts';
 import type { Hand, Ref } from '../../hand/hand.ts';
 import type { Slice } from '../../reading/slices.ts';
@@ -53,6 +53,10 @@ export interface Answered {
   readonly supports: readonly Support[];
   readonly spoken: string;
   readonly tex: string;
+  /** True when the supports are parts of one product, all drawn; else they are alternatives, of which one is drawn. */
+  readonly product: boolean;
+  /** Alternatives that are not drawn. */
+  readonly others: number;
 }
 
 /** What a reference names, looked up in the slices of the reading; undefined when it is gone. */
@@ -70,7 +74,7 @@ function groupOf(family: LatticeFamily, slices: readonly Slice[], ref: Ref): Ans
   if (!model || !group) return undefined;
   const terms = model.value.terms.filter((term) => term.group === index);
   const supports = terms.map((term) => ({ sites: sitesOf(family, term.orbit), repeats: [] }));
-  return { supports, spoken: group.spoken, tex: group.tex };
+  return { supports, spoken: group.spoken, tex: group.tex, product: false, others: 0 };
 }
 
 function ruleOf(family: LatticeFamily, slices: readonly Slice[], ref: Ref): Answered | undefined {
@@ -80,7 +84,8 @@ function ruleOf(family: LatticeFamily, slices: readonly Slice[], ref: Ref): Answ
   const rule = map?.value.rules?.[Number(number)];
   if (!rule) return undefined;
   const orbit = side === 'left' ? rule.leftOrbit : rule.rightOrbit;
-  return { supports: [{ sites: sitesOf(family, orbit), repeats: [] }], spoken: '', tex: rule[side] };
+  const supports = [{ sites: sitesOf(family, orbit), repeats: [] }];
+  return { supports, spoken: '', tex: rule[side], product: false, others: 0 };
 }
 
 function declared(family: LatticeFamily, slices: readonly Slice[], ref: Ref): Answered | undefined {
@@ -92,7 +97,7 @@ function declared(family: LatticeFamily, slices: readonly Slice[], ref: Ref): An
     sites: sitesOf(family, one.orbit),
     repeats: whole ? one.steps : [],
   }));
-  return { supports, spoken: found.spoken, tex: found.tex };
+  return { supports, spoken: found.spoken, tex: found.tex, product: whole, others: 0 };
 }
 
 function find<T>(slices: readonly Slice[], pick: (slice: Slice) => T | undefined): T | undefined {
@@ -152,16 +157,70 @@ export function carriersOf(
   });
 }
 
-/** Both sides of the plate for a hand. */
+/** Mean of the sites of a support, in unit cells; what stands within a unit cell counts by its position. */
+function centreOf(family: LatticeFamily, support: Support): readonly number[] {
+  const points = support.sites.map((site) => cellPoint(family, site));
+  return [0, 1].map((axis) => points.reduce((sum, point) => sum + (point[axis] ?? 0), 0) / Math.max(1, points.length));
+}
+
+/** Shifts by at most this many unit cells are tried to bring an image beside its source. */
+const reach = 2;
+
+/**
+ * Of the strings that a gathered term has (one for each direction of its links, say), the first; of its image the one that
+ * stands nearest to that, moved by whole unit cells: families are the same wherever their representative was put.
+ */
+function facing(family: LatticeFamily, from: Support | undefined, supports: readonly Support[]): readonly Support[] {
+  if (!from || supports.length === 0 || supports.some((support) => support.repeats.some((step) => step > 0)))
+    return supports;
+  const wanted = centreOf(family, from);
+  let best: { support: Support; distance: number } | undefined;
+  for (const support of supports)
+    for (const shift of shifts(family.dimension)) {
+      const moved = {
+        ...support,
+        sites: support.sites.map((site) => ({ ...site, offset: site.offset.map((c, d) => c + (shift[d] ?? 0)) })),
+      };
+      const at = centreOf(family, moved);
+      const distance = Math.hypot(...at.map((c, axis) => c - (wanted[axis] ?? 0)));
+      if (!best || distance < best.distance - 1e-9) best = { support: moved, distance };
+    }
+  return best ? [best.support] : supports;
+}
+
+function shifts(dimension: number): readonly (readonly number[])[] {
+  // Nearest shifts first, so that of equals the smallest wins.
+  const range = Array.from({ length: 2 * reach + 1 }, (_, k) => (k % 2 === 0 ? -k / 2 : (k + 1) / 2));
+  let all: readonly (readonly number[])[] = [[]];
+  for (let d = 0; d < dimension; d += 1) all = all.flatMap((shift) => range.map((n) => [...shift, n]));
+  return all;
+}
+
+export interface PlateSides {
+  readonly left: PlateSide;
+  readonly right: PlateSide;
+}
+
+/** Both sides of the plate for a hand: one string of the term in hand, and the string of its image that stands by it. */
 export function plateSides(
   family: LatticeFamily,
   lattice: PlateLattice,
   slices: readonly Slice[],
   hand: Hand,
-): { readonly left: PlateSide; readonly right: PlateSide } {
-  const side = (ref: Ref | null, language: 'spin' | 'gauge'): PlateSide => ({
-    answered: lookUp(family, slices, ref),
-    carriers: carriersOf(family, lattice, slices, language),
-  });
-  return { left: side(hand.held?.left ?? null, 'spin'), right: side(hand.held?.right ?? null, 'gauge') };
+): PlateSides {
+  const left = lookUp(family, slices, hand.held?.left ?? null);
+  const right = lookUp(family, slices, hand.held?.right ?? null);
+  const drawnLeft = left && one(left, family, undefined);
+  const drawnRight = right && one(right, family, drawnLeft?.supports[0]);
+  return {
+    left: { answered: drawnLeft, carriers: carriersOf(family, lattice, slices, 'spin') },
+    right: { answered: drawnRight, carriers: carriersOf(family, lattice, slices, 'gauge') },
+  };
+}
+
+function one(answered: Answered, family: LatticeFamily, beside: Support | undefined): Answered {
+  const whole = answered.supports.some((support) => support.repeats.some((step) => step > 0));
+  if (whole || answered.product) return answered;
+  const supports = beside ? facing(family, beside, answered.supports) : answered.supports.slice(0, 1);
+  return { ...answered, supports, others: answered.supports.length - supports.length };
 }

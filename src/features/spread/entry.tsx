@@ -151,7 +151,7 @@ function AsTyped({ entry, cite, read, open }: Omit<ProseRowProps, 'entry'> & { e
       <span className="code as-typed">{entry.text}</span>
     );
   return (
-    <div className="pair">
+    <div className="pair as-typed-row">
       <span className="entry-number">{cite}</span>
       <div className="both-pages" aria-busy={!read}>
         {open ? (

@@ -6,16 +6,16 @@ import type { Mark, Term } from './row.ts';
 const order: readonly Grade[] = ['refuted', 'open', 'numerical', 'exact', 'proved'];
 const weakest = (grades: readonly Grade[]): Grade | undefined => order.find((grade) => grades.includes(grade));
 
-/** A row of the table of a commutation audit: does this term (by its number in the model) keep this law? */
+/** A row of the table of a commutation audit: does this term (by its piece) keep this law? */
 interface TableRow {
   readonly term: number;
   readonly law: string;
   readonly holds: boolean;
 }
 
-function tableOf(claim: Claim, model: NamedModel): readonly TableRow[] {
-  const { table, terms } = claim.figures;
-  if (!Array.isArray(table) || terms !== model.terms.length) return [];
+function tableOf(claim: Claim): readonly TableRow[] {
+  const { table } = claim.figures;
+  if (!Array.isArray(table)) return [];
   return table.filter(
     (row: unknown): row is TableRow =>
       typeof row === 'object' && row !== null && 'term' in row && 'holds' in row && typeof row.holds === 'boolean',
@@ -26,9 +26,10 @@ function tableOf(claim: Claim, model: NamedModel): readonly TableRow[] {
 function ofLaws(claims: readonly Claim[], model: NamedModel | undefined, term: Term | null): Mark | null {
   if (!model || !term) return null;
   const index = Number(term.ref.split('/').at(-1));
+  const pieces = new Set(model.terms.flatMap((one) => (one.group === index ? [one.piece] : [])));
   const own = claims.filter((claim) => claim.audit === 'commute' && claim.subject === model.name);
   for (const claim of own) {
-    const failing = tableOf(claim, model).find((row) => !row.holds && model.terms[row.term]?.group === index);
+    const failing = tableOf(claim).find((row) => !row.holds && pieces.has(row.term));
     if (claim.grade === 'refuted' && failing)
       return { grade: 'refuted', words: `does not commute with ${failing.law}` };
   }
