@@ -138,11 +138,11 @@ export const auditForms: readonly AuditForm[] = [
   {
     ...none,
     name: 'count',
-    help: 'How many basis states obey the rules, exactly.',
+    help: 'How many basis states obey the rules, and the laws that are products of Z, exactly.',
     example: 'audit count one on 4 x 4, 8 x 8',
     subject: 'list',
     many: true,
-    operands: ['rule'],
+    operands: ['rule', 'law', 'symmetry'],
     sector: false,
     clauses: { on: 'may' },
   },
