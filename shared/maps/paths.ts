@@ -17,6 +17,7 @@ function pathsFrom(
 ): Map<string, Cell[]> {
   const wanted = new Set(goals.map(cellKey));
   const found = new Map<string, Cell[]>();
+  if (wanted.size === 0) return found;
   const before = new Map<string, { vertex: Cell; link: Cell | undefined; from: string | undefined }>([
     [cellKey(start), { vertex: start, link: undefined, from: undefined }],
   ]);

@@ -1,7 +1,14 @@
+import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
+import { StabilizerGroup } from '../../../shared/algebra/finite/group.ts';
+import { wrapExtended, wrapOrbit, wrapString } from '../../../shared/algebra/finite/wrap.ts';
+import { adjointString, multiplyStrings, translateString } from '../../../shared/algebra/pauli/string.ts';
+import type { Cell } from '../../../shared/lattice/cells.ts';
+import { loopLinks } from '../../../shared/lattice/windings.ts';
+import { clusterOn, tableFor } from './dense.ts';
 import { Coefficient } from '../../../shared/algebra/numbers/coefficient.ts';
 import { equalOperators } from '../../../shared/algebra/pauli/family.ts';
-import type { Operator } from '../../../shared/algebra/pauli/types.ts';
+import type { LocalString, Operator } from '../../../shared/algebra/pauli/types.ts';
 import { newBudget } from '../../../shared/limits.ts';
 import { straight } from '../../../shared/lattice/cluster.ts';
 import { keptCommutation } from '../../../shared/maps/dictionary/commutation.ts';
@@ -126,6 +133,63 @@ describe('images under a dictionary', () => {
     const w = wegner('square', 4, 4);
     const image = S.value(w.map.imageExtended(S.wholeProduct(w.family, 's', 'x', 'vertices'), newBudget()));
     expect(image).toEqual({ phase: 0, parts: [] });
+  });
+});
+
+describe('products', () => {
+  it('go to products: the image of a product of left sides differs from that of right sides by a forced relation, sign and all', () => {
+    const w = wegner('square', 3, 3);
+    const cluster = clusterOn(w.on, straight(3, 3));
+    const table = tableFor(cluster, [S.species(w.family, 'g', 'links')]);
+    const flat = w.family.plaquettes.map((_, index) =>
+      S.on('g', 'z', S.around(w.family, { kind: 'plaquettes', index, offset: [0, 0] }, 'links')),
+    );
+    const loops = [1, 2].map((d) => {
+      const cells = loopLinks(w.family, d) as readonly { cell: Cell; steps: readonly number[] }[];
+      return wrapExtended(table, cluster, {
+        phase: 0,
+        parts: cells.map((c) => ({ string: S.on('g', 'z', [c.cell]), steps: c.steps, needs: [] })),
+      });
+    });
+    const forced = new StabilizerGroup(table.sites.length, [
+      ...flat.flatMap((string) => wrapOrbit(table, cluster, { string, steps: [1, 1], needs: [] })),
+      ...loops,
+    ]);
+    const use = fc.record({
+      rule: fc.nat(2),
+      by: fc.tuple(fc.integer({ min: 0, max: 2 }), fc.integer({ min: 0, max: 2 })),
+    });
+    fc.assert(
+      fc.property(fc.array(use, { minLength: 1, maxLength: 6 }), (uses) => {
+        const side = (which: 'left' | 'right') =>
+          uses.reduce<LocalString>(
+            (all, u) => {
+              const s = w.declaration.rules[u.rule]?.[which];
+              return s && 'factors' in s ? multiplyStrings(all, translateString(s, u.by)) : all;
+            },
+            { phase: 0, factors: [] },
+          );
+        const [left, right] = [side('left'), side('right')];
+        const [image] = S.value(
+          w.map.image(
+            { families: [{ coefficient: Coefficient.one, string: left, steps: [0, 0], needs: [] }], extended: [] },
+            newBudget(),
+          ),
+        ).families;
+        if (!image) throw new Error('no image');
+        const sign = ([1, 0, -1, 0] as const).findIndex(
+          (re, k) =>
+            image.coefficient.toFloat().re === re && image.coefficient.toFloat().im === ([0, 1, 0, -1][k] ?? 0),
+        );
+        const difference = multiplyStrings(adjointString(right), {
+          phase: ((image.string.phase + sign) % 4) as 0,
+          factors: image.string.factors,
+        });
+        const wrapped = wrapString(table, cluster, difference);
+        expect(wrapped && forced.membership(wrapped)?.phase).toBe(0);
+      }),
+      { seed: 11, numRuns: 120 },
+    );
   });
 });
 
