@@ -120,6 +120,8 @@ const extraLevels = 64;
 const mostProducts = 20_000;
 const denseUpTo = 512;
 const denseUpToWhenAll = 4096;
+/** Part of the memory allowed that vectors and matrices may fill; the rest is for small tables and for the program itself. */
+const usable = 0.85;
 /** Equal levels that are written out one by one; `multiplets` has the full number. */
 const mostListed = 4096;
 
@@ -270,7 +272,7 @@ function* iterate(
   const { blocks } = sector;
   const matrices = blocks.reduce((sum, b) => sum + b.matrixBytes, 0);
   const perVector = Math.max(...blocks.map((b) => (b.real ? 8 : 16) * b.dimension));
-  const room = Math.floor((allowed.bytes - matrices) / perVector);
+  const room = Math.floor((usable * allowed.bytes - matrices) / perVector);
   const together = room >= blocks.length * (leastVectors(count) + 8);
   const share = together ? Math.floor(room / blocks.length) : room;
   const boards = newBoards(blocks.length, count);
@@ -314,7 +316,7 @@ function* iterate(
 function request(question: SpectrumQuestion, count: number, vectors: number, board: Board) {
   return {
     count,
-    extra: Math.max(0, Math.min(extraLevels, vectors - leastVectors(count))),
+    extra: Math.max(2, Math.min(extraLevels, vectors - leastVectors(count))),
     tolerance: tolerances.residual,
     degenerate: tolerances.degenerate,
     vectors,

@@ -58,8 +58,11 @@ interface Locked {
 /** Products before which no run is believed to have seen the low end. */
 const leastSteps = 12;
 
-/** Start vectors of one run: few for one level, more where several levels may fall together. */
-const startWidth = (count: number): number => (count <= 2 ? 2 : 3);
+/**
+ * Start vectors of a run. The first has one, which converges in the fewest products; runs that look for further copies of
+ * levels have two where the window has room, so that a copy that one start nearly misses is seen by the other.
+ */
+const startWidth = (run: number, window: number): number => (run === 0 || window < 12 ? 1 : 2);
 
 /** Yields the number of products done. The vectors returned belong to the caller, who releases them. */
 export function* lowestLevels(h: Hamiltonian, request: LowestRequest, kernel: Kernel): Generator<number, Lowest> {
@@ -113,7 +116,7 @@ class Search {
 
   /** One Krylov space from fresh starts. Says whether to start another, or that all is found, or that the steps ran out. */
   *run(run: number): Generator<number, 'again' | 'done' | 'exhausted'> {
-    const width = Math.min(startWidth(this.request.count), this.h.dimension - this.locked.length);
+    const width = Math.min(startWidth(run, this.windowSize()), this.h.dimension - this.locked.length);
     const band = new Band(
       this.h,
       this.kernel,
@@ -136,7 +139,7 @@ class Search {
           ...[ritz.values[0], ritz.values[ritz.values.length - 1]].map((v) => Math.abs(v ?? 0)),
           1e-300,
         );
-        const taken = this.take(band, ritz, ended, found);
+        const taken = this.take(band, ritz, ended, found, width);
         if (taken === 'finished') return this.judge(found, width);
         if (ended) return this.locked.length >= this.h.dimension ? this.judge([], width) : 'again';
         if (band.isFull()) band.restart(band.ritz(), this.keep(band));
@@ -163,7 +166,7 @@ class Search {
    * Locks what has converged at the low end. Finished when the lowest level left is known to lie above all that is wanted.
    * Levels are locked from below without gaps, so that none is overlooked beneath a locked one of this run.
    */
-  private take(band: Band, ritz: Ritz, ended: boolean, found: number[]): 'finished' | 'more' {
+  private take(band: Band, ritz: Ritz, ended: boolean, found: number[], width: number): 'finished' | 'more' {
     const bound = this.request.tolerance * this.scale;
     let k = 0;
     const chosen: number[] = [];
@@ -179,7 +182,7 @@ class Search {
     for (; k < ritz.values.length; k++) {
       const value = ritz.values[k] ?? 0;
       const residual = ritz.residuals[k] ?? 0;
-      if (this.liesAbove(value - limit(), residual) && (ended || band.steps >= leastSteps)) {
+      if (this.liesAbove(value - limit(), residual, width) && (ended || band.steps >= leastSteps)) {
         above = true;
         break;
       }
@@ -191,6 +194,8 @@ class Search {
       }
       chosen.push(k);
     }
+    // A first run of one start is followed by another in any case: it may stop as soon as it has enough.
+    if (width === 1 && found.length === known.length && known.length + chosen.length >= count) above = true;
     const all = ended && k === ritz.values.length;
     // Locking costs a rotation of the window: wait until it ends the run, or until a restart is due anyway.
     if (!(above || all || ended || band.isFull()) || chosen.length === 0) return above ? 'finished' : 'more';
@@ -204,11 +209,12 @@ class Search {
 
   /**
    * Is nothing left below a Ritz value that stands by `distance` above what is wanted? Its residual alone says only that a
-   * level is near it; a lower one that the start vectors nearly miss would mix into it and show as a residual of the order
-   * of the distance. A tenth leaves such a mixture a weight below a hundredth.
+   * level is near it; a lower one that the starts nearly miss would mix into it and show as a residual of the order of the
+   * distance. A tenth leaves such a mixture a weight of a hundredth, for which all starts must have missed it; with a
+   * single start more is asked.
    */
-  private liesAbove(distance: number, residual: number): boolean {
-    return distance > 0 && residual <= 0.1 * distance && residual <= 1e-2 * this.scale;
+  private liesAbove(distance: number, residual: number, width: number): boolean {
+    return distance > 0 && residual <= (width > 1 ? 0.1 : 0.02) * distance && residual <= 1e-2 * this.scale;
   }
 
   /** After a run that reached the end of what is wanted: is every level complete? */

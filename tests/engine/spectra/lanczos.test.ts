@@ -50,7 +50,7 @@ describe('lowest levels by iteration', () => {
         if (got.complete)
           expect((expected[got.energies.length] ?? Infinity) - (got.energies.at(-1) ?? 0)).toBeGreaterThan(1e-9);
       }),
-      { seed: 41, numRuns: 40 },
+      { seed: 41, numRuns: 15 },
     );
   });
 
