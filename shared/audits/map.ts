@@ -2,12 +2,13 @@ import type { MapDeclaration, MapValue, Values } from '../language/values.ts';
 import type { Size } from '../lattice/cells.ts';
 import type { Audit, Finding } from './audit.ts';
 import { dictionaryFindings } from './map-dictionary.ts';
+import { circuitFindings, gaugeFindings, solveFindings, stateFindings } from './map-kinds.ts';
 import { openFinding } from './numeric.ts';
 import { cheap, keyOf } from './question.ts';
 
 /** What is claimed of a map, by its kind. */
 type FindingsOf = {
-  readonly [K in MapDeclaration['kind']]?: (
+  readonly [K in MapDeclaration['kind']]: (
     value: MapValue,
     declaration: Extract<MapDeclaration, { kind: K }>,
     values: Values,
@@ -16,19 +17,36 @@ type FindingsOf = {
   ) => readonly Finding[];
 };
 
+/** Claims that a composed map or an inverse inherits from a part, with the part's name. */
+const partFindings = (whole: MapValue, part: MapValue, values: Values, sizes: readonly Size[]): Finding[] =>
+  decide(part, values, sizes).map((finding) => ({
+    ...finding,
+    statement: `${whole.name} follows from ${part.name}: ${finding.statement}`,
+  }));
+
 const findingsOf: FindingsOf = {
   dictionary: dictionaryFindings,
+  gauge: gaugeFindings,
+  circuit: circuitFindings,
+  solve: solveFindings,
+  states: stateFindings,
+  then: (value, { first, second }, values, sizes) => [
+    ...partFindings(value, first, values, sizes),
+    ...partFindings(value, second, values, sizes),
+  ],
+  inverse: (value, { of }, values, sizes) => partFindings(value, of, values, sizes),
 };
 
 function decide(value: MapValue, values: Values, sizes: readonly Size[]): readonly Finding[] {
   const { declaration } = value;
   // One entry of the table fits the declaration of its own kind; TypeScript cannot follow the pairing.
-  const find = findingsOf[declaration.kind] as
-    | ((value: MapValue, declaration: MapDeclaration, values: Values, sizes: readonly Size[]) => readonly Finding[])
-    | undefined;
-  return find
-    ? find(value, declaration, values, sizes)
-    : [openFinding(value.name, `no audit of a ${declaration.kind} map`)];
+  const find = findingsOf[declaration.kind] as (
+    value: MapValue,
+    declaration: MapDeclaration,
+    values: Values,
+    sizes: readonly Size[],
+  ) => readonly Finding[];
+  return find(value, declaration, values, sizes);
 }
 
 export const map: Audit = {
