@@ -2,7 +2,7 @@ import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { StabilizerGroup } from '../../../shared/algebra/finite/group.ts';
 import { wrapExtended, wrapOrbit, wrapString } from '../../../shared/algebra/finite/wrap.ts';
-import { adjointString, multiplyStrings, translateString } from '../../../shared/algebra/pauli/string.ts';
+import { adjointString, multiplyStrings, newString, translateString } from '../../../shared/algebra/pauli/string.ts';
 import type { Cell } from '../../../shared/lattice/cells.ts';
 import { loopLinks } from '../../../shared/lattice/windings.ts';
 import { clusterOn, tableFor } from './dense.ts';
@@ -11,6 +11,7 @@ import { equalOperators } from '../../../shared/algebra/pauli/family.ts';
 import type { LocalString, Operator } from '../../../shared/algebra/pauli/types.ts';
 import { newBudget } from '../../../shared/limits.ts';
 import { straight } from '../../../shared/lattice/cluster.ts';
+import { localRelations } from '../../../shared/maps/dictionary/local.ts';
 import { keptCommutation } from '../../../shared/maps/dictionary/commutation.ts';
 import { onSize } from '../../../shared/maps/dictionary/sizes.ts';
 import type { DictionaryRule, MapDeclaration } from '../../../shared/language/values.ts';
@@ -256,5 +257,49 @@ describe('relations of a dictionary', () => {
     expect(verdict.kept).toBe(false);
     const [first] = verdict.broken;
     expect(first && first.leftOverlap.length % 2).not.toBe(first && first.rightOverlap.length % 2);
+  });
+
+  for (const [name, laws, ...size] of [
+    ['square', 1, 3, 3],
+    ['triangular', 2, 3, 3],
+    ['honeycomb', 1, 3, 3],
+    ['cubic', 3, 2, 2, 2],
+  ] as const)
+    it(`finds the local laws of the ${name} lattice's dual for every size: no flux through any plaquette`, () => {
+      const w = wegner(name, ...size);
+      const found = localRelations(
+        w.declaration,
+        { values: w.values, lattice: w.on, family: w.family, open: false, name: 'bonds' },
+        newBudget(),
+      );
+      expect(found?.signBreak).toBeUndefined();
+      expect(found?.leftLaws).toEqual([]);
+      expect(found?.rightLaws.length).toBe(laws);
+      expect(new Set(found?.rightLaws.map((l) => l.text))).toEqual(new Set(['flat = +1']));
+      expect(found?.evidence.length).toBe((found?.left ?? 0) + (found?.right ?? 0));
+    });
+
+  it('finds the sign that breaks on the infinite lattice', () => {
+    const on = S.lattice('chain', 4);
+    const { family } = on;
+    const two = (a: string, b: string, pauli: 'x' | 'y' | 'z') => (v: Cell) =>
+      newString([S.factor(a, pauli, v), S.factor(b, pauli, v)]);
+    const declaration: Dictionary = {
+      kind: 'dictionary',
+      from: ['p', 'q'],
+      to: ['a', 'b'],
+      rules: [
+        ...S.rules(family, 'vertices', 0, two('p', 'q', 'x'), (v) => S.on('a', 'z', [v])),
+        ...S.rules(family, 'vertices', 1, two('p', 'q', 'y'), (v) => S.on('b', 'z', [v])),
+        ...S.rules(family, 'vertices', 2, two('p', 'q', 'z'), two('a', 'b', 'z')),
+      ],
+    };
+    const values = S.valuesOf(
+      on,
+      ['p', 'q', 'a', 'b'].map((n) => S.species(family, n, 'vertices')),
+    );
+    const found = localRelations(declaration, { values, lattice: on, family, open: false, name: 'wrong' }, newBudget());
+    expect(found?.signBreak).toMatchObject({ leftPhase: 2, rightPhase: 0 });
+    expect(found?.signBreak?.members.map((m) => m.rule).sort()).toEqual([0, 1, 2]);
   });
 });
