@@ -22,10 +22,7 @@ export function runProgram(
   if (!isMain(url)) return;
   let stopping = false;
   const begun = Promise.resolve().then(() => start(readSettings()));
-  begun.catch((error: unknown) => {
-    process.stderr.write(`${error instanceof WrongSettings ? error.message : explain(error)}\n`);
-    process.exit(error instanceof WrongSettings ? 2 : 1);
-  });
+  begun.catch(giveUp);
   const stop = (): void => {
     if (stopping) return;
     stopping = true;
@@ -40,6 +37,19 @@ export function runProgram(
       );
   };
   for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) process.on(signal, stop);
+}
+
+/** Runs a command to its end, if `url` is this process's main file. Exit status as of runProgram. */
+export function runOnce(url: string, command: (settings: Settings) => Promise<void>): void {
+  if (!isMain(url)) return;
+  Promise.resolve()
+    .then(() => command(readSettings()))
+    .then(() => process.exit(0), giveUp);
+}
+
+function giveUp(error: unknown): never {
+  process.stderr.write(`${error instanceof WrongSettings ? error.message : explain(error)}\n`);
+  process.exit(error instanceof WrongSettings ? 2 : 1);
 }
 
 function explain(error: unknown): string {

@@ -47,13 +47,29 @@ function programs() {
     .filter((path) => existsSync(path));
 }
 
-async function buildServer() {
+/**
+ * Makes dist/NAME anew: `make` fills a folder beside it, which then takes its place. A server that runs from the old one
+ * keeps its programs to the last moment, and a build that fails changes nothing.
+ */
+async function replace(name, make) {
+  const fresh = join(root, 'dist', `.${name}.${process.pid}`);
+  const old = `${fresh}.old`;
+  const place = join(root, 'dist', name);
+  try {
+    mkdirSync(fresh, { recursive: true });
+    await make(fresh);
+    if (existsSync(place)) renameSync(place, old);
+    renameSync(fresh, place);
+  } finally {
+    for (const folder of [fresh, old]) rmSync(folder, { recursive: true, force: true });
+  }
+}
+
+async function buildServer(outdir) {
   const { build } = await import('esbuild');
-  rmSync(join(root, 'dist', 'server'), { recursive: true, force: true });
-  mkdirSync(join(root, 'dist', 'server'), { recursive: true });
   await build({
     entryPoints: programs(),
-    outdir: join(root, 'dist', 'server'),
+    outdir,
     outbase: join(root, 'server'),
     bundle: true,
     packages: 'external',
@@ -64,22 +80,25 @@ async function buildServer() {
     logLevel: 'warning',
   });
   const kernel = join(root, 'shared', 'spectra', 'kernel', 'kernel.wasm');
-  if (existsSync(kernel)) copyFileSync(kernel, join(root, 'dist', 'server', 'kernel.wasm'));
+  if (existsSync(kernel)) copyFileSync(kernel, join(outdir, 'kernel.wasm'));
 }
 
-async function buildClient() {
-  if (!existsSync(join(root, 'src', 'main.tsx'))) return;
+async function buildClient(outDir) {
   const { build } = await import('vite');
-  await build({ root, configFile: join(root, 'vite.config.ts'), logLevel: 'warn' });
+  await build({
+    root,
+    configFile: join(root, 'vite.config.ts'),
+    logLevel: 'warn',
+    build: { outDir, emptyOutDir: true },
+  });
 }
 
 export async function buildAll() {
   const sources = fingerprint();
-  rmSync(stamp, { force: true });
   compileGrammar();
   await compileKernel();
-  await buildServer();
-  await buildClient();
+  await replace('server', buildServer);
+  await replace('client', buildClient);
   writeFileSync(stamp, sources);
 }
 

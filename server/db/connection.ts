@@ -19,8 +19,6 @@ export interface Asking {
 export interface Transaction extends Asking {
   /** One statement on the transaction's own connection; the form that pg-boss takes. */
   readonly executeSql: (text: string, values: unknown[]) => Promise<{ rows: unknown[] }>;
-  /** Runs `act` after this transaction was committed, and never if it was not. */
-  readonly afterwards: (act: () => void) => void;
 }
 
 export interface Database extends Asking {
@@ -55,17 +53,14 @@ export function openDatabase(
 
 async function inTransaction<T>(pool: pg.Pool, work: (tx: Transaction) => Promise<T>): Promise<T> {
   const client = await pool.connect();
-  const after: (() => void)[] = [];
   let broken: Error | undefined;
   try {
     await client.query('BEGIN');
     const result = await work({
       db: drizzle(client, { schema, casing }),
       executeSql: (text, values) => client.query<Record<string, unknown>>(text, values),
-      afterwards: (act) => void after.push(act),
     });
     await client.query('COMMIT');
-    for (const act of after) act();
     return result;
   } catch (error) {
     await client.query('ROLLBACK').catch((failure: unknown) => {

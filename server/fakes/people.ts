@@ -11,7 +11,7 @@ export interface InventedPerson {
   readonly part: string;
 }
 
-export const inventedPeople: readonly InventedPerson[] = [
+export const inventedPeople: readonly [InventedPerson, ...InventedPerson[]] = [
   {
     id: 9001,
     login: 'rokafor',

@@ -4,7 +4,7 @@ import type { Bind } from '../middleware/endpoint.ts';
 import { logOf } from '../middleware/observe.ts';
 import type { Passport } from '../middleware/person.ts';
 import type { Context } from '../services/context.ts';
-import { signIn } from '../services/people.ts';
+import { signIn, standInProvider } from '../services/people.ts';
 
 /** Where accounts are checked: GitHub, an installation of it, or the stand-in. */
 export interface GithubAccess {
@@ -61,7 +61,7 @@ function strategy(context: Context, access: GithubAccess, publicUrl: string | nu
   };
   return new Strategy(options, (_token: string, _refresh: string, profile: Profile, done: Done) => {
     signIn(context.database, {
-      provider: 'github',
+      provider: access.standIn ? standInProvider : 'github',
       subject: profile.id,
       handle: profile.username ?? `github-${profile.id}`,
       name: profile.displayName || (profile.username ?? `github-${profile.id}`),

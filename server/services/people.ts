@@ -6,6 +6,9 @@ import { notFound } from '../db/refusal.ts';
 import { actionsOf, type Standing } from '../db/standing.ts';
 import { type Context, personOf } from './context.ts';
 
+/** Name of the stand-in for GitHub among providers: its invented account numbers are nobody's at the real one. */
+export const standInProvider = 'github-stand-in';
+
 export async function me({ database }: Context, standing: Standing): Promise<Me> {
   const person = standing.person === null ? null : await findAccount(database, standing.person);
   return { person, may: actionsOf(standing) };
