@@ -1,12 +1,18 @@
+import { monomials } from '../../algebra/f2/laurent.ts';
+import { LaurentModule } from '../../algebra/f2/module.ts';
 import { adjointExtended, asExtended, canonicalExtended, isOrderFree } from '../../algebra/pauli/extended.ts';
 import { bodyKey, identityString, multiplyStrings, toPhase, translateString } from '../../algebra/pauli/string.ts';
+import { newFrame, spinClasses } from '../../algebra/pauli/vector.ts';
 import type { Extended, LocalString, Phase, ProductPart, Steps } from '../../algebra/pauli/types.ts';
 import { shifted, type Offset } from '../../lattice/cells.ts';
-import type { Budget } from '../../limits.ts';
+import { BudgetSpent, newBudget, type Budget } from '../../limits.ts';
 import type { DictionaryRule } from '../../language/values.ts';
-import { contains, inSteps, lcm, minus, refined, residues } from '../steps.ts';
+import { contains, inSteps, lcm, minus, plus, refined, residues } from '../steps.ts';
 import type { Generator, Use } from './coordinates.ts';
 import { product } from './search.ts';
+
+/** Steps that membership over the Laurent ring may take for one term. */
+const moduleSteps = 4_000_000;
 
 /** A term as a product: i^phase times the left sides of the rules, translated, in the order of `uses` (generator = number of the rule). */
 export interface Decomposition {
@@ -50,18 +56,67 @@ export const leftProduct = (uses: readonly Use[], rules: readonly DictionaryRule
   }, identityString);
 
 /**
+ * Membership in the module that the left sides generate over the Laurent polynomials over F2: a product where there is one, `outside` where a
+ * Gröbner basis shows that there is none, undefined where the budget ends or some rule does not move everywhere.
+ */
+function byModule(
+  term: LocalString,
+  rules: readonly DictionaryRule[],
+  budget: Budget,
+): readonly Use[] | 'outside' | undefined {
+  const dimension = term.factors[0]?.cell.offset.length ?? 0;
+  if (rules.some((r) => isExtended(r.left) || r.steps.some((m) => m === 0))) return undefined;
+  const period = rules.reduce<number[]>(
+    (all, r) => all.map((m, d) => lcm(m, r.steps[d] ?? 1)),
+    Array<number>(dimension).fill(1),
+  );
+  const items = rules.flatMap((r, generator) =>
+    isExtended(r.left)
+      ? []
+      : residues(r.steps, period).map((by) => ({ generator, by, string: translateString(r.left as LocalString, by) })),
+  );
+  const frame = newFrame(spinClasses([term, ...items.map((i) => i.string)]), period);
+  try {
+    const module = new LaurentModule(
+      items.map((i) => frame.toVector(i.string)),
+      dimension,
+      2 * frame.count,
+      budget,
+    );
+    const found = module.decompose(frame.toVector(term));
+    if (!found.inside) return 'outside';
+    return found.coefficients.flatMap((p, k) => {
+      const item = items[k];
+      return item
+        ? monomials(p, dimension).map((e): Use => ({
+            generator: item.generator,
+            by: plus(
+              item.by,
+              e.map((c, d) => c * (period[d] ?? 1)),
+            ),
+          }))
+        : [];
+    });
+  } catch (error) {
+    if (error instanceof BudgetSpent) return undefined;
+    throw error;
+  }
+}
+
+/**
  * Writes a local string as a product of left sides on the infinite lattice: an exact left side first, else a product of fewest
- * generators, where the search ends (E. Cobanera, G. Ortiz, Z. Nussinov, Adv. Phys. 60, 679 (2011), section 3: bonds as generators).
- * `shift`: the translations that the answer must share with the term. Undefined: none was found.
+ * generators, where the search ends (E. Cobanera, G. Ortiz, Z. Nussinov, Adv. Phys. 60, 679 (2011), section 3: bonds as generators), else any product that
+ * membership over the Laurent ring gives. `shift`: the translations that the answer must share with the term. `outside`: shown to be no such product;
+ * undefined: none was found.
  */
 export function decompose(
   term: LocalString,
   shift: Steps,
   rules: readonly DictionaryRule[],
   budget: Budget,
-): Decomposition | undefined {
+): Decomposition | 'outside' | undefined {
   const own = exactUse(term, shift, rules);
-  const found = own
+  const searched = own
     ? [own]
     : product(
         term,
@@ -70,7 +125,8 @@ export function decompose(
         shift.map(() => 0),
         budget,
       );
-  if (!found) return undefined;
+  const found = searched ?? byModule(term, rules, newBudget(moduleSteps));
+  if (!found || found === 'outside') return found;
   // the order that reads along the lattice: by rule, then by place
   const uses = [...found].sort((a, b) => a.generator - b.generator || before(a.by, b.by));
   return { phase: toPhase(term.phase - leftProduct(uses, rules).phase), uses };

@@ -44,16 +44,19 @@ export function dictionaryMap(declaration: DictionaryDeclaration, context: Conte
     // most charged terms are found by a look at the familiar symmetries, before any search
     const quick = single ? undefined : chargedUnder(own, rules, from, context, 'familiar', budget);
     const found = quick ? undefined : decompose(own, shift, rules, budget);
-    if (!found) {
+    if (!found || found === 'outside') {
       const symmetry = quick ?? chargedUnder(own, rules, from, context, 'all', budget);
       const phrase = stringPhrase({ phase: 0, factors: own.factors }, context.family);
-      return symmetry
-        ? refused(
-            `${phrase} is no product of left sides of ${context.name}: it anticommutes with ${symmetry.text}, which commutes with all of them`,
-            own,
-            symmetry,
-          )
-        : refused(`${phrase} was not found as a product of left sides of ${context.name}`, own);
+      if (symmetry)
+        return refused(
+          `${phrase} is no product of left sides of ${context.name}: it anticommutes with ${symmetry.text}, which commutes with all of them`,
+          own,
+          symmetry,
+        );
+      return refused(
+        `${phrase} ${found === 'outside' ? 'is no' : 'was not found as a'} product of left sides of ${context.name}`,
+        own,
+      );
     }
     let side: LocalString | Extended = { phase: found.phase, factors: [] };
     const needs: Cell[] = [];
