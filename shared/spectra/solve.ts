@@ -1,6 +1,8 @@
 import type { FiniteModel } from '../algebra/finite/types.ts';
 import { limits } from '../limits.ts';
-import { enumeratedSector, type DiagonalRule, type EnumeratedFault } from './bases/enumerated.ts';
+import { enumeratedSector, type DiagonalRule } from './bases/enumerated.ts';
+import { imageSector } from './bases/image.ts';
+import type { ImageBlocks, ImageFault } from './bases/image-blocks.ts';
 import type { Constraint } from './bases/packed.ts';
 import { qubitSector, type Block, type Sector } from './bases/sector.ts';
 import type { NumericTerm } from './hamiltonian.ts';
@@ -17,6 +19,8 @@ export interface SpectrumQuestion {
   readonly constraints: readonly Constraint[];
   /** Diagonal rules; with any, the model is PHP on the states that obey them. */
   readonly rules?: readonly DiagonalRule[];
+  /** Blocks with orthonormal vectors; with any, the model is PHP on the product of their spans and the other spins. */
+  readonly images?: readonly ImageBlocks[];
   /** Values of the couplings, by name. */
   readonly values: ReadonlyMap<string, number>;
   /** Levels wanted, counted with multiplicity; more than the dimension: all. */
@@ -51,7 +55,7 @@ export interface Cost {
 }
 
 export type SolveFault =
-  | EnumeratedFault
+  | ImageFault
   | { readonly code: 'too many spins'; readonly spins: number }
   | {
       readonly code: 'too large';
@@ -77,7 +81,7 @@ export interface Spectrum {
   readonly multiplets: readonly Multiplet[];
   readonly method: Method;
   readonly real: boolean;
-  /** Terms that lead out of the states that the rules allow, by index. */
+  /** Terms that lead out of the states that the rules or images allow, by index. */
   readonly leaving: readonly number[];
   /** Present when asked for. */
   readonly space: EigenSpace | undefined;
@@ -142,18 +146,20 @@ function plan(
   question: SpectrumQuestion,
   allowed: SolveLimits,
 ): { readonly ok: true; readonly plan: Plan } | { readonly ok: false; readonly fault: SolveFault } {
-  const { model, constraints, rules = [], values, levels } = question;
+  const { model, constraints, rules = [], images = [], values, levels } = question;
   const n = model.table.sites.length;
   const terms = numericTerms(model.terms, values);
   const constant = model.constant.toFloat(values).re;
   const build = (all: boolean) =>
-    rules.length > 0
-      ? enumeratedSector(n, terms, constant, rules, constraints, allowed.states)
-      : qubitSector(n, terms, constant, constraints, all);
+    images.length > 0
+      ? imageSector(n, terms, constant, images, rules, constraints, allowed.states)
+      : rules.length > 0
+        ? enumeratedSector(n, terms, constant, rules, constraints, allowed.states)
+        : qubitSector(n, terms, constant, constraints, all);
   let built = build(false);
   if (!built.ok) return built;
   const many = manyLevels(built.value, levels);
-  if (many && rules.length === 0) built = build(true);
+  if (many && built.value.kind === 'all states') built = build(true);
   if (!built.ok) return built;
   const sector = built.value;
   const largest = Math.max(...sector.blocks.map((b) => b.dimension));

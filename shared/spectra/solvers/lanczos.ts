@@ -322,9 +322,16 @@ class Band {
     const w = this.window.make();
     this.h.apply(v, w);
     const size = this.window.norm(w);
-    const others = [...this.vectors, ...this.outside];
-    const { c, norm } = orthogonalise(this.window, others, w);
-    for (let k = 0; k < this.vectors.length; k++) this.put(k, this.done, c[0][k] ?? 0, c[1][k] ?? 0);
+    // The neighbours hold nearly all of H v that lies in the window: with them gone, one pass over the rest mostly suffices.
+    const near = Math.max(0, this.done - 2);
+    const local = this.vectors.slice(near, this.done + 2);
+    const first = this.window.products(local, w);
+    this.window.subtract(local, first, w);
+    const { c, norm } = orthogonalise(this.window, [...this.vectors, ...this.outside], w);
+    for (let k = 0; k < this.vectors.length; k++) {
+      const [a, b] = [first[0][k - near] ?? 0, first[1][k - near] ?? 0];
+      this.put(k, this.done, (c[0][k] ?? 0) + a, (c[1][k] ?? 0) + b);
+    }
     // What rounding leaves of a vector inside the window is no new direction.
     if (norm > 1e-13 * Math.max(size, this.largest())) {
       this.push(w, norm);
