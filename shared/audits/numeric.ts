@@ -79,8 +79,28 @@ function faultSentence(
       };
     case 'too many states':
       return {
-        reason: `more than ${String(fault.limit)} states obey the rules on ${size}; take a smaller size`,
+        reason: `the sector has more than ${String(fault.limit)} states on ${size}; take a smaller size`,
         isProblem: false,
+      };
+    case 'constraint leaves image':
+      return {
+        reason: `${constraintWords(subject, fault.constraint)} does not act within the image of ${subject.imageNames.join(', ')}, so no sector has both (${size})`,
+        isProblem: true,
+      };
+    case 'constraint is too wide':
+      return {
+        reason: `${constraintWords(subject, fault.constraint)} mixes more than ${String(fault.limit)} states of the image on ${size}; take a smaller size`,
+        isProblem: false,
+      };
+    case 'rule crosses image':
+      return {
+        reason: `a rule of the sector does not have one value on each state of the image of ${subject.imageNames.join(', ')}; name the rule or the map, not both`,
+        isProblem: true,
+      };
+    case 'blocks share a spin':
+      return {
+        reason: `blocks of ${subject.imageNames.join(', ')} share a spin on ${size}, so they have no common image`,
+        isProblem: true,
       };
     case 'too many spins':
       return {
@@ -153,9 +173,7 @@ export function spectrumQuestion(
   couplings: ReadonlyMap<string, number> = couplingValues(values),
 ): SpectrumQuestion {
   const { model, constraints, rules, images } = subject;
-  const [image] = images;
-  if (image) throw new Unanswerable(`levels in the image of the state map ${image.name} are not computed here`);
-  return { model, constraints, rules, values: couplings, levels };
+  return { model, constraints, rules, images, values: couplings, levels };
 }
 
 /** Cost of a subject at a size, as far as it can be told; refusals count as cheap, so that deciding says why. */

@@ -12,7 +12,9 @@ import type { LawValue, MapValue, RuleValue, SectorLabel, Subject, SymmetryValue
 import { newCluster, sizeText, type Cluster } from '../lattice/cluster.ts';
 import { isLatticeProblem, type Size } from '../lattice/cells.ts';
 import type { DiagonalRule } from '../spectra/bases/enumerated.ts';
+import type { ImageBlocks } from '../spectra/bases/image-blocks.ts';
 import { diagonalRules } from './finite-rules.ts';
+import { imageBlocks } from './image-sector.ts';
 import { fitting, Unanswerable } from './unanswerable.ts';
 
 /** A signed Pauli string of a sector on a cluster: in the sector it equals `value`. */
@@ -31,7 +33,9 @@ export interface FiniteSubject {
   readonly constraints: readonly SectorConstraint[];
   readonly rules: readonly DiagonalRule[];
   /** State maps named in the sector: the subspace is their image. */
-  readonly images: readonly MapValue[];
+  readonly images: readonly ImageBlocks[];
+  /** Their names. */
+  readonly imageNames: readonly string[];
 }
 
 /** The cluster of a size. Throws Unanswerable. */
@@ -142,7 +146,8 @@ export function finiteSubject(values: Values, subject: Subject, size: Size): Fin
     model,
     constraints,
     rules: rules.flatMap((rule) => diagonalRules(cluster, table, rule)),
-    images,
+    images: images.map((map) => imageBlocks(cluster, table, map)),
+    imageNames: images.map((map) => map.name),
   };
 }
 

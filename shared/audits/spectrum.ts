@@ -107,9 +107,7 @@ function* decide(question: Question, means: Means): Generator<Progress, readonly
 export function sideNotes(name: string, notes: readonly string[], spectrum: Spectrum): string[] {
   const leaving = spectrum.leaving.length;
   const projected =
-    leaving === 0
-      ? []
-      : [`${name} is taken as PHP: ${String(leaving)} terms lead out of the states that the rules allow`];
+    leaving === 0 ? [] : [`${name} is taken as PHP: ${String(leaving)} terms lead out of the states of its sector`];
   return [...notes.map((note) => `${name}: ${note}`), ...projected];
 }
 
