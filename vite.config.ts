@@ -11,6 +11,8 @@ export default defineConfig({
   },
   // `npm run dev` starts Vite in front of the server and says where that one listens.
   server: process.env.BACKEND ? { proxy: { '^/(api|auth)(/|$)': { target: process.env.BACKEND } } } : {},
+  // The server puts each answer's nonce in its place.
+  html: { cspNonce: '__CSP_NONCE__' },
   worker: { format: 'es' },
   build: {
     outDir: 'dist/client',
@@ -18,7 +20,8 @@ export default defineConfig({
     target: 'es2022',
     // Small fonts would become data: URLs, which the content security policy (font-src 'self') refuses.
     assetsInlineLimit: 0,
-    // mathjs is one chunk of its own, loaded where trial values are typed.
-    chunkSizeWarningLimit: 700,
+    // The engine is one file, loaded by its worker; mathjs another, loaded where trial values are typed.
+    chunkSizeWarningLimit: 1500,
+    rolldownOptions: { checks: { pluginTimings: false } },
   },
 });
