@@ -23,6 +23,8 @@ export interface Live {
 }
 
 interface Ear {
+  /** Takes the ear away and tells the others; done once, however often it is called. */
+  readonly leave: () => Promise<void>;
   standing: NotebookStanding;
   readonly connection: string;
   readonly listener: Listener;
@@ -84,34 +86,46 @@ export function openLive(database: Database, onTrouble: (error: unknown) => void
   return {
     listen: async (standing, listener) => {
       const { person, on } = standing;
-      const ear: Ear = { standing, connection: randomUUID(), listener };
+      const connection = randomUUID();
+      const present = isMember(standing) && person !== null;
       const set = ears.get(on.notebook) ?? new Set<Ear>();
-      ears.set(on.notebook, set.add(ear));
-      const silence = (): void => {
+      const leave = async (): Promise<void> => {
         set.delete(ear);
         if (set.size === 0 && ears.get(on.notebook) === set) ears.delete(on.notebook);
+        if (!present) return;
+        await sayGone(database, connection);
+        await announce(database, on.notebook, 'present', null);
       };
-      if (!isMember(standing) || person === null) return () => Promise.resolve(silence());
-      const { connection } = ear;
+      const ear: Ear = { standing, connection, listener, leave: once(leave) };
+      ears.set(on.notebook, set.add(ear));
+      if (!present) return ear.leave;
       try {
         await sayPresent(database, { connection, notebook: on.notebook, person });
         await announce(database, on.notebook, 'present', null);
       } catch (error) {
-        silence();
+        await ear.leave().catch(() => undefined);
         throw error;
       }
-      return async () => {
-        silence();
-        await sayGone(database, connection);
-        await announce(database, on.notebook, 'present', null);
-      };
+      return ear.leave;
     },
     close: async () => {
       clearInterval(renew);
-      for (const ear of all()) ear.listener.end();
+      // Those who listen leave while the database still answers.
+      await Promise.allSettled(all().map(endAndLeave));
       await radio.close();
     },
   };
+}
+
+function endAndLeave(ear: Ear): Promise<void> {
+  ear.listener.end();
+  return ear.leave();
+}
+
+/** The same promise for every call. */
+function once(work: () => Promise<void>): () => Promise<void> {
+  let begun: Promise<void> | undefined;
+  return () => (begun ??= work());
 }
 
 interface Hearing {

@@ -1,15 +1,25 @@
 import { randomUUID } from 'node:crypto';
 import type { RequestHandler, Response } from 'express';
-import { type Logger, pino } from 'pino';
+import { type Logger, pino, stdSerializers } from 'pino';
 import { pinoHttp } from 'pino-http';
 import type { Database } from '../db/connection.ts';
 import type { Settings } from '../settings.ts';
 
 /** A log of one JSON object a line, on standard output. */
-export const openLog = ({ logLevel }: Pick<Settings, 'logLevel'>): Logger => pino({ level: logLevel });
+export const openLog = ({ logLevel }: Pick<Settings, 'logLevel'>): Logger =>
+  pino({ level: logLevel, serializers: { err: (error: Error) => stdSerializers.err(withoutValues(error)) } });
+
+/** A failed query names its values, which are what people wrote: only the reason is kept, and the query without them. */
+export function withoutValues(error: Error): Error {
+  const { query } = error as { query?: unknown };
+  if (!('params' in error)) return error;
+  const cause = error.cause instanceof Error ? error.cause : new Error('unknown reason');
+  const kept = new Error(`A query failed: ${cause.message}`);
+  return Object.assign(kept, { stack: cause.stack, query, code: (cause as NodeJS.ErrnoException).code });
+}
 
 /** What opens something must not stand in a log: tokens of share links, codes and states of a sign-in. */
-const withoutSecrets = (url: string): string =>
+export const withoutSecrets = (url: string): string =>
   url.replace(/(\/linked\/|\/shared\/)[^/?]+/, '$1…').replace(/([?&](?:code|state|token)=)[^&]*/g, '$1…');
 
 /** Gives each request an id (its answer's X-Request-Id), and writes a line when it is answered. */

@@ -64,11 +64,11 @@ function isOutage(code: unknown, error: unknown): boolean {
 }
 
 /** The end of every chain that something was thrown in. */
-export const problems: ErrorRequestHandler = (error: unknown, _request, response, next) => {
+export const problems: ErrorRequestHandler = (error: unknown, _request, response, _next) => {
   const refusal = known(error);
   if (refusal === null || refusal.code === 'unavailable') logOf(response).error({ err: error }, 'a request failed');
-  // Where an answer has begun, Express closes the connection, so that half an answer is not taken for a whole one.
-  if (response.headersSent) next(error);
+  // Where an answer has begun, the connection is closed, so that half an answer is not taken for a whole one.
+  if (response.headersSent) response.destroy();
   else sendProblem(response, refusal ?? new Refusal('failed', 'Something went wrong here. It was written down.'));
 };
 

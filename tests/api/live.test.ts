@@ -1,3 +1,4 @@
+import { pino } from 'pino';
 import { beforeAll, describe, expect, it } from 'vitest';
 import { startWeb } from '../../server/index.ts';
 import { type LiveEvent, liveEvents } from '../../shared/contracts/notebooks.ts';
@@ -154,5 +155,22 @@ describe('who is there', () => {
     const stream = await listen(coauthor, at.notebook);
     await owner.ask('deleteNotebook', { params: at });
     await stream.ended;
+  });
+});
+
+describe('stopping', () => {
+  it('when the server stops, then streams end, nobody stays present, and nothing is written down as a failure', async () => {
+    const lines: string[] = [];
+    const log = pino({ level: 'warn' }, { write: (line: string) => void lines.push(line) });
+    const second = await startWeb(settingsFor(here.databaseUrl), log);
+    const at = await notebookForTwo();
+    const there = await person({ url: `http://127.0.0.1:${String(second.port)}` }, 'rokafor');
+    const stream = await listen(there, at.notebook);
+    await stream.next('present');
+    await second.stop();
+    await stream.ended;
+    const { rows } = await here.database.pool.query('select 1 from presences where notebook = $1', [at.notebook]);
+    expect(rows).toEqual([]);
+    expect(lines.filter((line) => !line.includes('stand-in'))).toEqual([]);
   });
 });
