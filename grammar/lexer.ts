@@ -50,6 +50,8 @@ export interface Reading {
   readonly plain: boolean;
   /** Offsets at which a body line begins, ascending. */
   readonly rules: readonly number[];
+  /** Reading stops after this many tokens. */
+  readonly most: number;
 }
 
 const typeOfWord = (token: moo.Token, next: moo.Token | undefined, plain: boolean): string => {
@@ -74,7 +76,10 @@ function* sizeParts(token: moo.Token): Generator<Token> {
 export function tokensOf(text: string, reading: Reading): Token[] {
   raw.reset(text);
   const found: moo.Token[] = [];
-  for (const token of raw) if (token.type !== 'space' && token.type !== 'comment') found.push(token);
+  for (const token of raw) {
+    if (token.type !== 'space' && token.type !== 'comment') found.push(token);
+    if (found.length >= reading.most) break;
+  }
   const out: Token[] = [];
   let rule = 0;
   found.forEach((token, k) => {

@@ -78,8 +78,14 @@ export function add(a: Amount, b: Amount, sign: 1 | -1, scene: Scene, place: Spa
   );
 }
 
+/** Steps that collecting one family costs beside those that `collect` counts itself. */
+const familyCost = 4;
+
 /** Sum of operators, collected once. */
-export const total = (operators: readonly Operator[], scene: Scene): Operator => collect(operators, options(scene));
+export function total(operators: readonly Operator[], scene: Scene): Operator {
+  scene.budget.spend(familyCost * operators.reduce((n, o) => n + o.families.length, 0));
+  return collect(operators, options(scene));
+}
 
 function scaleNumber(a: NumberAmount, b: NumberAmount, scene: Scene, place: Span): NumberAmount {
   if (!a.along && !b.along) return numberAmount(a.value.mul(b.value));
@@ -110,7 +116,7 @@ export function multiply(a: Amount, b: Amount, scene: Scene, place: Span): Amoun
       return { what: 'kets', amplitudes: new Map([...other.amplitudes].map(([bits, x]) => [bits, x.mul(c)])) };
   }
   const [left, right] = [asOperator(a, scene, place), asOperator(b, scene, place)];
-  scene.budget.spend(left.families.length * right.families.length);
+  scene.budget.spend(familyCost * left.families.length * right.families.length);
   const product = multiplyOperators(left, right, options(scene));
   if (product) return operatorAmount(product);
   const spans = (o: Operator): boolean => o.families.some((f) => !isPinned(f));

@@ -56,7 +56,7 @@ export function instances<T>(
   const set = cellSet(binder.domain, scene);
 
   const inside = (at: Bound, inner: Scene, steps: Steps | undefined): Instance<T>[] => {
-    scene.budget.spend(1 + scene.dimension);
+    scene.budget.spend(8);
     const optional = set.cut && use === 'prod';
     const known = optional ? withCells(at, (c) => ({ ...c, optional: true })) : at;
     const next: Scene = {

@@ -1,11 +1,11 @@
 import type { CallNode, Expression, Path } from '../../grammar/syntax.ts';
 import { Coefficient } from '../algebra/numbers/coefficient.ts';
-import { isPinned } from '../algebra/pauli/family.ts';
+import { isPinned, translateOperator } from '../algebra/pauli/family.ts';
 import { translateString } from '../algebra/pauli/string.ts';
-import type { Extended, Family, Operator } from '../algebra/pauli/types.ts';
-import { shifted } from '../lattice/cells.ts';
+import type { Extended, Family, Operator, Steps } from '../algebra/pauli/types.ts';
+import { shifted, type Cell, type Offset } from '../lattice/cells.ts';
 import { asOperator, total } from './arithmetic.ts';
-import { ProblemError, fail, say, whatIsIt } from './problem.ts';
+import { fail, say, whatIsIt } from './problem.ts';
 import { cellArgument, cellWords, integerArgument } from './sets.ts';
 import {
   Aperiodic,
@@ -20,18 +20,26 @@ import {
 } from './scene.ts';
 import type { LawValue, MapValue, OperatorValue, Value } from './values.ts';
 
-/** An operator with parameter keeps how it is evaluated inside the scene of whoever calls it, so that it moves along. */
+/** Something pinned that stands at each cell of a parameter's domain: one for each class and residue. */
+export interface Standing<T> {
+  readonly value: T;
+  readonly steps: Steps;
+  readonly needs: readonly Cell[];
+  readonly anchor: Cell;
+}
+
+/** An operator with parameter keeps what it is at each class and residue of its domain. */
 export interface DeclaredOperator extends OperatorValue {
-  readonly inScene?: (cell: MovingCell, scene: Scene) => Operator;
+  readonly standing?: readonly Standing<Operator>[];
 }
 
 export const dotted = (path: Path): string => path.words.map((w) => w.text).join('.');
 
 /** A declared operator that stands somewhere or everywhere may not stand in a moving frame, unless it is a constant. */
-function unmoved(operator: Operator, path: Path, scene: Scene): Operator {
+function unmoved(operator: Operator, path: Path, scene: Scene, moves = false): Operator {
   const whole = operator.extended.length > 0 || operator.families.some((f) => !isPinned(f));
   if (scene.within && whole) return fail(say.wholeInside(dotted(path)), path);
-  if (scene.frame && operator.families.some((f) => f.string.factors.length > 0)) throw new Aperiodic(path);
+  if (!moves && scene.frame && operator.families.some((f) => f.string.factors.length > 0)) throw new Aperiodic(path);
   return operator;
 }
 
@@ -75,42 +83,64 @@ function onlyCell(node: CallNode, name: string, kind: string, scene: Scene): Mov
   return cell;
 }
 
+/**
+ * What stands at a cell, and how far its representative must be moved to get there. In a frame the cell moves along,
+ * so the frame's steps must be multiples of those with which it repeats.
+ */
+function standingAt<T>(
+  all: readonly Standing<T>[],
+  cell: MovingCell,
+  scene: Scene,
+  node: CallNode,
+): { readonly one: Standing<T>; readonly by: Offset } | undefined {
+  for (const one of all) {
+    if (one.anchor.index !== cell.cell.index) continue;
+    one.steps.forEach((m, d) => {
+      if (!scene.frame?.[d]) return;
+      const step = scene.steps[d] ?? 0;
+      if (m === 0) throw new Aperiodic(node);
+      if (step % m !== 0) throw new Refine(d, (step / gcd(step, m)) * m);
+    });
+    const by = cell.cell.offset.map((c, d) => c - (one.anchor.offset[d] ?? 0));
+    if (!by.every((b, d) => (one.steps[d] ? b % one.steps[d] === 0 : b === 0))) continue;
+    if (scene.frame?.some((moves, d) => moves && !cell.moves[d])) throw new Aperiodic(node);
+    return { one, by };
+  }
+  return undefined;
+}
+
 /** A law at a cell: the family of its class and residue, moved there. */
 function lawAt(value: LawValue, node: CallNode, scene: Scene): Operator {
   const cell = onlyCell(node, value.name, value.parameter.kind, scene);
-  const frame = scene.frame;
-  for (const { string, steps, needs, anchor } of value.families) {
-    if (anchor.index !== cell.cell.index) continue;
-    steps.forEach((m, d) => {
-      const step = scene.steps[d] ?? 0;
-      if (frame?.[d] && m === 0) throw new Aperiodic(node);
-      if (frame?.[d] && step % m !== 0) throw new Refine(d, (step / gcd(step, m)) * m);
-    });
-    const by = cell.cell.offset.map((c, d) => c - (anchor.offset[d] ?? 0));
-    if (!by.every((b, d) => (steps[d] ? b % steps[d] === 0 : b === 0))) continue;
-    if (frame?.some((moves, d) => moves && !cell.moves[d])) throw new Aperiodic(node);
-    const family: Family = {
-      coefficient: Coefficient.one,
-      string: translateString(string, by),
-      steps: steps.map(() => 0),
-      needs: scene.open ? needs.map((c) => shifted(c, by)) : [],
-    };
-    return total([{ families: [family], extended: [] }], scene);
-  }
-  return fail(say.notInDomain(value.name), node);
+  const all = value.families.map(({ string, steps, needs, anchor }) => ({ value: string, steps, needs, anchor }));
+  const found = standingAt(all, cell, scene, node);
+  if (!found) return fail(say.notInDomain(value.name), node);
+  const { one, by } = found;
+  const family: Family = {
+    coefficient: Coefficient.one,
+    string: translateString(one.value, by),
+    steps: one.steps.map(() => 0),
+    needs: scene.open ? one.needs.map((c) => shifted(c, by)) : [],
+  };
+  return total([{ families: [family], extended: [] }], scene);
 }
 
 function operatorAt(value: DeclaredOperator, node: CallNode, scene: Scene): Operator {
-  if (!value.parameter || !value.inScene) return fail(say.argumentCount(value.name, 'no cell', node.args.length), node);
+  if (!value.parameter || !value.standing)
+    return fail(say.argumentCount(value.name, 'no cell', node.args.length), node);
   const cell = onlyCell(node, value.name, value.parameter.kind, scene);
-  try {
-    return value.inScene(cell, scene);
-  } catch (error) {
-    // the problem lies in how the operator is used here
-    if (error instanceof ProblemError) return fail(error.saying, node);
-    if (error instanceof Aperiodic) throw new Aperiodic(node);
-    throw error;
-  }
+  const found = standingAt(value.standing, cell, scene, node);
+  return found
+    ? unmoved(moveOperator(found.one, found.by), node.path, scene, true)
+    : fail(say.notInDomain(value.name), node);
+}
+
+/** A standing operator moved by unit cells. */
+export function moveOperator({ value, needs }: Standing<Operator>, by: Offset): Operator {
+  const moved = translateOperator(value, by);
+  if (needs.length === 0) return moved;
+  const here = needs.map((c) => shifted(c, by));
+  return { ...moved, families: moved.families.map((f) => ({ ...f, needs: [...f.needs, ...here] })) };
 }
 
 /** Shortest steps along which a map treats all places alike; 0: it does not repeat. */

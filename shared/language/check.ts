@@ -193,6 +193,14 @@ class Checker {
     }
   }
 
+  private couplings(items: readonly { readonly name: Word; readonly value: Expression | undefined }[]): void {
+    const before = new Set<string>();
+    for (const { name, value } of items) {
+      if (value) this.expression(value, before);
+      before.add(name.text);
+    }
+  }
+
   private subject(node: SubjectNode): void {
     this.use(node.path);
     node.sector.forEach((label) => this.use(label.path));
@@ -226,9 +234,7 @@ class Checker {
         return;
       case 'couplings':
         // a value may use the couplings before it, also those of its own line
-        return node.items.forEach((item, k) => {
-          if (item.value) this.expression(item.value, new Set(node.items.slice(0, k).map((i) => i.name.text)));
-        });
+        return this.couplings(node.items);
       case 'model':
       case 'operator':
       case 'symmetry':

@@ -1,16 +1,16 @@
 import type { Binder, Expression, Head, Statement } from '../../grammar/syntax.ts';
 import { Coefficient } from '../algebra/numbers/coefficient.ts';
 import { isHermitianExtended } from '../algebra/pauli/extended.ts';
+import type { Cell } from '../lattice/cells.ts';
 import { collect, isPinned, notHermitian, speciesOfOperator } from '../algebra/pauli/family.ts';
 import type { Extended, Family, LocalString, Operator } from '../algebra/pauli/types.ts';
 import { asOperator, options, phaseOf, total } from './arithmetic.ts';
 import { instances } from './binding.ts';
-import { dotted, type DeclaredOperator } from './calls.ts';
+import { dotted, moveOperator, type DeclaredOperator, type Standing } from './calls.ts';
 import { amount } from './expand.ts';
 import { fail, say } from './problem.ts';
 import { cellSet } from './sets.ts';
-import { holds } from './conditions.ts';
-import { settled, textOf, type Amount, type MovingCell, type Scene } from './scene.ts';
+import { settled, textOf, type Amount, type Scene } from './scene.ts';
 import type {
   LawFamily,
   LawValue,
@@ -101,14 +101,7 @@ const negate = (o: Operator): Operator => ({
 });
 
 /** Evaluates something at each representative of a parameter's domain. */
-export interface Placed<T> {
-  readonly value: T;
-  readonly steps: readonly number[];
-  readonly needs: Family['needs'];
-  readonly anchor: NonNullable<Family['needs'][number]>;
-}
-
-function atParameter<T>(binder: Binder, scene: Scene, body: (scene: Scene) => T): Placed<T>[] {
+function atParameter<T>(binder: Binder, scene: Scene, body: (scene: Scene) => T): Standing<T>[] {
   const zero = new Array<number>(scene.dimension).fill(0);
   return instances([binder], 'sum', scene, body).flatMap(({ value, steps, needs, anchor }) =>
     anchor ? [{ value, steps: steps ?? zero, needs, anchor }] : [],
@@ -129,47 +122,22 @@ export function declareOperator(node: Of<'operator'>, heading: Heading, scene: S
     return { ...heading, what: 'operator', parameter: undefined, operator, at: undefined };
   }
   const parameter = parameterOf(binder, scene);
-  const { variable } = parameter;
-  // once at each representative: so that problems show where they stand, and not where the operator is used
-  const found = atParameter(binder, scene, (inner) => {
+  const standing = atParameter(binder, scene, (inner) => {
     const operator = operatorOf(node.body, inner);
     if (operator.families.some((f) => !isPinned(f))) fail(say.wholeInside(textOf(node.body, scene)), node.body);
     return operator;
   });
-  const quiet = { ...scene, note: () => undefined, seams: [] };
-  const inScene = (cell: MovingCell, caller: Scene): Operator => {
-    const inner: Scene = {
-      ...quiet,
-      frame: caller.frame,
-      steps: caller.steps,
-      within: caller.within,
-      budget: caller.budget,
-      bound: new Map([[variable, { ...cell, optional: false }]]),
-    };
-    const set = cellSet(binder.domain, inner);
-    const inDomain = set.parts.some(
-      ({ at, steps }) =>
-        at.what === 'cell' &&
-        at.cell.kind === cell.cell.kind &&
-        at.cell.index === cell.cell.index &&
-        steps.every((m, d) => m > 0 || at.cell.offset[d] === cell.cell.offset[d]),
-    );
-    if (!inDomain || (binder.where && !holds(binder.where, inner)))
-      return fail(say.notInDomain(heading.name), node.head);
-    return operatorOf(node.body, inner);
+  const at = (cell: Cell): Operator => {
+    for (const one of standing) {
+      const by = cell.offset.map((c, d) => c - (one.anchor.offset[d] ?? 0));
+      const there = by.every((b, d) => (one.steps[d] ? b % one.steps[d] === 0 : b === 0));
+      if (one.anchor.kind === cell.kind && one.anchor.index === cell.index && there) return moveOperator(one, by);
+    }
+    return fail(say.notInDomain(heading.name), node.head);
   };
-  const value: DeclaredOperator = {
-    ...heading,
-    what: 'operator',
-    parameter,
-    operator: found[0]?.value ?? { families: [], extended: [] },
-    at: (cell, budget) =>
-      inScene(
-        { what: 'cell', cell, moves: cell.offset.map(() => false), optional: false },
-        { ...quiet, frame: undefined, within: false, bound: new Map(), budget },
-      ),
-    inScene,
-  };
+  const [first] = standing;
+  const operator = first ? moveOperator(first, scene.steps) : { families: [], extended: [] };
+  const value: DeclaredOperator = { ...heading, what: 'operator', parameter, operator, at, standing };
   return value;
 }
 

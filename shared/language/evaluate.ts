@@ -11,6 +11,9 @@ import { layoutOf, type Layout } from './source.ts';
 import { evaluateStatement, type EvaluationContext, type Outcome } from './statement.ts';
 import type { AuditStatement, ModelValue, Place, Value, Values } from './values.ts';
 
+/** Steps of the evaluation of one source; a step of the language is one to three microseconds. */
+export const evaluationSteps = 1_000_000;
+
 /** One statement of a program, for the page: where it is, what it declares, whether it was evaluated. */
 export interface StatementResult {
   readonly line: number;
@@ -117,8 +120,10 @@ class Run {
     );
   }
 
-  private parse(layout: Layout, before: Kept | undefined): Parsed {
+  /** Undefined once the budget of the whole source is spent. */
+  private parse(layout: Layout, before: Kept | undefined): Parsed | undefined {
     if (before) return before.parsed;
+    if (this.budget.left < 0) return undefined;
     try {
       return parseStatement(layout, this.budget);
     } catch (error) {
@@ -170,8 +175,9 @@ class Run {
   }
   private currentLine = 0;
 
-  private one(layout: Layout, parsed: Parsed, before: Kept | undefined): void {
+  private one(layout: Layout, parsed: Parsed | undefined, before: Kept | undefined): void {
     this.currentLine = layout.line;
+    if (!parsed) return this.finish(layout, guessedNames(layout), false, ['limit']);
     if ('fault' in parsed) {
       this.keep(layout, { line: layout.line, parsed, used: new Map(), lattice: undefined, outcome: undefined });
       this.report(parsed.fault, layout);
@@ -194,7 +200,7 @@ class Run {
       this.claim(names, layout.line);
       return this.finish(layout, names, false, waitsForLattice ? ['lattice', ...waits] : waits);
     }
-    if (this.budget.left <= 0 && !before?.outcome) return this.finish(layout, names, false, ['limit']);
+    if (this.budget.left < 0 && !before?.outcome) return this.finish(layout, names, false, ['limit']);
     const outcome = this.outcome(node, layout, before, used, isLattice);
     this.keep(layout, { line: layout.line, parsed, used, lattice: this.lattice, outcome });
     this.accept(layout, names, outcome);
@@ -246,9 +252,18 @@ class Run {
       return { layout, before, parsed: this.parse(layout, before) };
     });
     for (const { layout, parsed: p } of parsed)
-      for (const name of 'node' in p ? declaredWords(p.node).map((w) => w.text) : guessedNames(layout))
+      for (const name of p && 'node' in p ? declaredWords(p.node).map((w) => w.text) : guessedNames(layout))
         this.later.set(name, [...(this.later.get(name) ?? []), layout.line]);
-    for (const { layout, before, parsed: p } of parsed) this.one(layout, p, before);
+    for (const { layout, before, parsed: p } of parsed) {
+      try {
+        this.one(layout, p, before);
+      } catch (error) {
+        // a chain of thousands of words can be deeper than the stack
+        if (!(error instanceof RangeError) || !/call stack/u.test(error.message)) throw error;
+        this.report({ ...say.tooLarge(), start: 0, end: layout.keyword.length }, layout);
+        this.finish(layout, guessedNames(layout), false);
+      }
+    }
     const order = (a: Problem, b: Problem): number => a.line - b.line || a.column - b.column;
     return {
       source,
@@ -271,7 +286,7 @@ export function evaluateSource(
   source: string,
   context: EvaluationContext,
   previous?: Program,
-  budget: Budget = newBudget(),
+  budget: Budget = newBudget(evaluationSteps, 'steps of one source'),
 ): Program {
   return new Run(context, budget, previous).run(source);
 }

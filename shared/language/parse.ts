@@ -1,5 +1,5 @@
 import nearley from 'nearley';
-import { lexer, tokensOf, type Token } from '../../grammar/lexer.ts';
+import { lexer, tokensOf, type Reading, type Token } from '../../grammar/lexer.ts';
 import compiled from '../../grammar/operator.grammar.ts';
 import type { Statement } from '../../grammar/syntax.ts';
 import { statementKeywords } from '../../grammar/words.ts';
@@ -14,7 +14,7 @@ export type Parsed = { readonly node: Statement } | { readonly fault: Fault };
 /** Words and signs of one statement. */
 const mostTokens = 20_000;
 /** Elementary steps that reading one token stands for. */
-const tokenCost = 400;
+const tokenCost = 10;
 
 const grammar = nearley.Grammar.fromCompiled(compiled);
 const closing: Readonly<Record<string, string>> = { '(': ')', '[': ']', '{': '}' };
@@ -22,6 +22,8 @@ const closing: Readonly<Record<string, string>> = { '(': ')', '[': ']', '{': '}'
 /** First fault of brackets or characters, found before parsing so that depth is bounded and the place is the right one. */
 function scan(tokens: readonly Token[]): Fault | undefined {
   const open: Token[] = [];
+  // words that nest without a bracket: `sum(…) sum(…) …`, `not not …`
+  let nested = 0;
   const at = (token: Token): { start: number; end: number } => ({
     start: token.offset,
     end: token.offset + token.length,
@@ -32,6 +34,9 @@ function scan(tokens: readonly Token[]): Fault | undefined {
         ...(token.text.startsWith('\\') ? say.unknownTex(token.text) : say.character([...token.text][0] ?? '')),
         ...at(token),
       };
+    if (/^(?:sum|prod|not|inverse)$/u.test(token.text) && ++nested > limits.nesting)
+      return { ...say.tooDeep(), ...at(token) };
+    if (token.type === 'rule' || /^[-+,]$/u.test(token.text)) nested = 0;
     if (token.type !== 'symbol') continue;
     if (closing[token.text] !== undefined) {
       open.push(token);
@@ -58,6 +63,13 @@ function expectedAt(parser: nearley.Parser, column: number): Expected[] {
   return symbols.filter((s): s is Expected => typeof s === 'object' && s !== null);
 }
 
+const readingOf = ({ keyword, rules }: Layout): Reading => ({
+  sizes: keyword === 'lattice' || keyword === 'audit',
+  plain: keyword === 'lattice',
+  rules,
+  most: mostTokens + 1,
+});
+
 /**
  * Parses one statement. Nested or repeated sums and products cost nearley nothing special, but depth of brackets does
  * cost the walks that follow, so it is bounded first. Spends from the budget; throws BudgetSpent only.
@@ -68,12 +80,7 @@ export function parseStatement(layout: Layout, budget: Budget): Parsed {
     const word = /^[A-Za-z_]+/u.exec(keyword)?.[0] ?? keyword.slice(0, 20);
     return { fault: { ...say.keyword(word, statementKeywords), start: 0, end: word.length } };
   }
-  budget.spend(text.length);
-  const tokens = tokensOf(text, {
-    sizes: keyword === 'lattice' || keyword === 'audit',
-    plain: keyword === 'lattice',
-    rules: layout.rules,
-  });
+  const tokens = tokensOf(text, readingOf(layout));
   const over = tokens[mostTokens];
   if (over) return { fault: { ...say.tooManyTokens(mostTokens), start: over.offset, end: over.offset + over.length } };
   const broken = scan(tokens);
@@ -98,13 +105,7 @@ export function parseStatement(layout: Layout, budget: Budget): Parsed {
 /** Number of parses of a statement; anything but one is a fault of the grammar. For tests. */
 export function countParses(layout: Layout): number {
   const parser = new nearley.Parser(grammar, { lexer: lexer as unknown as nearley.Lexer });
-  lexer.give(
-    tokensOf(layout.text, {
-      sizes: layout.keyword === 'lattice' || layout.keyword === 'audit',
-      plain: layout.keyword === 'lattice',
-      rules: layout.rules,
-    }),
-  );
+  lexer.give(tokensOf(layout.text, readingOf(layout)));
   parser.feed('.');
   return parser.results.length;
 }

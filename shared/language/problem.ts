@@ -163,7 +163,10 @@ export const say = {
   tooManyStatements: () => plain('limit', `A source holds at most ${limits.statements} statements.`, 'Divide it.'),
   tooManyTokens: (most: number) =>
     plain('limit', `A statement holds at most ${most} words and signs.`, 'Divide it into several operators.'),
-  tooDeep: () => plain('limit', `Brackets nest at most ${limits.nesting} deep.`, 'Name a part with "operator".'),
+  tooLarge: () =>
+    plain('limit', 'This statement is too large to be walked through.', 'Name parts of it with "operator".'),
+  tooDeep: () =>
+    plain('limit', `Brackets, sums and products nest at most ${limits.nesting} deep.`, 'Name a part with "operator".'),
   spent: (limit: string) => plain('limit', `The work for this statement goes past a limit: ${limit}.`),
 
   // ---------------------------------------------------------------- names

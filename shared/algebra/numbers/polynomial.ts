@@ -180,7 +180,7 @@ function pseudoRemainder(a: Polynomial, b: Polynomial, name: string, budget: Bud
 export function gcd(
   a: Polynomial,
   b: Polynomial,
-  budget: Budget = newBudget(400_000, 'steps of a greatest common divisor'),
+  budget: Budget = newBudget(20_000, 'steps of a greatest common divisor'),
 ): Polynomial {
   if (a.length === 0) return monic(b);
   if (b.length === 0) return monic(a);

@@ -150,7 +150,7 @@ const table: readonly (readonly [string, number, number, string])[] = [
   ['audit expect W(1) in ground of M', 1, 14, 'audit-name'],
   ['audit effective M from K order 2', 1, 24, 'wrong-kind'],
   ['audit effective M order 2', 1, 26, 'clause'],
-  ['audit count G', 1, 13, 'wrong-kind'],
+  ['audit count M', 1, 13, 'wrong-kind'],
   ['audit symmetries M', 1, 18, 'syntax'],
   ['reference R = uniform over [G]', 1, 29, 'wrong-kind'],
   ['model A = twist(M, P, 3)', 1, 23, 'direction'],
