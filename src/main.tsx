@@ -1,3 +1,4 @@
+import './api/zod.ts';
 import './components/tokens.css';
 import { StrictMode } from 'react';
 import { createRoot } from 'react-dom/client';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import './zod.ts';
 import { requestProblemSchema, type RequestProblem } from '../../shared/contracts/common.ts';
 import {
   address,
@@ -10,9 +10,6 @@ import {
   type QueryGiven,
   writeHeader,
 } from '../../shared/contracts/endpoints.ts';
-
-// zod would otherwise compile its parsers with `new Function`, which the content security policy reports.
-z.config({ jitless: true });
 
 /** A request that was answered with a problem document. `code` is for programs, `message` for people. */
 export class RequestFailed extends Error {

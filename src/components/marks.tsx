@@ -65,15 +65,14 @@ export const gradeWords: Readonly<Record<GradeName, string>> = {
   open: 'open',
 };
 
-/** The mark of a grade, named for a screen reader by `label` (its word when not given). */
+/** The mark of a grade, named for a screen reader by `label` (its word when not given); empty where the word stands beside it. */
 export function GradeMark({ grade, label, size = '0.68em' }: { grade: GradeName; label?: string; size?: string }) {
   return (
     <svg
       viewBox="-1.1 -1.1 2.2 2.2"
       width={size}
       height={size}
-      role="img"
-      aria-label={label ?? grade}
+      {...(label === '' ? { 'aria-hidden': true } : { role: 'img', 'aria-label': label ?? grade })}
       className={`grade-mark inline-block shrink-0 ink-${grade}`}
     >
       {gradeShapes[grade]}

@@ -1,7 +1,6 @@
-import { type ReactNode, useCallback, useEffect, useMemo, useRef, useState } from 'react';
+import { lazy, type ReactNode, Suspense, useCallback, useEffect, useMemo, useRef, useState } from 'react';
 import type { EntryRows, Spot } from '../features/spread/row.ts';
 import { heldAt } from '../features/spread/rows.ts';
-import { Source } from '../features/writing/source.tsx';
 import type { EntryText } from '../features/spread/entry.tsx';
 import { letGo, take } from '../hand/hand.ts';
 import { newHandStore } from '../hand/useHand.ts';
@@ -27,12 +26,17 @@ interface Given {
   readonly foot: (entry: EntryText) => ReactNode;
 }
 
+const loadSource = () => import('../features/writing/source.tsx').then(({ Source }) => ({ default: Source }));
+/** The editor is a good part of the program's size; it comes after the page is there, before anyone has clicked. */
+const Source = lazy(loadSource);
+
 const noNotes: Reading['slices'][number]['problems'] = [];
 
 export function useDesk(given: Given): Desk {
   const { entries, reading, rows, onType, onLeave, foot } = given;
   const [hand] = useState(newHandStore);
   const [at, setAt] = useState<Spot | null>(null);
+  useEffect(() => void loadSource(), []);
   const latest = useRef(rows);
   useEffect(() => {
     latest.current = rows;
@@ -60,30 +64,32 @@ export function useDesk(given: Given): Desk {
       const notes = reading.slices.find((slice) => slice.id === entry.id)?.problems ?? noNotes;
       return (
         <>
-          <Source
-            key={entry.id}
-            label={`Source of entry ${String(numbers.get(entry.id) ?? '')}`}
-            kind={entry.kind}
-            text={entry.text}
-            spot={at}
-            problems={notes}
-            onChange={(text) => onType(entry.id, text)}
-            onCaret={(line, column) => {
-              const held = heldAt(latest.current, entry.id, line, column);
-              if (held) hand.set((now) => take(now, held, 'caret'));
-            }}
-            onLeave={(by) => {
-              const held = hand.get().held;
-              leave(entry.id);
-              if (by === 'escape') focusSoon(entry.id, held?.left ?? held?.right ?? null);
-            }}
-            onBeyond={(way) => {
-              const next = entries[entries.indexOf(entry) + (way === 'up' ? -1 : 1)];
-              if (!next) return;
-              leave(entry.id);
-              focusSoon(next.id, null, way);
-            }}
-          />
+          <Suspense fallback={null}>
+            <Source
+              key={entry.id}
+              label={`Source of entry ${String(numbers.get(entry.id) ?? '')}`}
+              kind={entry.kind}
+              text={entry.text}
+              spot={at}
+              problems={notes}
+              onChange={(text) => onType(entry.id, text)}
+              onCaret={(line, column) => {
+                const held = heldAt(latest.current, entry.id, line, column);
+                if (held) hand.set((now) => take(now, held, 'caret'));
+              }}
+              onLeave={(by) => {
+                const held = hand.get().held;
+                leave(entry.id);
+                if (by === 'escape') focusSoon(entry.id, held?.left ?? held?.right ?? null);
+              }}
+              onBeyond={(way) => {
+                const next = entries[entries.indexOf(entry) + (way === 'up' ? -1 : 1)];
+                if (!next) return;
+                leave(entry.id);
+                focusSoon(next.id, null, way);
+              }}
+            />
+          </Suspense>
           {foot(entry)}
         </>
       );

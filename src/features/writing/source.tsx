@@ -49,7 +49,9 @@ export function Source(props: SourceProps) {
     };
   }, []);
 
-  const { text, spot, problems } = props;
+  const { label, text, spot, problems } = props;
+  useEffect(() => view.current?.dispatch({}), [label]);
+
   useEffect(() => {
     const shown = view.current;
     if (!shown || shown.state.doc.toString() === text) return;
@@ -116,11 +118,12 @@ function extensions(props: SourceProps, now: () => SourceProps): Extension {
     ]),
     indentUnit.of('  '),
     EditorView.lineWrapping,
-    EditorView.contentAttributes.of({
-      'aria-label': props.label,
+    // Asked anew at each update: an entry that moves has another number.
+    EditorView.contentAttributes.of(() => ({
+      'aria-label': now().label,
       spellcheck: props.kind === 'prose' ? 'true' : 'false',
       autocapitalize: 'off',
-    }),
+    })),
     EditorView.cspNonce.of(nonce()),
     props.kind === 'statements' ? [operatorLanguage, bracketMatching()] : [],
     problemNotes,
