@@ -218,6 +218,8 @@ async function startAll() {
     PORT: String(own),
     SESSION_SECRET: process.env.SESSION_SECRET ?? sessionSecret(state),
     FAKES: standIns(host),
+    // A person at a terminal wants the address in view; a log that is kept wants every request.
+    LOG_LEVEL: process.env.LOG_LEVEL ?? (process.stdout.isTTY ? 'warn' : 'info'),
     ...(dev ? { NODE_ENV: 'development', PUBLIC_URL: process.env.PUBLIC_URL || where } : {}),
   };
   if (existsSync(join(root, 'server', 'commands', 'demo.ts'))) {
