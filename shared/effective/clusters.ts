@@ -20,13 +20,23 @@ const moved = (cell: readonly number[], by: readonly number[]): number[] => cell
 const apart = (cell: readonly number[], from: readonly number[]): number[] => cell.map((c, d) => c - (from[d] ?? 0));
 
 /** The strings that are connected to string k at the origin: they anticommute with it or flip a common term of H0. */
-function neighbourhoods(strings: readonly LocalString[], flips: readonly (readonly Flip[])[], period: Steps, budget: Budget): Placed[][] {
+function neighbourhoods(
+  strings: readonly LocalString[],
+  flips: readonly (readonly Flip[])[],
+  period: Steps,
+  budget: Budget,
+): Placed[][] {
   return strings.map((a, k) => {
     const found = new Map<string, Placed>();
-    const take = (string: number, cell: readonly number[]): void => void found.set(`${String(string)}@${cell.join(',')}`, { string, cell });
+    const take = (string: number, cell: readonly number[]): void =>
+      void found.set(`${String(string)}@${cell.join(',')}`, { string, cell });
     strings.forEach((b, j) => {
       for (const shift of oddShifts(a, b, budget))
-        if (shift.every((c, d) => modulo(c, period[d] ?? 1) === 0)) take(j, shift.map((c, d) => c / (period[d] ?? 1)));
+        if (shift.every((c, d) => modulo(c, period[d] ?? 1) === 0))
+          take(
+            j,
+            shift.map((c, d) => c / (period[d] ?? 1)),
+          );
       for (const f of flips[k] ?? [])
         for (const g of flips[j] ?? []) {
           budget.spend();
@@ -58,7 +68,12 @@ function normalised(members: readonly Placed[]): { key: string; members: Placed[
  * All connected multisets of 1 … order translates of the strings that flip no term of H0, each once up to translation by the enlarged cell. Connected: by strings that anticommute or flip a common term. Built up
  * one by one; a multiset that flips more terms than the missing strings can mend is left out. Throws BudgetSpent.
  */
-export function closedClusters(strings: readonly LocalString[], space: GroundSpace, order: number, budget: Budget): Cluster[] {
+export function closedClusters(
+  strings: readonly LocalString[],
+  space: GroundSpace,
+  order: number,
+  budget: Budget,
+): Cluster[] {
   const flips = strings.map((s) => space.flips(s));
   const around = neighbourhoods(strings, flips, space.period, budget);
   const mends = Math.max(0, ...flips.map((f) => f.length));

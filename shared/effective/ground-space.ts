@@ -5,7 +5,14 @@ import { modulo } from '../algebra/pauli/collect.ts';
 import { commuteOrbits, type Orbit } from '../algebra/pauli/commutation.ts';
 import { canonicalFamily, refineFamily } from '../algebra/pauli/family.ts';
 import { oddShifts } from '../algebra/pauli/overlaps.ts';
-import { bodyKey, classKey, identityString, multiplyStrings, translateString, weight } from '../algebra/pauli/string.ts';
+import {
+  bodyKey,
+  classKey,
+  identityString,
+  multiplyStrings,
+  translateString,
+  weight,
+} from '../algebra/pauli/string.ts';
 import { newFrame, type SpinClass } from '../algebra/pauli/vector.ts';
 import type { Family, LocalString, Phase, Steps } from '../algebra/pauli/types.ts';
 import { Coefficient as Exact } from '../algebra/numbers/coefficient.ts';
@@ -58,7 +65,9 @@ export function groundSpace(
   const terms = families.flatMap((family) => {
     const sign = signOf(family.coefficient);
     if (!sign)
-      throw new Refused(`the sign of ${family.coefficient.toText()} is not known: give its couplings a value other than 0`);
+      throw new Refused(
+        `the sign of ${family.coefficient.toText()} is not known: give its couplings a value other than 0`,
+      );
     const lowest = sign > 0 ? negated(family.string) : family.string;
     const energy = family.coefficient.mul(Exact.rational(2 * sign));
     return refineFamily({ ...family, string: lowest }, period).map(({ string }): GroundTerm => ({ string, energy }));
@@ -70,7 +79,14 @@ export function groundSpace(
     coefficients.reduce<LocalString>((product, p, k) => {
       const { string } = terms[k] ?? { string: identityString };
       return monomials(p, dimension).reduce(
-        (all, e) => multiplyStrings(all, translateString(string, e.map((c, d) => c * (period[d] ?? 1)))),
+        (all, e) =>
+          multiplyStrings(
+            all,
+            translateString(
+              string,
+              e.map((c, d) => c * (period[d] ?? 1)),
+            ),
+          ),
         product,
       );
     }, identityString);
@@ -118,7 +134,8 @@ function touching(string: LocalString, terms: readonly GroundTerm[], period: Ste
       for (const g of term.factors) {
         if (classKey(f) !== classKey(g)) continue;
         const by = f.cell.offset.map((c, d) => c - (g.cell.offset[d] ?? 0));
-        if (by.every((c, d) => modulo(c, period[d] ?? 1) === 0)) found.set(`${String(k)}@${by.join(',')}`, translateString(term, by));
+        if (by.every((c, d) => modulo(c, period[d] ?? 1) === 0))
+          found.set(`${String(k)}@${by.join(',')}`, translateString(term, by));
       }
   });
   return [...found.values()];
@@ -152,10 +169,11 @@ function lightest(
   const free = light.length > 1 ? light.filter((s) => commutesWithAll(s, period, kept, budget)) : light;
   const text = (s: LocalString): string =>
     bodyKey(canonicalFamily({ coefficient: Exact.one, string: s, steps: period, needs: [] }, false).string);
-  const [best] = (free.length > 0 ? free : light).map((s) => ({ s, key: text(s) })).sort((a, b) => (a.key < b.key ? -1 : 1));
+  const [best] = (free.length > 0 ? free : light)
+    .map((s) => ({ s, key: text(s) }))
+    .sort((a, b) => (a.key < b.key ? -1 : 1));
   return best?.s ?? start;
 }
 
 const commutesWithAll = (string: LocalString, period: Steps, orbits: readonly Orbit[], budget: Budget): boolean =>
   orbits.every((orbit) => commuteOrbits({ string, steps: period }, orbit, budget).commutes === true);
-

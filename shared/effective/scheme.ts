@@ -211,7 +211,13 @@ export function clusterCoefficient<T>(ring: Ring<T>, shape: ClusterShape, energi
 }
 
 /** (1 + X)^(half/2) as a binomial series; X starts at second order. */
-function power<T>(ring: Ring<T>, x: readonly T[], product: (a: readonly T[], b: readonly T[]) => T[], order: number, half: bigint): T[] {
+function power<T>(
+  ring: Ring<T>,
+  x: readonly T[],
+  product: (a: readonly T[], b: readonly T[]) => T[],
+  order: number,
+  half: bigint,
+): T[] {
   const sum = x.map(() => ring.zero);
   sum[0] = ring.one;
   let term: T[] = [...sum];

@@ -30,7 +30,8 @@ function localFamilies(operator: Operator, name: string): { families: Family[]; 
   if (operator.extended.length > 0) throw new Refused(`${name} holds a product over the whole lattice`);
   const constants = operator.families.filter((f) => f.string.factors.length === 0);
   const families = operator.families.filter((f) => f.string.factors.length > 0);
-  if (families.some((f) => f.steps.some((m) => m === 0))) throw new Refused(`${name} holds a term that stands in one place`);
+  if (families.some((f) => f.steps.some((m) => m === 0)))
+    throw new Refused(`${name} holds a term that stands in one place`);
   return { families, constants };
 }
 
@@ -85,7 +86,12 @@ function groundEnergy({ terms, period }: GroundSpace, dimension: number): Family
 
 /** A constant of each enlarged cell, as one of each unit cell. */
 const perCell = (c: Coefficient, period: Steps, dimension: number): Family => ({
-  coefficient: c.mul(Coefficient.rational(1, period.reduce((product, m) => product * m, 1))),
+  coefficient: c.mul(
+    Coefficient.rational(
+      1,
+      period.reduce((product, m) => product * m, 1),
+    ),
+  ),
   string: identityString,
   steps: Array<number>(dimension).fill(1),
   needs: [],
@@ -100,7 +106,11 @@ function units(space: GroundSpace): { unit: Coefficient; multiples: Rational[] }
 }
 
 /** What a cluster adds: its string, reduced, with its coefficient; undefined where it adds nothing. */
-function clusterValues(space: GroundSpace, perturbing: readonly Family[], budget: Budget): (cluster: Cluster) => Family | undefined {
+function clusterValues(
+  space: GroundSpace,
+  perturbing: readonly Family[],
+  budget: Budget,
+): (cluster: Cluster) => Family | undefined {
   const { period } = space;
   const shared = units(space);
   const known = new Map<string, Coefficient>();
@@ -114,12 +124,23 @@ function clusterValues(space: GroundSpace, perturbing: readonly Family[], budget
       return found;
     };
     if (!shared)
-      return run(functions, terms.map((t) => space.terms[t]?.energy ?? Coefficient.one), (value) => value);
+      return run(
+        functions,
+        terms.map((t) => space.terms[t]?.energy ?? Coefficient.one),
+        (value) => value,
+      );
     const scale = shared.unit.pow(1 - order) ?? Coefficient.one;
-    return run(rationals, terms.map((t) => shared.multiples[t] ?? Q.one), (r) => scale.mul(Coefficient.rational(r.num, r.den)));
+    return run(
+      rationals,
+      terms.map((t) => shared.multiples[t] ?? Q.one),
+      (r) => scale.mul(Coefficient.rational(r.num, r.den)),
+    );
   };
   const place = (string: LocalString, cell: readonly number[]): LocalString =>
-    translateString(string, cell.map((c, d) => c * (period[d] ?? 1)));
+    translateString(
+      string,
+      cell.map((c, d) => c * (period[d] ?? 1)),
+    );
   return ({ members }) => {
     const strings: LocalString[] = [];
     const multiplicities: number[] = [];
@@ -140,7 +161,10 @@ function clusterValues(space: GroundSpace, perturbing: readonly Family[], budget
     const { shape, terms } = shapeOf(space, strings, multiplicities);
     const amount = coefficientOf(shape, terms, members.length);
     if (amount.isZero()) return undefined;
-    const product = strings.reduce<LocalString>((all, s, k) => ((multiplicities[k] ?? 0) % 2 === 1 ? multiplyStrings(all, s) : all), identityString);
+    const product = strings.reduce<LocalString>(
+      (all, s, k) => ((multiplicities[k] ?? 0) % 2 === 1 ? multiplyStrings(all, s) : all),
+      identityString,
+    );
     const string = space.reduced(product);
     const coefficient = amount.mul(couplings).mul(phaseCoefficient(string.phase));
     if (string.factors.length === 0) return perCell(coefficient, period, period.length);
@@ -149,8 +173,14 @@ function clusterValues(space: GroundSpace, perturbing: readonly Family[], budget
 }
 
 /** Which strings anticommute and which terms of H0 they flip, in local numbers; and the numbers of those terms. */
-function shapeOf(space: GroundSpace, strings: readonly LocalString[], multiplicities: readonly number[]): { shape: ClusterShape; terms: number[] } {
-  const anticommute = strings.map((a) => strings.reduce((mask, b, i) => (stringsCommute(a, b) ? mask : mask | (1 << i)), 0));
+function shapeOf(
+  space: GroundSpace,
+  strings: readonly LocalString[],
+  multiplicities: readonly number[],
+): { shape: ClusterShape; terms: number[] } {
+  const anticommute = strings.map((a) =>
+    strings.reduce((mask, b, i) => (stringsCommute(a, b) ? mask : mask | (1 << i)), 0),
+  );
   const numbers = new Map<string, number>();
   const terms: number[] = [];
   const flips = strings.map((string) =>
