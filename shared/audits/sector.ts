@@ -1,16 +1,29 @@
 import type { FiniteModel, FiniteString, SiteTable } from '../algebra/finite/types.ts';
 import {
+  anticommutesOnSite,
   isWrapProblem,
   siteTable,
   wrapExtended,
   wrapOperator,
   wrapOrbit,
+  type Seam,
   type SpeciesCells,
 } from '../algebra/finite/wrap.ts';
 import type { Operator } from '../algebra/pauli/types.ts';
-import type { LawValue, MapValue, RuleValue, SectorLabel, Subject, SymmetryValue, Values } from '../language/values.ts';
+import type {
+  LawValue,
+  MapValue,
+  ModelValue,
+  OperatorValue,
+  RuleValue,
+  SectorLabel,
+  Subject,
+  SymmetryValue,
+  Values,
+} from '../language/values.ts';
 import { newCluster, sizeText, type Cluster } from '../lattice/cluster.ts';
-import { isLatticeProblem, type Size } from '../lattice/cells.ts';
+import { isLatticeProblem, type LatticeFamily, type Size } from '../lattice/cells.ts';
+import { stringPhrase } from '../maps/phrases.ts';
 import type { DiagonalRule } from '../spectra/bases/enumerated.ts';
 import type { ImageBlocks } from '../spectra/bases/image-blocks.ts';
 import { diagonalRules } from './finite-rules.ts';
@@ -122,6 +135,30 @@ function resolve(values: Values, cluster: Cluster, table: SiteTable, sector: rea
   return labels;
 }
 
+/** Seams of a model; throws Unanswerable where they do not say what the model is. */
+function seamsOf(values: Values, value: ModelValue | OperatorValue): readonly Seam[] {
+  if (value.what === 'operator') return [];
+  const source = value.image && values.find(value.image.of);
+  if (source?.what === 'model' && source.seams.length > 0)
+    throw new Unanswerable(
+      `${value.name} is the image of ${source.name}, which has a seam: map the model without it and take the sector of the seam, or twist the image`,
+      true,
+    );
+  for (const { symmetry } of value.seams)
+    for (const { string } of value.operator.families)
+      if (anticommutesOnSite(string, symmetry))
+        throw new Unanswerable(
+          `${value.name} is twisted by a product that does not commute with its term ${stringPhrase(string, familyOf(values))}, so the seam could be felt anywhere`,
+          true,
+        );
+  return value.seams;
+}
+
+function familyOf({ lattice }: Values): LatticeFamily {
+  if (!lattice) throw new Unanswerable('no lattice is declared');
+  return lattice.family;
+}
+
 /**
  * The model of a subject on a cluster of the given size, with its sector. A model lives on all spins of the species that
  * occur in it or in the sector. Throws Unanswerable.
@@ -135,7 +172,7 @@ export function finiteSubject(values: Values, subject: Subject, size: Size): Fin
   speciesOfOperator(value.operator, names);
   for (const label of subject.sector) speciesOfLabel(values, label, names);
   const table = siteTable(cluster, speciesCells(values, names));
-  const model = wrapOperator(table, cluster, value.operator);
+  const model = wrapOperator(table, cluster, value.operator, undefined, seamsOf(values, value));
   if (isWrapProblem(model))
     throw new Unanswerable(`${subject.name} does not fit on ${sizeText(size)}: ${model.message}`);
   const { constraints, rules, images } = resolve(values, cluster, table, subject.sector);

@@ -1,5 +1,6 @@
 import type { Cell, CellKind, Offset } from '../../lattice/cells.ts';
 import type { Cluster } from '../../lattice/cluster.ts';
+import { determinant } from '../../lattice/vectors.ts';
 import { limits, newBudget, type Budget } from '../../limits.ts';
 import { Coefficient } from '../numbers/coefficient.ts';
 import { phaseCoefficient } from '../pauli/collect.ts';
@@ -148,13 +149,62 @@ function eachTranslate(
   cluster: Cluster,
   part: { readonly string: LocalString; readonly steps: Steps; readonly needs: readonly Cell[] },
   budget: Budget,
-  visit: (landed: Landed) => void,
+  visit: (landed: Landed, by: Offset) => void,
 ): void {
   for (const by of orbit(cluster, part.string, part.needs, part.steps)) {
     budget.spend(1 + part.string.factors.length);
     const landed = land(table, cluster, part.string, part.needs, by);
-    if (landed) visit(landed);
+    if (landed) visit(landed, by);
   }
+}
+
+/** A seam around a periodic direction (from 1): terms that reach across it are conjugated by an on-site symmetry on the far side. */
+export interface Seam {
+  readonly symmetry: Extended;
+  readonly direction: number;
+}
+
+/** How often an offset has gone around period `d`: the whole part of its coordinate along the periods, exact (Cramer's rule). */
+function windings({ periods }: Cluster['size'], offset: Offset, d: number): number {
+  const whole = determinant(periods);
+  const part = determinant(periods.map((row, k) => (k === d ? offset : row)));
+  return Math.floor((whole < 0 ? -part : part) / Math.abs(whole));
+}
+
+/** True if a string anticommutes with a product of one Pauli matrix on each spin, counting only the factors chosen. */
+export function anticommutesOnSite(
+  string: LocalString,
+  { parts }: Extended,
+  counts: (factor: Factor) => boolean = () => true,
+): boolean {
+  let odd = false;
+  for (const f of string.factors)
+    for (const part of parts)
+      for (const p of part.string.factors)
+        if (
+          p.species === f.species &&
+          p.cell.kind === f.cell.kind &&
+          p.cell.index === f.cell.index &&
+          p.pauli !== f.pauli &&
+          counts(f)
+        )
+          odd = !odd;
+  return odd;
+}
+
+/** True if the seams give a translate the sign −1. */
+function crosses(table: SiteTable, cluster: Cluster, string: LocalString, by: Offset, seams: readonly Seam[]): boolean {
+  return (
+    seams.filter(({ symmetry, direction }) =>
+      anticommutesOnSite(string, symmetry, (f) => {
+        const cell = moved(f.cell, by);
+        const stands = table.number({ species: f.species, cell }) !== undefined;
+        return stands && windings(cluster.size, cell.offset, direction - 1) % 2 !== 0;
+      }),
+    ).length %
+      2 ===
+    1
+  );
 }
 
 /**
@@ -222,13 +272,15 @@ class Gathering {
 /**
  * A model on a cluster: every family summed over its translates, equal strings collected (each with phase 0 as a product of Pauli matrices), the identity
  * put into `constant`. Open edges: factors from cut geometry are left out, terms that name a missing cell are dropped. A period that
- * does not divide the size is the problem returned. Throws BudgetSpent.
+ * does not divide the size is the problem returned. Each family must commute with the symmetries of the seams, which sit between the last
+ * unit cell of their direction and the first. Throws BudgetSpent.
  */
 export function wrapOperator(
   table: SiteTable,
   cluster: Cluster,
   operator: Operator,
   budget: Budget = newBudget(limits.operations, 'operations of wrapping a model'),
+  seams: readonly Seam[] = [],
 ): FiniteModel | WrapProblem {
   const misfit = [...operator.families, ...operator.extended.flatMap((t) => t.extended.parts)].find(
     (p) => !cluster.admits(p.steps),
@@ -239,9 +291,10 @@ export function wrapOperator(
   const notes: string[] = [];
   for (const family of operator.families) {
     const wrapped: Wrapped = { constant: 0, coincident: 0, notHermitian: 0 };
-    eachTranslate(table, cluster, family, budget, ({ factors }) => {
+    eachTranslate(table, cluster, family, budget, ({ factors }, by) => {
       budget.spend(1 + (n >>> 5));
-      const string = fromPauli(n, factors, family.string.phase);
+      const turn = crosses(table, cluster, family.string, by, seams) ? 2 : 0;
+      const string = fromPauli(n, factors, family.string.phase + turn);
       if (family.coefficient.isReal() && pauliPhase(string) % 2 === 1) wrapped.notHermitian++;
       const became = gathering.add(string, family.coefficient);
       if (became !== 'new') wrapped[became]++;
