@@ -1,11 +1,12 @@
+import { Coefficient } from '../algebra/numbers/coefficient.ts';
 import { canonicalExtended } from '../algebra/pauli/extended.ts';
 import { collect } from '../algebra/pauli/family.ts';
 import { oddShifts } from '../algebra/pauli/overlaps.ts';
-import { newString, multiplyStrings, translateString } from '../algebra/pauli/string.ts';
+import { multiplyStrings, newString, toPhase, translateString } from '../algebra/pauli/string.ts';
 import type { Extended, Factor, LocalString, Operator, ProductPart } from '../algebra/pauli/types.ts';
 import { shifted } from '../lattice/cells.ts';
 import type { Budget } from '../limits.ts';
-import type { MapDeclaration, OperatorMap, Outcome } from '../language/values.ts';
+import type { LawFamily, LawValue, MapDeclaration, OperatorMap, Outcome } from '../language/values.ts';
 import { circuitMap, inverseCircuit } from './circuit.ts';
 import type { Context } from './context.ts';
 import { dictionaryMap } from './dictionary/dictionary.ts';
@@ -20,21 +21,63 @@ type Then = Extract<MapDeclaration, { kind: 'then' }>;
 type Inverse = Extract<MapDeclaration, { kind: 'inverse' }>;
 type Gauge = Extract<MapDeclaration, { kind: 'gauge' }>;
 
-/** `A then B`: A acts first. Laws and cautions of both hold. */
-export function composedMap({ first, second }: Then): OperatorMap {
+/**
+ * What a law becomes under a map: each of its strings goes to its image, with the sign kept. Strings that have no single Pauli string as their
+ * image, or none but ±1, are no law any more and are left out.
+ */
+function carried(law: LawValue, map: OperatorMap, budget: Budget): LawValue {
+  const families = law.families.flatMap((f): LawFamily[] => {
+    const still = f.steps.map(() => 0);
+    const image = map.image(
+      { families: [{ coefficient: Coefficient.one, string: f.string, steps: still, needs: f.needs }], extended: [] },
+      budget,
+    );
+    if (!image.ok) return [];
+    const [only, ...more] = image.value.families;
+    const sign = only?.coefficient.isOne() ? 0 : only?.coefficient.neg().isOne() ? 2 : undefined;
+    if (!only || more.length > 0 || sign === undefined || only.string.factors.length === 0) return [];
+    return [{ ...f, string: { phase: toPhase(only.string.phase + sign), factors: only.string.factors } }];
+  });
+  return { ...law, families };
+}
+
+/** Laws of both maps; where both declare one by the same name with the same value, it holds the strings of both. */
+function joinedLaws(
+  first: ReadonlyMap<string, LawValue>,
+  second: ReadonlyMap<string, LawValue>,
+): ReadonlyMap<string, LawValue> {
+  const all = new Map(first);
+  for (const [name, law] of second) {
+    const own = all.get(name);
+    all.set(
+      name,
+      own && own.value === law.value && own.parameter.kind === law.parameter.kind
+        ? { ...law, families: [...own.families, ...law.families] }
+        : law,
+    );
+  }
+  return new Map([...all].filter(([, law]) => law.families.length > 0));
+}
+
+/** `A then B`: A acts first. Laws of B hold, and those of A as B carries them; so do the cautions of both. */
+export function composedMap({ first, second }: Then, context: Context, budget: Budget): OperatorMap {
   const after = <T>(outcome: Outcome<T>, next: (value: T) => Outcome<T>): Outcome<T> =>
     outcome.ok ? next(outcome.value) : outcome;
+  const kept = new Map([...first.map.laws].map(([name, law]) => [name, carried(law, second.map, budget)]));
+  const laws = new Map(
+    [...joinedLaws(kept, second.map.laws)].map(([name, law]) => [name, { ...law, name: `${context.name}.${name}` }]),
+  );
   return {
     kind: 'then',
     from: first.map.from,
     to: [...new Set([...first.map.to.filter((s) => !second.map.from.includes(s)), ...second.map.to])],
-    image: (operator, budget) => after(first.map.image(operator, budget), (o) => second.map.image(o, budget)),
-    imageExtended: (extended, budget) =>
-      after(first.map.imageExtended(extended, budget), (e) => second.map.imageExtended(e, budget)),
-    laws: new Map([...first.map.laws, ...second.map.laws]),
-    cautions(operator, budget) {
-      const image = first.map.image(operator, budget);
-      return [...first.map.cautions(operator, budget), ...(image.ok ? second.map.cautions(image.value, budget) : [])];
+    image: (operator, spend) => after(first.map.image(operator, spend), (o) => second.map.image(o, spend)),
+    imageExtended: (extended, spend) =>
+      after(first.map.imageExtended(extended, spend), (e) => second.map.imageExtended(e, spend)),
+    laws,
+    cautions(operator, spend) {
+      const image = first.map.image(operator, spend);
+      return [...first.map.cautions(operator, spend), ...(image.ok ? second.map.cautions(image.value, spend) : [])];
     },
   };
 }
@@ -75,11 +118,15 @@ function inverseOf(declaration: MapDeclaration, context: Context, budget: Budget
         inverseOf(declaration.first.declaration, context, budget),
       ];
       const wrap = (map: OperatorMap, of: Then['first']) => ({ ...of, map });
-      return composedMap({
-        kind: 'then',
-        first: wrap(first, declaration.second),
-        second: wrap(second, declaration.first),
-      });
+      return composedMap(
+        {
+          kind: 'then',
+          first: wrap(first, declaration.second),
+          second: wrap(second, declaration.first),
+        },
+        context,
+        budget,
+      );
     }
     case 'inverse':
       return declaration.of.map;

@@ -1,13 +1,22 @@
 import type { Coefficient } from '../algebra/numbers/coefficient.ts';
 import { phaseCoefficient } from '../algebra/pauli/collect.ts';
 import { bodyKey } from '../algebra/pauli/string.ts';
-import type { Family, Operator, Steps } from '../algebra/pauli/types.ts';
-import type { Offset } from '../lattice/cells.ts';
+import type { Family, Operator, Pauli, Steps } from '../algebra/pauli/types.ts';
+import type { Cell, Offset } from '../lattice/cells.ts';
 import { coefficientSpoken, coefficientTex } from './coefficients.ts';
 import { labelsOf, type Style, type TypesetContext } from './context.ts';
 import { extendedSpoken, extendedTex } from './extended.ts';
-import { placed, type Placed, type Shape } from './shapes.ts';
-import { anchorLetter, endLetters, hasEnds, placeTex, shapeSpoken, shapeTex, usesAnchor } from './shape-tex.ts';
+import { fullShells, placed, shellShape, type Placed, type Shape } from './shapes.ts';
+import {
+  anchorLetter,
+  endLetters,
+  hasEnds,
+  pairTex,
+  placeTex,
+  shapeSpoken,
+  shapeTex,
+  usesAnchor,
+} from './shape-tex.ts';
 
 /** Families of one shape and coefficient, to be written as one sum. */
 export interface Gathered {
@@ -58,9 +67,9 @@ function underSum(bucket: Bucket, context: TypesetContext): string {
   const letter = anchorLetter(shape);
   const residues = unique(bucket.members.map((m) => m.residue));
   const extra = conditions(letter, bucket.steps, residues);
-  const [a, b] = endLetters(context.species.keys());
   const link = usesAnchor(shape) || extra.length > 0 ? 'l=' : '';
-  const variable = hasEnds(shape) ? `${link}\\langle ${a},${b}\\rangle` : letter;
+  const pair = pairTex(endLetters(context.species.keys()), shape.shell);
+  const variable = hasEnds(shape) ? `${shape.shell === undefined ? link : ''}${pair}` : letter;
   const range = shape.anchor === 'cell' ? '' : rangeTex(bucket, context);
   return `${variable}${range}${extra.length === 0 ? '' : `:\\,${extra.join(',\\,')}`}`;
 }
@@ -120,7 +129,12 @@ function bucketSpoken(bucket: Bucket, context: TypesetContext): string {
   const body = shapeSpoken(shape);
   if (isPinned(bucket.steps)) return `${body} at unit cell ${(bucket.members[0]?.residue ?? []).join(' ')}`;
   const indices = [...new Set(bucket.members.map((m) => m.index))];
-  const kind = shape.anchor === 'cell' ? 'unit cells' : shape.anchor;
+  const kind =
+    shape.shell !== undefined
+      ? `pairs of neighbours of order ${String(shape.shell)}`
+      : shape.anchor === 'cell'
+        ? 'unit cells'
+        : shape.anchor;
   const which =
     shape.anchor === 'cell' || indices.length >= domain(shape, context).length
       ? ''
@@ -134,6 +148,36 @@ function bucketSpoken(bucket: Bucket, context: TypesetContext): string {
 /** Constants: for each unit cell with the number of cells N, or once. */
 const constantTex = (family: Family): string => (family.steps.some((m) => m > 0) ? 'N' : '');
 
+/** Two-body families that together fill a shell of vertex pairs with one coefficient, by their numbers. */
+function shellsOf(operator: Operator, context: TypesetContext): Map<number, Placed> {
+  const groups = new Map<string, { number: number; pair: readonly [Cell, Cell]; species: string; pauli: Pauli }[]>();
+  operator.families.forEach(({ string, steps, coefficient }, number) => {
+    const [f, g, ...more] = string.factors;
+    if (!f || !g || more.length > 0 || f.species !== g.species || f.pauli !== g.pauli) return;
+    if (f.cell.kind !== 'vertices' || steps.some((m) => m !== 1)) return;
+    const key = `${f.species}^${f.pauli} ${String(string.phase)} ${coefficient.key()}`;
+    const group = groups.get(key) ?? [];
+    groups.set(key, group);
+    group.push({ number, pair: [f.cell, g.cell], species: f.species, pauli: f.pauli });
+  });
+  const found = new Map<number, Placed>();
+  for (const group of groups.values())
+    fullShells(
+      group.map((m) => m.pair),
+      context.family,
+    ).forEach((shell, k) => {
+      const m = group[k];
+      if (shell !== undefined && m)
+        found.set(m.number, {
+          shape: shellShape(m.species, m.pauli, shell),
+          index: 0,
+          offset: m.pair[0].offset,
+          sign: 1,
+        });
+    });
+  return found;
+}
+
 /**
  * Gathers the families of an operator into sums, in the order of the operator: one sum for each shape, coefficient and steps, over all
  * classes of cells that take part. Extended strings and constants stand by themselves, constants last.
@@ -141,12 +185,13 @@ const constantTex = (family: Family): string => (family.steps.some((m) => m > 0)
 export function gather(operator: Operator, context: TypesetContext): Gathered[] {
   const buckets = new Map<string, Bucket>();
   const constants: { family: Family; number: number }[] = [];
+  const shells = shellsOf(operator, context);
   operator.families.forEach((family, number) => {
     if (family.string.factors.length === 0) {
       constants.push({ family, number });
       return;
     }
-    const place: Placed = placed(family.string, family.steps, context);
+    const place = shells.get(number) ?? placed(family.string, family.steps, context);
     let coefficient = family.coefficient.mul(phaseCoefficient(family.string.phase));
     if (place.sign < 0) coefficient = coefficient.neg();
     const pinned = isPinned(family.steps);

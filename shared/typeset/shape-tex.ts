@@ -30,8 +30,16 @@ export const anchorLetter = (shape: Shape): string => (shape.anchor === 'cell' ?
 
 /** True where the ends of the anchor link are named a and b. */
 export const hasEnds = (shape: Shape): boolean =>
-  shape.anchor === 'links' &&
-  shape.groups.some((g) => g.spot.at === 'incident' && g.spot.kind === 'vertices' && g.spot.count === 2);
+  shape.shell !== undefined ||
+  (shape.anchor === 'links' &&
+    shape.groups.some((g) => g.spot.at === 'incident' && g.spot.kind === 'vertices' && g.spot.count === 2));
+
+/** What runs over links or pairs of vertices: `\langle a,b\rangle`, doubled for second neighbours, tripled for third. */
+export function pairTex([a, b]: readonly [string, string], shell = 1): string {
+  if (shell > 3) return `\\langle ${a},${b}\\rangle_{${String(shell)}}`;
+  const repeat = (bracket: string) => Array<string>(shell).fill(bracket).join('\\!');
+  return `${repeat('\\langle')} ${a},${b}${repeat('\\rangle')}`;
+}
 
 /** True where the anchor's own letter occurs in the product. */
 export const usesAnchor = (shape: Shape): boolean =>
@@ -125,6 +133,8 @@ const spokenShift = (by: Offset): string => {
 export function shapeSpoken(shape: Shape): string {
   if (shape.named !== undefined)
     return `${nameSpoken(shape.named)} at the ${shape.anchor === 'cell' ? 'cell' : singular[shape.anchor]}`;
+  if (shape.shell !== undefined)
+    return shape.groups.map((g) => `${nameSpoken(g.species)} ${g.pauli} on both`).join(' times ');
   const word = shape.anchor === 'cell' ? 'cell' : singular[shape.anchor];
   return shape.groups
     .map((g) => {

@@ -1,7 +1,16 @@
 import { bodyKey, compareOffsets, siteKey, translateString } from '../algebra/pauli/string.ts';
 import type { Factor, LocalString, Pauli, Steps } from '../algebra/pauli/types.ts';
-import { cellKey, cellKinds, type Cell, type CellKind, type LatticeFamily, type Offset } from '../lattice/cells.ts';
+import {
+  cellKey,
+  cellKinds,
+  isLatticeProblem,
+  type Cell,
+  type CellKind,
+  type LatticeFamily,
+  type Offset,
+} from '../lattice/cells.ts';
 import { boundary, coboundary } from '../lattice/incidence.ts';
+import { nearestPairs } from '../lattice/pairs.ts';
 import { classLabel, rank, type TypesetContext } from './context.ts';
 
 export interface ShiftedCell {
@@ -35,6 +44,8 @@ export interface Shape {
   readonly groups: readonly SpotGroup[];
   /** Name of a declared operator that this is. */
   readonly named: string | undefined;
+  /** k where the sum runs over all k-th-nearest pairs of vertices. */
+  readonly shell?: number;
 }
 
 export interface Placed {
@@ -210,3 +221,40 @@ function named(string: LocalString, steps: Steps, context: TypesetContext): Plac
 export function placed(string: LocalString, steps: Steps, context: TypesetContext): Placed {
   return named(string, steps, context) ?? structured(string, context.family) ?? explicit(string, context.family);
 }
+
+/** Farthest shell of vertex pairs that is looked for. */
+const mostShells = 4;
+
+/** Key of a pair of vertices up to translation, either way round. */
+function pairKey(a: Cell, b: Cell): string {
+  const by = (from: Cell, to: Cell) =>
+    `${String(from.index)}>${String(to.index)}@${to.offset.map((c, d) => c - (from.offset[d] ?? 0)).join(',')}`;
+  return [by(a, b), by(b, a)].sort()[0] ?? '';
+}
+
+/**
+ * Shells of vertex pairs that a set of pairs fills: for each pair the k of its shell, where all k-th-nearest pairs of the lattice are there.
+ * On a chain shifts say the same, so none is named there.
+ */
+export function fullShells(pairs: readonly (readonly [Cell, Cell])[], family: LatticeFamily): (number | undefined)[] {
+  if (family.dimension === 1 || pairs.length === 0) return pairs.map(() => undefined);
+  const keys = pairs.map(([a, b]) => pairKey(a, b));
+  const present = new Set(keys);
+  const shellOf = new Map<string, number>();
+  for (let k = 2; k <= mostShells; k++) {
+    const shell = nearestPairs(family, k);
+    if (isLatticeProblem(shell)) break;
+    const own = shell.map(({ a, b }) => pairKey(a, b));
+    if (own.every((key) => present.has(key))) for (const key of own) shellOf.set(key, k);
+  }
+  return keys.map((key) => shellOf.get(key));
+}
+
+/** The shape of a sum over a whole shell. */
+export const shellShape = (species: string, pauli: Pauli, shell: number): Shape => ({
+  key: `pairs ${String(shell)}: ${species}^${pauli}`,
+  anchor: 'cell',
+  groups: [{ species, pauli, spot: { at: 'incident', kind: 'vertices', count: 2 } }],
+  named: undefined,
+  shell,
+});

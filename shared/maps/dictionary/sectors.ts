@@ -5,13 +5,14 @@ import type { FiniteString, SiteTable } from '../../algebra/finite/types.ts';
 import { wrapExtended, wrapOrbit } from '../../algebra/finite/wrap.ts';
 import type { Extended, LocalString, Pauli, ProductPart, Steps } from '../../algebra/pauli/types.ts';
 import { newString } from '../../algebra/pauli/string.ts';
-import { cellKinds, type Cell, type CellKind, type LatticeProblem } from '../../lattice/cells.ts';
+import { cellKinds, type Cell, type CellKind, type LatticeProblem, type Offset } from '../../lattice/cells.ts';
 import type { Cluster } from '../../lattice/cluster.ts';
 import { geometryTable } from '../../lattice/geometry.ts';
 import type { SteppedCell } from '../../lattice/windings.ts';
 import type { Budget } from '../../limits.ts';
 import { speciesOf, type Context } from '../context.ts';
 import { extendedPhrase, stringPhrase } from '../phrases.ts';
+import { points } from '../steps.ts';
 
 /** A string, or all translates of one, that has to take a value. */
 export interface Sector {
@@ -131,24 +132,54 @@ function familiar(
             });
           }
       }
-      const whole: Extended = {
-        phase: 0,
-        parts: value.classes.map((index): ProductPart => ({
-          string: { phase: 0, factors: [{ species: name, cell: { kind: value.kind, index, offset: zero }, pauli }] },
-          steps: all,
-          needs: [],
-        })),
-      };
-      out.push({
-        name: undefined,
-        text: extendedPhrase(whole, family),
-        strings: [wrapExtended(table, cluster, whole, budget)],
-        example: whole,
-      });
+      for (const steps of sublattices(family.dimension)) {
+        if (!cluster.admits(steps)) continue;
+        const start = (offset: Offset): Extended => ({
+          phase: 0,
+          parts: value.classes.map((index): ProductPart => ({
+            string: { phase: 0, factors: [{ species: name, cell: { kind: value.kind, index, offset }, pauli }] },
+            steps,
+            needs: [],
+          })),
+        });
+        const starts = startsOf(steps, cluster);
+        const strings = starts.map((offset) => wrapExtended(table, cluster, start(offset), budget));
+        const distinct = [...new Map(strings.map((s) => [bodyKey(s), s])).values()];
+        out.push({
+          name: undefined,
+          text: extendedPhrase(start(zero), family),
+          strings: distinct,
+          example: start(zero),
+        });
+      }
     }
   }
   return out;
 }
+
+/** The whole lattice, then lines and planes of it, then its sublattices of period 2, as steps. */
+function sublattices(dimension: number): number[][] {
+  const zero = Array<number>(dimension).fill(0);
+  const flags = (high: number) =>
+    points(
+      zero,
+      zero.map(() => high),
+    );
+  const lines = flags(1).filter((s) => s.some((m) => m === 1) && s.some((m) => m === 0));
+  const halves = flags(1).flatMap((s) => (s.some((m) => m === 1) ? [s.map((m) => m + 1)] : []));
+  return [
+    zero.map(() => 1),
+    ...lines.sort((a, b) => total(b) - total(a)),
+    ...halves.sort((a, b) => total(a) - total(b)),
+  ];
+}
+const total = (steps: readonly number[]): number => steps.reduce((sum, m) => sum + m, 0);
+
+/** Where the translates of a sublattice begin, one for each of them on the cluster. */
+const startsOf = (steps: Steps, cluster: Cluster): Offset[] =>
+  cluster
+    .orbit(steps.map((m) => (m === 1 ? 0 : 1)))
+    .filter((by) => by.every((c, d) => (steps[d] ?? 0) < 2 || (c >= 0 && c < (steps[d] ?? 1))));
 
 /**
  * Words for the strings that a map forces to +1: declared laws and symmetries first, then products that every lattice has, at last single

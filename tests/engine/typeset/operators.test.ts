@@ -10,6 +10,7 @@ import { nameTex } from '../../../shared/typeset/names.ts';
 import { operatorSpoken, operatorTex } from '../../../shared/typeset/operators.ts';
 import { rolesOf } from '../../../shared/typeset/roles.ts';
 import type { LatticeFamily } from '../../../shared/lattice/cells.ts';
+import { nearestPairs } from '../../../shared/lattice/pairs.ts';
 import { loopLinks } from '../../../shared/lattice/windings.ts';
 import * as S from '../maps/support.ts';
 
@@ -141,6 +142,28 @@ describe('sums as a theorist writes them', () => {
       extended: [],
     };
     expect(operatorTex(far, square.context)).toBe('\\sum_{v}s^{z}_{v} s^{z}_{v+\\hat{1}+\\hat{2}}');
+  });
+
+  it('writes all second neighbours as one sum, a part of them by shifts', () => {
+    for (const name of ['square', 'triangular', 'honeycomb', 'kagome', 'cubic']) {
+      const { family, context } = setting(name);
+      const pairs = nearestPairs(family, 2) as readonly {
+        a: ReturnType<typeof S.cellAt>;
+        b: ReturnType<typeof S.cellAt>;
+      }[];
+      const families = pairs.map(({ a, b }) => ({
+        coefficient: minus('J'),
+        string: S.on('s', 'z', [a, b]),
+        steps: S.every(family),
+        needs: [],
+      }));
+      const whole = collect([{ families, extended: [] }], { open: false });
+      expect(operatorTex(whole, context)).toBe(
+        '-J\\sum_{\\langle\\!\\langle a,b\\rangle\\!\\rangle}s^{z}_{a} s^{z}_{b}',
+      );
+      const part = collect([{ families: families.slice(1), extended: [] }], { open: false });
+      expect(operatorTex(part, context)).not.toContain('langle');
+    }
   });
 
   it('names cycles around the lattice', () => {
