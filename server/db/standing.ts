@@ -1,5 +1,4 @@
 import { and, eq, isNull, sql, type SQL } from 'drizzle-orm';
-import type { Action } from '../../shared/contracts/rights.ts';
 import { actionsOf, may, type Standing } from '../rights.ts';
 import type { Asking } from './connection.ts';
 import { notFound } from './refusal.ts';
@@ -78,12 +77,6 @@ export function stillStands(standing: NotebookStanding): SQL | undefined {
 export async function lockNotebook({ db }: Asking, standing: NotebookStanding): Promise<void> {
   const rows = await db.select({ id: notebooks.id }).from(notebooks).where(stillStands(standing)).for('update');
   if (rows.length === 0) throw notFound();
-}
-
-/** Whether a person still may do something on a notebook: for what lasts longer than one request. */
-export async function stillMay(asking: Asking, asker: Asker, notebook: string, action: Action): Promise<boolean> {
-  const standing = await standingOnNotebook(asking, asker, notebook);
-  return standing !== null && may(standing, action);
 }
 
 /** Who a person is to the installation; null if the account is gone. */

@@ -18,7 +18,6 @@ export type EditionContent = z.infer<typeof editionContentSchema>;
 
 /** computing: the server is at the claims; sealed: they stand for good; failed: `reason` says why, and it can be asked again. */
 export const editionStatuses = ['computing', 'sealed', 'failed'] as const;
-export type EditionStatus = (typeof editionStatuses)[number];
 
 export const editionSummarySchema = z.object({
   /** From 1, without gaps, in order of publishing. */

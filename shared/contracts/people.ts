@@ -18,7 +18,6 @@ export type Me = z.infer<typeof meSchema>;
 export const signInSchema = z.object({
   ways: z.array(z.object({ way: z.enum(['github']), href: z.string(), standIn: z.boolean() })),
 });
-export type SignIn = z.infer<typeof signInSchema>;
 
 export const sessionSchema = z.object({
   id: z.string(),

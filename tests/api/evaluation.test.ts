@@ -1,6 +1,7 @@
 import { readFileSync } from 'node:fs';
 import { afterEach, beforeAll, describe, expect, it } from 'vitest';
 import { EvaluationFailed, openPool, type Pool } from '../../server/evaluation/pool.ts';
+import { openQueue, whileLocked } from '../../server/evaluation/queue.ts';
 import { startWorker } from '../../server/worker.ts';
 import { joinEntries } from '../../shared/notebook/text.ts';
 import { newDerivation } from '../../shared/derivation/derive.ts';
@@ -116,5 +117,28 @@ describe('an edition and its worker', () => {
     } finally {
       await worker.stop();
     }
+  });
+
+  it('when a job is lost but someone is at the edition, then nobody else is sent; when they let go, then someone is', async () => {
+    const notebook = await publish('wrong-sign');
+    const { rows } = await here.database.pool.query<{ id: string }>('select id from editions where notebook = $1', [
+      notebook,
+    ]);
+    const id = rows[0]?.id ?? '';
+    await here.database.pool.query('delete from pgboss.job');
+    await here.database.pool.query('alter table editions disable trigger user');
+    await here.database.pool.query("update editions set published_at = now() - interval '1 minute'");
+    await here.database.pool.query('alter table editions enable trigger user');
+    const sent: string[] = [];
+    const look = async (): Promise<void> => {
+      const queue = await openQueue(here.database, { seconds: 5, supervise: false }, () => undefined);
+      await queue.work(1, (edition) => Promise.resolve(void sent.push(edition)));
+      await new Promise((resolve) => setTimeout(resolve, 1_500));
+      await queue.close();
+    };
+    await whileLocked(here.database, id, look);
+    expect(sent).toEqual([]);
+    await look();
+    expect(sent).toEqual([id]);
   });
 });

@@ -186,6 +186,9 @@ export async function findUnsealed({ db }: Asking, id: string): Promise<Unsealed
   return row ?? null;
 }
 
+/** A statement has at most 65535 values (PostgreSQL's protocol), and a claim has sixteen. */
+const rowsAtOnce = 2_000;
+
 /** For the job that seals: claims, report and status at once, in the caller's transaction; false if it was done before. */
 export async function sealEdition(
   { db }: Asking,
@@ -196,8 +199,9 @@ export async function sealEdition(
   const which = and(eq(editions.id, id), eq(editions.status, 'computing'));
   const [held] = await db.select({ id: editions.id }).from(editions).where(which).for('update');
   if (held === undefined) return false;
-  if (sealed.length > 0) {
-    await db.insert(claims).values(sealed.map((claim, ordinal) => ({ ...claim, edition: id, ordinal })));
+  const rows = sealed.map((claim, ordinal) => ({ ...claim, edition: id, ordinal }));
+  for (let from = 0; from < rows.length; from += rowsAtOnce) {
+    await db.insert(claims).values(rows.slice(from, from + rowsAtOnce));
   }
   await db
     .update(editions)
