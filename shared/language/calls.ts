@@ -1,4 +1,4 @@
-import type { CallNode, Expression, Path } from '../../grammar/syntax.ts';
+import type { CallNode, Expression, Path, Span } from '../../grammar/syntax.ts';
 import { Coefficient } from '../algebra/numbers/coefficient.ts';
 import { isPinned, translateOperator } from '../algebra/pauli/family.ts';
 import { translateString } from '../algebra/pauli/string.ts';
@@ -16,9 +16,10 @@ import {
   textOf,
   type Amount,
   type MovingCell,
+  type NumberAmount,
   type Scene,
 } from './scene.ts';
-import type { LawValue, MapValue, OperatorValue, Value } from './values.ts';
+import type { CouplingValue, LawValue, MapValue, OperatorValue, Value } from './values.ts';
 
 /** Something pinned that stands at each cell of a parameter's domain: one for each class and residue. */
 export interface Standing<T> {
@@ -43,13 +44,19 @@ function unmoved(operator: Operator, path: Path, scene: Scene, moves = false): O
   return operator;
 }
 
+/** A coupling: a symbol, or its value where only constants make sense. */
+export function coupling(value: CouplingValue, place: Span, scene: Scene): NumberAmount {
+  if (!scene.constants) return numberAmount(Coefficient.symbol(value.name));
+  return value.value ? numberAmount(value.value) : fail(say.noValue(value.name), place);
+}
+
 /** What a declared name without brackets stands for in an expression; undefined if it is not declared. */
 export function namedValue(path: Path, scene: Scene): Amount | undefined {
   const value = scene.values.find(dotted(path));
   if (!value) return undefined;
   switch (value.what) {
     case 'coupling':
-      return numberAmount(Coefficient.symbol(value.name));
+      return coupling(value, path, scene);
     case 'model':
       scene.seams.push(...value.seams);
       return operatorAmount(unmoved(value.operator, path, scene));

@@ -32,7 +32,7 @@ export interface AuditScene {
   readonly text: string;
 }
 
-const mostLevels = 64;
+const mostLevels = 1024;
 const mostOrder = 8;
 const mostPoints = 2_000;
 

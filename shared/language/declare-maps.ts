@@ -149,25 +149,14 @@ function circuitLayer(rule: Rule & { type: 'gate' }, scene: Scene, placeOf: Plac
 
 function stateRule(bits: KetNode, image: Expression, from: number, to: number, scene: Scene, place: Place): StateRule {
   if (bits.bits.length !== from) fail(say.stateBits(bits.bits.length, from), bits);
-  const state = amount(image, scene);
+  const state = amount(image, { ...scene, constants: true });
   if (state.what !== 'kets') return fail(say.stateImage(), image);
   const amplitudes = new Map<string, Coefficient>();
   for (const [key, c] of state.amplitudes) {
     if (key.length !== to) fail(say.stateBits(key.length, to), image);
-    amplitudes.set(key, constantOf(c, image, scene));
+    amplitudes.set(key, c);
   }
   return { bits: bits.bits, amplitudes, place };
-}
-
-/** A number with the couplings' values put in; fails where one has none. */
-export function constantOf(c: Coefficient, node: Expression, scene: Pick<Scene, 'values'>): Coefficient {
-  const values = new Map<string, Coefficient>();
-  for (const name of c.symbols()) {
-    const coupling = scene.values.find(name);
-    if (coupling?.what !== 'coupling' || !coupling.value) return fail(say.noValue(name), node);
-    values.set(name, coupling.value);
-  }
-  return values.size === 0 ? c : c.substitute(values);
 }
 
 /** Whether a block meets another one, or one of its own translates. */

@@ -20,7 +20,7 @@ import {
   total,
 } from './arithmetic.ts';
 import { instances, type Instance } from './binding.ts';
-import { applyCall, namedValue } from './calls.ts';
+import { applyCall, coupling, namedValue } from './calls.ts';
 import { namedCell, partOf, shiftCell } from './cells.ts';
 import { fail, say, whatIsIt } from './problem.ts';
 import { cellArgument, cellWords, isKind } from './sets.ts';
@@ -98,13 +98,15 @@ function couplingFactors(node: CallNode, scene: Scene): [Amount, Amount] {
   const [argument] = node.args;
   const word = node.path.words[0]?.text ?? '';
   if (!argument || node.args.length !== 1) return fail(say.argumentCount(word, 'one factor', node.args.length), node);
-  return [numberAmount(Coefficient.symbol(word)), amount(argument, scene)];
+  const value = scene.values.find(word);
+  if (value?.what !== 'coupling') return fail(say.unknownName(word, undefined), node.path);
+  return [coupling(value, node.path, scene), amount(argument, scene)];
 }
 
 function call(node: CallNode, scene: Scene): Amount {
   if (couplingCall(node, scene)) {
-    const [coupling, argument] = couplingFactors(node, scene);
-    return multiply(coupling, argument, scene, node);
+    const [factor, argument] = couplingFactors(node, scene);
+    return multiply(factor, argument, scene, node);
   }
   const word = node.path.words[0]?.text ?? '';
   const declared = applyCall(node, scene);
@@ -118,8 +120,8 @@ function powerOf(baseNode: Expression, exponentNode: Expression, scene: Scene): 
   const exponent = amount(exponentNode, scene);
   const scaled = couplingCall(baseNode, scene);
   if (scaled) {
-    const [coupling, argument] = couplingFactors(scaled, scene);
-    return multiply(coupling, power(argument, exponent, scene, exponentNode), scene, baseNode);
+    const [factor, argument] = couplingFactors(scaled, scene);
+    return multiply(factor, power(argument, exponent, scene, exponentNode), scene, baseNode);
   }
   return power(amount(baseNode, scene), exponent, scene, exponentNode);
 }
@@ -204,9 +206,9 @@ function spin(node: SpinNode, scene: Scene): Amount {
 function factorAmounts(factor: Expression, scene: Scene): Amount[] {
   const scaled = couplingCall(factor.type === 'power' ? factor.base : factor, scene);
   if (!scaled) return [amount(factor, scene)];
-  const [coupling, argument] = couplingFactors(scaled, scene);
-  if (factor.type !== 'power') return [coupling, argument];
-  return [coupling, power(argument, amount(factor.exponent, scene), scene, factor)];
+  const [scale, argument] = couplingFactors(scaled, scene);
+  if (factor.type !== 'power') return [scale, argument];
+  return [scale, power(argument, amount(factor.exponent, scene), scene, factor)];
 }
 
 function product(node: ProductNode, scene: Scene): Amount {

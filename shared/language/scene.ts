@@ -25,6 +25,8 @@ export interface Scene {
   readonly within: boolean;
   /** Inside a product over a set that an open boundary cuts. */
   readonly cut: boolean;
+  /** Couplings stand for their values: values of other couplings, amplitudes, ranges. */
+  readonly constants: boolean;
   readonly budget: Budget;
   /** Text of the statement, for sentences. */
   readonly text: string;

@@ -5,7 +5,7 @@ import { BudgetSpent, type Budget } from '../limits.ts';
 import { classesOfPath } from './sets.ts';
 import { declareAudit } from './declare-audits.ts';
 import { declareLattice } from './declare-lattice.ts';
-import { constantOf, declareMap, type Build } from './declare-maps.ts';
+import { declareMap, type Build } from './declare-maps.ts';
 import {
   declareLaw,
   declareModel,
@@ -68,6 +68,7 @@ const sceneOn = (
   steps: new Array<number>(lattice.family.dimension).fill(0),
   within: false,
   cut: false,
+  constants: false,
   budget,
   text,
   note,
@@ -159,10 +160,10 @@ class Evaluation {
 
   /** A constant: numbers, roots and couplings whose values are put in. */
   private readonly constant = (node: Expression): Coefficient => {
-    const scene = sceneOn(this.values.lattice ?? nowhere, this.values, this.text, this.budget, this.note);
+    const lattice = this.values.lattice ?? nowhere;
+    const scene: Scene = { ...sceneOn(lattice, this.values, this.text, this.budget, this.note), constants: true };
     const value = amount(node, scene);
-    if (value.what !== 'number') return fail(say.notConstant('This'), node);
-    return constantOf(settled(value, scene, node), node, scene);
+    return value.what === 'number' ? settled(value, scene, node) : fail(say.notConstant('This'), node);
   };
 
   private readonly build: Build = (declaration, place) => {
