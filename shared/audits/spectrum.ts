@@ -67,10 +67,11 @@ function verdict(words: string, size: Size, left: Spectrum, right: Spectrum, lev
       },
     };
   }
-  const count = figures.all ? `all ${String(a.length)} levels` : `the lowest ${String(a.length)} levels`;
+  const many = a.length === 1 ? 'level' : `${String(a.length)} levels`;
+  const count = figures.all ? (a.length === 1 ? 'the only level' : `all ${many}`) : `the lowest ${many}`;
   return {
     evidence: { kind: 'residuals', tolerance: bound, largest: maxDifference, sizes: [sizeText(size)] },
-    statement: `${count} of ${words} agree ${at}, within ${maxDifference.toExponential(1)}`,
+    statement: `${count} of ${words} ${a.length === 1 ? 'agrees' : 'agree'} ${at}, within ${maxDifference.toExponential(1)}`,
     figures,
     cautions: figures.all ? [standing.cluster] : [standing.levels, standing.cluster],
   };
