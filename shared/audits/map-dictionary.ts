@@ -1,12 +1,13 @@
 import type { Extended, LocalString } from '../algebra/pauli/types.ts';
 import type { MapValue, Values } from '../language/values.ts';
-import { newBudget } from '../limits.ts';
+import { newBudget, type Budget } from '../limits.ts';
 import { isStraight, sizeKey, straight, sizeText } from '../lattice/cluster.ts';
 import type { Lattice, Size } from '../lattice/cells.ts';
 import type { Context } from '../maps/context.ts';
 import { keptCommutation, type CommutationBreak, type KeptCommutation } from '../maps/dictionary/commutation.ts';
 import { isExtended, translateExtended } from '../maps/dictionary/decompose.ts';
 import type { DictionaryDeclaration } from '../maps/dictionary/declaration.ts';
+import { localRelations } from '../maps/dictionary/local.ts';
 import { onSize, type SignBreak, type SizeFindings } from '../maps/dictionary/sizes.ts';
 import { extendedPhrase, stringPhrase } from '../maps/phrases.ts';
 import { translateString } from '../algebra/pauli/string.ts';
@@ -219,7 +220,32 @@ export function dictionaryFindings(
       ? []
       : ['The declared size is tilted; the small sizes decided besides it are straight.'];
   const holds = holdsFinding(value.name, all, declared, figures);
-  return [first, { ...holds, cautions: [...(holds.cautions ?? []), ...tilted] }];
+  const local = localFinding(value.name, declaration, context, figures, budget);
+  return [first, ...local, { ...holds, cautions: [...(holds.cautions ?? []), ...tilted] }];
+}
+
+/** Local relations of the lines that repeat everywhere, for every size; nothing where a limit ends the search or a line stands still. */
+function localFinding(
+  name: string,
+  declaration: DictionaryDeclaration,
+  context: Context,
+  figures: Record<string, unknown>,
+  budget: Budget,
+): Finding[] {
+  const moving = declaration.rules.every((rule) => rule.steps.every((m) => m > 0));
+  const local = moving ? localRelations(declaration, context, budget) : undefined;
+  if (!local || local.signBreak || local.evidence.length === 0 || local.evidence.length < local.left + local.right)
+    return [];
+  const forced = (laws: typeof local.rightLaws): string => list([...new Set(laws.map((law) => law.text))]);
+  return [
+    {
+      evidence: { kind: 'all sizes', proof: local.evidence },
+      statement: `the local product relations of ${name} are kept with their signs or force a law, on ${sizesWords(local.evidence)}: on the left ${forced(local.leftLaws)}, on the right ${forced(local.rightLaws)}`,
+      figures,
+      cautions: ['Relations that close around the lattice are not among these; they are decided size by size.'],
+      sources: [source],
+    },
+  ];
 }
 
 function sizeFigures(found: SizeFindings): Record<string, unknown> {
