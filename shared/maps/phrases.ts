@@ -1,6 +1,7 @@
 import { compareOffsets } from '../algebra/pauli/string.ts';
 import type { Extended, Factor, LocalString, ProductPart, Steps } from '../algebra/pauli/types.ts';
-import type { CellKind, LatticeFamily } from '../lattice/cells.ts';
+import type { Cell, CellKind, LatticeFamily } from '../lattice/cells.ts';
+import { geometryTable } from '../lattice/geometry.ts';
 
 /** Strings written in the operator language, for sentences: short where the string has a short name there. */
 
@@ -89,4 +90,37 @@ export function extendedPhrase(e: Extended, family: LatticeFamily): string {
   const parts = partsText(sorted, family);
   const body = parts.map((part) => (parts.length > 1 && part.startsWith('prod(') ? `(${part})` : part)).join(' ');
   return `${signs[e.phase]}${body === '' ? '1' : body}`;
+}
+
+/**
+ * A string that is one Pauli matrix on all cells which a geometry function gives for some cell: `prod(l: rim(p)) g^z[l]`, with its sign.
+ * Undefined for other strings.
+ */
+export function incidencePhrase(s: LocalString, family: LatticeFamily): string | undefined {
+  const [first] = s.factors;
+  if (
+    !first ||
+    s.factors.length < 2 ||
+    s.factors.some((f) => f.species !== first.species || f.pauli !== first.pauli || f.cell.kind !== first.cell.kind)
+  )
+    return undefined;
+  const zero = family.vectors.map(() => 0);
+  const shape = (cells: readonly Cell[]): string => {
+    const low = zero.map((_, d) => Math.min(...cells.map((c) => c.offset[d] ?? 0)));
+    return cells
+      .map((c) => `${String(c.index)}@${c.offset.map((o, d) => o - (low[d] ?? 0)).join(',')}`)
+      .sort()
+      .join(' ');
+  };
+  const own = shape(s.factors.map((f) => f.cell));
+  for (const f of geometryTable) {
+    if (f.form !== 'around' || f.gives !== first.cell.kind || !f.dimensions.includes(family.dimension)) continue;
+    for (const kind of f.takes)
+      for (const index of family[kind].keys())
+        if (shape(f.cells(family, { kind, index, offset: zero })) === own) {
+          const letter = letters[first.cell.kind] === letters[kind] ? 'u' : letters[first.cell.kind];
+          return `${signs[s.phase]}prod(${letter}: ${f.name}(${letters[kind]})) ${first.species}^${first.pauli}[${letter}]`;
+        }
+  }
+  return undefined;
 }

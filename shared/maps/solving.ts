@@ -103,6 +103,14 @@ export function solvingMap(declaration: SolvingDeclaration, context: Context): O
     if (f.string.factors.length === 0) return allowed([f]);
     const steps = refined(f.steps, periods);
     const out: Family[] = [];
+    const still =
+      f.string.factors.some((x) => x.species === species.name) &&
+      periods.some((p) => steps.some((m, d) => m > 0 && p[d] === 0));
+    if (still)
+      return refused(
+        `${law.name} stands still where ${stringPhrase(f.string, family)} is a term of every cell; it removes the spin of only some of them`,
+        f.string,
+      );
     for (const by of residues(f.steps, steps)) {
       const image = removed(translateString(f.string, by));
       if (!image.ok) return image;

@@ -7,7 +7,7 @@ import { newFrame, type Frame } from '../../algebra/pauli/vector.ts';
 import { BudgetSpent, type Budget } from '../../limits.ts';
 import type { DictionaryRule } from '../../language/values.ts';
 import type { Context } from '../context.ts';
-import { stringPhrase } from '../phrases.ts';
+import { incidencePhrase, stringPhrase } from '../phrases.ts';
 import { inSteps, lcm, minus, residues } from '../steps.ts';
 import { slotsOf } from './charged.ts';
 import type { Use } from './coordinates.ts';
@@ -107,7 +107,7 @@ function forcedLaw(string: LocalString, steps: Steps, members: readonly Use[], c
   const text =
     declared && declared.phase % 2 === 0
       ? `${declared.name} = ${declared.phase === 0 ? '+1' : '-1'}`
-      : `${stringPhrase(string, context.family)} = +1`;
+      : `${incidencePhrase(string, context.family) ?? stringPhrase(string, context.family)} = +1`;
   return { string, steps, name: declared?.name, text, members };
 }
 

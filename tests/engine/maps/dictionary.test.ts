@@ -194,6 +194,95 @@ describe('products', () => {
   });
 });
 
+describe('a dictionary made from two circuits', () => {
+  it('sends every string where the circuits do, signs and phases exact', () => {
+    const on = S.lattice('chain', 6);
+    const { family } = on;
+    const values = S.valuesOf(on, [S.species(family, 's', 'vertices'), S.species(family, 't', 'vertices')]);
+    const at = (n: number): Cell => S.cellAt('vertices', 0, n);
+    const layer = fc.constantFrom<[string, number[], number]>(
+      ['h', [0], 1],
+      ['s', [0], 1],
+      ['h', [0], 2],
+      ['cz', [0, 1], 1],
+      ['cx', [0, 1], 2],
+      ['swap', [0, 1], 2],
+      ['y', [1], 2],
+    );
+    const word = fc.array(fc.constantFrom('I', 'X', 'Y', 'Z'), { minLength: 4, maxLength: 4 });
+    const circuit = (layers: [string, number[], number][]) =>
+      S.build(
+        {
+          kind: 'circuit',
+          layers: layers.map(([gate, targets, step]) => ({
+            gate,
+            gates: [{ targets: targets.map((n) => ({ species: 's', cell: at(n) })), steps: [step], needs: [] }],
+            place: S.place,
+          })),
+        },
+        values,
+      );
+    const single = (map: ReturnType<typeof circuit>, string: LocalString): LocalString => {
+      const [f] = S.value(
+        map.image(
+          { families: [{ coefficient: Coefficient.one, string, steps: [0], needs: [] }], extended: [] },
+          newBudget(),
+        ),
+      ).families;
+      if (!f) throw new Error('no image');
+      return { phase: f.coefficient.isOne() ? 0 : 2, factors: f.string.factors };
+    };
+    const renamed = (s: LocalString): LocalString => ({
+      ...s,
+      factors: s.factors.map((f) => ({ ...f, species: 't' })),
+    });
+    fc.assert(
+      fc.property(
+        fc.array(layer, { maxLength: 3 }),
+        fc.array(layer, { maxLength: 3 }),
+        word,
+        (first, second, letters) => {
+          const [left, right] = [circuit(first), circuit(second)];
+          // x and z of both sublattices: generators of everything
+          const rules = [0, 1].flatMap((n) =>
+            (['x', 'z'] as const).map((pauli, k): DictionaryRule => ({
+              left: single(left, S.on('s', pauli, [at(n)])),
+              right: renamed(single(right, S.on('s', pauli, [at(n)]))),
+              steps: [2],
+              needs: [],
+              anchor: at(n),
+              place: S.place,
+              rule: k,
+              text: { left: '', right: '' },
+            })),
+          );
+          const map = S.build({ kind: 'dictionary', from: ['s'], to: ['t'], rules }, values);
+          const string = newString(
+            letters.flatMap((l, n) => (l === 'I' ? [] : [S.factor('s', l.toLowerCase() as 'x', at(n))])),
+          );
+          if (string.factors.length === 0) return;
+          const image = S.value(
+            map.image(
+              {
+                families: [{ coefficient: Coefficient.one, string: single(left, string), steps: [2], needs: [] }],
+                extended: [],
+              },
+              newBudget(),
+            ),
+          );
+          const expected = single(right, string);
+          const wanted: Operator = {
+            families: [{ coefficient: Coefficient.one, string: renamed(expected), steps: [2], needs: [] }],
+            extended: [],
+          };
+          expect(equalOperators(image, wanted, { open: false })).toBe(true);
+        },
+      ),
+      { seed: 5, numRuns: 80 },
+    );
+  });
+});
+
 describe('relations of a dictionary', () => {
   it('keeps commutation at all sizes and finds the sectors of the square torus', () => {
     const w = wegner('square', 4, 4);
