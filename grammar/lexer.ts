@@ -89,7 +89,9 @@ export function tokensOf(text: string, reading: Reading): Token[] {
       out.push({ type: 'rule', text: '\n', value: '\n', offset: token.offset, length: 0 });
     }
     const before = found[k - 1];
-    const next = found[k + 1];
+    const after = found[k + 1];
+    // a line of a body that begins with a bracket is no argument of the line before it
+    const next = after && after.offset >= (reading.rules[rule] ?? Infinity) ? undefined : after;
     const glued = before?.type === 'number' && before.offset + before.text.length === token.offset;
     if (reading.sizes && glued && token.type === 'word' && /^(?:x[0-9]+)*x?$/u.test(token.text)) {
       out.push(...sizeParts(token));
