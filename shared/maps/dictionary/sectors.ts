@@ -58,7 +58,12 @@ function declared(
       const [first] = value.families;
       if (first) out.push({ name: value.name, text: value.name, strings, example: first.string });
     }
-    if (value.what === 'symmetry' && value.extended.parts.every((p) => own(p.string) && cluster.admits(p.steps)))
+    // a part without factors is a sign for each translate
+    if (
+      value.what === 'symmetry' &&
+      value.extended.parts.some((p) => own(p.string)) &&
+      value.extended.parts.every((p) => (p.string.factors.length === 0 || own(p.string)) && cluster.admits(p.steps))
+    )
       out.push({
         name: value.name,
         text: value.name,

@@ -20,6 +20,12 @@ export interface Word {
   readonly places: readonly Place[];
 }
 
+function inOrder(a: Place, b: Place): number {
+  if (a.at !== b.at) return a.at < b.at ? -1 : 1;
+  const d = a.offset.findIndex((c, k) => c !== b.offset[k]);
+  return d < 0 ? 0 : a.offset[d]! - b.offset[d]!;
+}
+
 /** A finite torus: rows are periods, lower triangular after reduction. */
 export class Torus {
   readonly cells: readonly (readonly number[])[];
@@ -53,7 +59,8 @@ export class Torus {
   /** A word moved to a cell. */
   lay(word: Word, by: readonly number[]): Laid {
     let laid = one();
-    for (const { at, offset, pauli } of word.places)
+    // Where factors meet on one spin their order counts: by class, then by offset, first coordinate first, as families are kept.
+    for (const { at, offset, pauli } of [...word.places].sort(inOrder))
       laid = multiply(
         laid,
         single(
