@@ -111,8 +111,8 @@ export function pointsIn(family: LatticeFamily, window: Window, kind: CellKind, 
 export interface Drawn {
   readonly at: Point;
   readonly pauli: 'x' | 'y' | 'z';
-  /** Angle of the link it stands on, in degrees; 0 elsewhere. The bar of X lies across it. */
-  readonly angle: number;
+  /** Turn of the bar of X in degrees: across the link it stands on; 0 elsewhere. */
+  readonly turn: number;
   readonly species: string;
 }
 
@@ -125,17 +125,17 @@ export function drawnOf(family: LatticeFamily, window: Window, supports: readonl
         if (shift.some((n) => n !== 0) && !inside(window, offset)) continue;
         const at = pointOf(family, site.kind, site.index, offset);
         const key = [at.x.toFixed(4), at.y.toFixed(4), site.pauli, site.species].join(' ');
-        drawn.set(key, { at, pauli: site.pauli, species: site.species, angle: angleOf(family, site.kind, site.index) });
+        drawn.set(key, { at, pauli: site.pauli, species: site.species, turn: turnOf(family, site.kind, site.index) });
       }
   return [...drawn.values()];
 }
 
-function angleOf(family: LatticeFamily, kind: CellKind, index: number): number {
+function turnOf(family: LatticeFamily, kind: CellKind, index: number): number {
   const link = kind === 'links' ? family.links[index] : undefined;
   if (!link) return 0;
   const a = pointOf(family, 'vertices', link.a.index, link.a.offset);
   const b = pointOf(family, 'vertices', link.b.index, link.b.offset);
-  return (Math.atan2(b.y - a.y, b.x - a.x) * 180) / Math.PI;
+  return (Math.atan2(b.y - a.y, b.x - a.x) * 180) / Math.PI + 90;
 }
 
 function* shiftsIn(window: Window, repeats: readonly number[]): Generator<readonly number[]> {

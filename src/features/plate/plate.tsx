@@ -126,7 +126,7 @@ function Drawing({ family, lattice, side, language, height }: DrawingProps) {
           <g
             key={k}
             transform={`translate(${String(one.at.x)} ${String(one.at.y)}) rotate(${String(
-              one.pauli === 'x' ? one.angle + (one.angle === 0 ? 0 : 90) : 0,
+              one.pauli === 'x' ? one.turn : 0,
             )}) scale(${String(size)})`}
           >
             <PauliShape pauli={one.pauli} />

@@ -127,7 +127,7 @@ export function supportInWords(family: LatticeFamily, supports: readonly Support
     const sites = support.sites.map((site) => {
       const classes = family[site.kind];
       const label = classes.length > 1 ? ` ${classes[site.index]?.labels[0] ?? String(site.index + 1)}` : '';
-      return `${site.pauli.toUpperCase()} of ${site.species} at ${letters[site.kind]}${label} (${site.offset.join(', ')})`;
+      return `${site.pauli.toUpperCase()} of ${site.species} at ${letters[site.kind]}${label} (${site.offset.join(', ').replace(/-/g, '−')})`;
     });
     const repeated = support.repeats.flatMap((step, d) => (step > 0 ? [String(d + 1)] : []));
     const along = repeated.length > 0 ? `, repeated along direction ${repeated.join(' and ')}` : '';

@@ -36,6 +36,9 @@ export function Spread({ entries, reading, rows, writing, source, claims, edits,
     <div
       className="spread"
       data-language={language}
+      data-asked={reading.asked}
+      data-answered={reading.answered}
+      aria-busy={reading.asked > reading.answered}
       ref={pages}
       onKeyDown={(event) => {
         if (pages.current && moveBetweenTerms(pages.current, event)) event.preventDefault();
