@@ -6,7 +6,7 @@ import type { Cell, Offset } from '../lattice/cells.ts';
 import { coefficientSpoken, coefficientTex } from './coefficients.ts';
 import { labelsOf, type Style, type TypesetContext } from './context.ts';
 import { extendedSpoken, extendedTex } from './extended.ts';
-import { fullShells, placed, shellShape, type Placed, type Shape } from './shapes.ts';
+import { fullShells, placed, shellShape, type Placed, type Shape, type ShiftedCell } from './shapes.ts';
 import {
   anchorLetter,
   endLetters,
@@ -117,9 +117,9 @@ function pinnedTex(bucket: Bucket, context: TypesetContext, style: Style): strin
   const { shape, members } = bucket;
   const base = members[0]?.residue ?? [];
   const groups = shape.groups.map((g) => {
-    if (g.spot.at !== 'shifts') return g;
-    const cells = g.spot.cells.map((c) => ({ ...c, by: c.by.map((o, d) => o + (base[d] ?? 0)) }));
-    return { ...g, spot: { at: 'shifts' as const, cells } };
+    const moved = (c: ShiftedCell): ShiftedCell => ({ ...c, by: c.by.map((o, d) => o + (base[d] ?? 0)) });
+    if (g.spot.at === 'run') return { ...g, spot: { ...g.spot, cell: moved(g.spot.cell) } };
+    return g.spot.at === 'shifts' ? { ...g, spot: { ...g.spot, cells: g.spot.cells.map(moved) } } : g;
   });
   return shapeTex({ ...shape, groups }, style, { still: { at: anchorPlace(bucket, context) } });
 }

@@ -95,7 +95,7 @@ export const roles: readonly Role[] = [
   {
     kind: 'matter hopping',
     help: 'Matter at both ends of a path of links, with the field along it.',
-    is: (a) => a.matterPauli !== undefined && a.fieldPauli !== undefined && joins(a),
+    is: (a) => a.fieldPauli !== undefined && a.matter.every((f) => f.species === a.matter[0]?.species) && joins(a),
   },
   {
     kind: 'star',

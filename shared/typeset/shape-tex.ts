@@ -76,6 +76,18 @@ function groupTex(shape: Shape, g: SpotGroup, style: Style, still: Standing): { 
         tex: `\\prod_{${at === undefined ? over : `${letter}${over.includes('\\ni') ? '\\ni ' : '\\in '}${at}`}}${pauliTex(g.species, g.pauli, letter, style)}`,
       };
     }
+    case 'run': {
+      const { cell, direction, count } = g.spot;
+      const start = still ? placeTex(cell.by) : shiftTex(anchor, cell.by);
+      const place = `${start}+k${cell.by.length === 1 ? '' : `\\hat{${String(direction + 1)}}`}`;
+      const body = pauliTex(
+        g.species,
+        g.pauli,
+        cell.label === '' ? place : `${place},${lowerLabel(cell.label)}`,
+        style,
+      );
+      return { order: 3, tex: `\\prod_{k=0}^{${String(count - 1)}}${body}` };
+    }
     case 'shifts': {
       const words = g.spot.cells.map((c) => {
         const place = still ? placeTex(c.by) : shiftTex(anchor, c.by);
@@ -150,6 +162,8 @@ export function shapeSpoken(shape: Shape): string {
           const up = shape.anchor !== 'cell' && rank[kind] > rank[shape.anchor];
           return `the product of ${name} over the ${kind} ${up ? 'at' : 'around'} the ${word}`;
         }
+        case 'run':
+          return `the product of ${name} over ${String(g.spot.count)} ${g.spot.cell.kind} in a row along direction ${String(g.spot.direction + 1)}`;
         case 'shifts':
           return g.spot.cells
             .map((c) => {

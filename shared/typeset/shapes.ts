@@ -27,6 +27,8 @@ export type Spot =
   | { readonly at: 'incident'; readonly kind: CellKind; readonly count: number }
   /** Vertices joined to the anchor by a link. */
   | { readonly at: 'neighbours' }
+  /** Cells in a row: `count` of them from `cell` on, one unit cell further along the direction (from 0) each time. */
+  | { readonly at: 'run'; readonly cell: ShiftedCell; readonly direction: number; readonly count: number }
   /** Cells named one by one, relative to the anchor's unit cell. */
   | { readonly at: 'shifts'; readonly cells: readonly ShiftedCell[] };
 
@@ -113,9 +115,11 @@ function spotFrom(anchor: Cell, group: Group, family: LatticeFamily): Spot | und
 const spotKey = (s: Spot): string =>
   s.at === 'incident'
     ? `incident ${s.kind}`
-    : s.at === 'shifts'
-      ? s.cells.map((c) => `${c.kind}.${c.label}@${c.by.join(',')}`).join(' ')
-      : s.at;
+    : s.at === 'run'
+      ? `run ${s.cell.kind}.${s.cell.label}@${s.cell.by.join(',')} ${String(s.direction)}x${String(s.count)}`
+      : s.at === 'shifts'
+        ? s.cells.map((c) => `${c.kind}.${c.label}@${c.by.join(',')}`).join(' ')
+        : s.at;
 
 const shapeOf = (anchor: Shape['anchor'], groups: readonly SpotGroup[]): Shape => ({
   key: `${anchor}: ${groups.map((g) => `${g.species}^${g.pauli} ${spotKey(g.spot)}`).join('; ')}`,
@@ -160,28 +164,64 @@ function origin(string: LocalString): Factor | undefined {
   return [...all].sort((a, b) => compareOffsets(a.cell.offset, b.cell.offset))[0];
 }
 
+/** Factors in a row that are written as one product over a running index. */
+const leastRun = 4;
+
+interface Run {
+  readonly factors: readonly [Factor, ...Factor[]];
+  readonly direction: number;
+}
+
+/** Factors alike on neighbouring unit cells along one direction, joined where there are at least `leastRun` of them; the others by themselves. */
+function inRuns(sorted: readonly Factor[], dimension: number): Run[] {
+  const key = (f: Factor, offset: Offset) => `${f.pauli}:${siteKey({ ...f, cell: { ...f.cell, offset } })}`;
+  const left = new Map(sorted.map((f) => [key(f, f.cell.offset), f]));
+  const runs: Run[] = [];
+  for (const f of sorted) {
+    if (!left.has(key(f, f.cell.offset))) continue;
+    const rows = Array.from({ length: dimension }, (_, direction): Run => {
+      const factors: [Factor, ...Factor[]] = [f];
+      for (let k = 1; ; k++) {
+        const next = left.get(
+          key(
+            f,
+            f.cell.offset.map((c, d) => (d === direction ? c + k : c)),
+          ),
+        );
+        if (!next) return { factors, direction };
+        factors.push(next);
+      }
+    });
+    const [longest] = rows.sort((a, b) => b.factors.length - a.factors.length);
+    const run: Run = longest && longest.factors.length >= leastRun ? longest : { factors: [f], direction: 0 };
+    runs.push(run);
+    for (const g of run.factors) left.delete(key(g, g.cell.offset));
+  }
+  return runs;
+}
+
 function explicit(string: LocalString, family: LatticeFamily): Placed {
   const from = origin(string);
   const kinds = new Set(string.factors.map((f) => f.cell.kind));
   const [kind] = kinds;
   const single = kinds.size === 1 && kind !== undefined && family[kind].length === 1;
   const base = from?.cell.offset ?? [];
-  const groups = [...string.factors]
-    .sort((a, b) => compareOffsets(a.cell.offset, b.cell.offset) || a.cell.index - b.cell.index)
-    .map((f): SpotGroup => ({
-      species: f.species,
-      pauli: f.pauli,
-      spot: {
-        at: 'shifts',
-        cells: [
-          {
-            kind: f.cell.kind,
-            label: single ? '' : classLabel(family, f.cell.kind, f.cell.index),
-            by: f.cell.offset.map((c, d) => c - (base[d] ?? 0)),
-          },
-        ],
-      },
-    }));
+  const sorted = [...string.factors].sort(
+    (a, b) => compareOffsets(a.cell.offset, b.cell.offset) || a.cell.index - b.cell.index,
+  );
+  const shiftOf = (f: Factor): ShiftedCell => ({
+    kind: f.cell.kind,
+    label: single ? '' : classLabel(family, f.cell.kind, f.cell.index),
+    by: f.cell.offset.map((c, d) => c - (base[d] ?? 0)),
+  });
+  const groups = inRuns(sorted, family.dimension).map((run): SpotGroup => {
+    const [f] = run.factors;
+    const spot: Spot =
+      run.factors.length === 1
+        ? { at: 'shifts', cells: [shiftOf(f)] }
+        : { at: 'run', cell: shiftOf(f), direction: run.direction, count: run.factors.length };
+    return { species: f.species, pauli: f.pauli, spot };
+  });
   return { shape: shapeOf(single ? kind : 'cell', groups), index: 0, offset: base, sign: 1 };
 }
 

@@ -128,6 +128,9 @@ describe('sums as a theorist writes them', () => {
       '\\sum_{v}s^{z}_{v-1} s^{x}_{v} s^{z}_{v+1}',
     );
     expect(operatorTex(one([2], ['x', 1]), chain.context)).toBe('\\sum_{v:\\,v\\equiv 1\\,(2)}s^{x}_{v}');
+    expect(operatorTex(one([1], ['z', -1], ['x', 0], ['x', 1], ['x', 2], ['x', 3], ['y', 4]), chain.context)).toBe(
+      '\\sum_{v}s^{z}_{v} s^{y}_{v+5} \\prod_{k=0}^{3}s^{x}_{v+1+k}',
+    );
     expect(operatorTex(one([0], ['z', 0], ['z', 3]), chain.context)).toBe('s^{z}_{0} s^{z}_{3}');
     const square = setting('square');
     const far: Operator = {
