@@ -1,11 +1,11 @@
-import type { Binder } from '../../grammar/syntax.ts';
+import type { Binder, Condition } from '../../grammar/syntax.ts';
 import { residues } from '../algebra/pauli/collect.ts';
 import type { Steps } from '../algebra/pauli/types.ts';
 import type { Cell } from '../lattice/cells.ts';
 import { isLatticeProblem } from '../lattice/cells.ts';
 import { newCluster, sizeText } from '../lattice/cluster.ts';
 import { limits } from '../limits.ts';
-import { holds, solve, type Solved } from './conditions.ts';
+import { disjuncts, holds, solve, type Solved } from './conditions.ts';
 import { fail, say } from './problem.ts';
 import { cellSet } from './sets.ts';
 import { Aperiodic, Refine, gcd, type Bound, type MovingCell, type Scene } from './scene.ts';
@@ -22,6 +22,8 @@ export interface Instance<T> {
   readonly value: T;
 }
 
+/** Cases of a condition (`… or …`) that are solved one by one. */
+const mostCases = 16;
 /** Cells that one expression may be written out on, cell by cell. */
 const mostFrozen = 4_096;
 
@@ -55,7 +57,7 @@ export function instances<T>(
   const name = binder.variable.text;
   const set = cellSet(binder.domain, scene);
 
-  const inside = (at: Bound, inner: Scene, steps: Steps | undefined): Instance<T>[] => {
+  const inside = (at: Bound, inner: Scene, steps: Steps | undefined, cases: readonly Condition[]): Instance<T>[] => {
     scene.budget.spend(8);
     const optional = set.cut && use === 'prod';
     const known = optional ? withCells(at, (c) => ({ ...c, optional: true })) : at;
@@ -64,24 +66,32 @@ export function instances<T>(
       cut: inner.cut || (optional && inner.open),
       bound: new Map([...inner.bound, [name, known]]),
     };
-    if (binder.where && !holds(binder.where, next)) return [];
-    const own = [...set.needs, ...(optional ? [] : cellsOf(at))];
+    const [own, ...earlier] = [...cases].reverse();
+    if (own && !holds(own, next)) return [];
+    if (earlier.some((one) => holds(one, next))) return [];
+    const here = [...set.needs, ...(optional ? [] : cellsOf(at))];
     return instances(rest, use, next, body).map((one) => ({
       ...one,
       steps: steps ?? one.steps,
-      needs: scene.open ? [...own, ...one.needs] : [],
+      needs: scene.open ? [...here, ...one.needs] : [],
       anchor: cellsOf(at)[0],
       cut: set.cut || one.cut,
     }));
   };
 
-  const found = set.parts.flatMap((part) =>
-    solve(part, name, binder.where, scene).flatMap((solved) => {
-      if (solved.free.every((f) => !f)) return inside(solved.at, scene, undefined);
-      if (scene.within) return fail(say.infiniteInside(name), binder);
-      return moving(solved, scene, binder, inside);
-    }),
-  );
+  const found = set.parts.flatMap((part) => {
+    const whole = part.steps.every((m) => m === 0);
+    const all = binder.where ? (whole ? [binder.where] : disjuncts(binder.where, mostCases)) : [undefined];
+    // the k-th case holds and none before it: so no cell is taken twice
+    return all.flatMap((one, k) => {
+      const cases = all.slice(0, k + 1).flatMap((c) => (c ? [c] : []));
+      return solve(part, name, one, scene).flatMap((solved) => {
+        if (solved.free.every((f) => !f)) return inside(solved.at, scene, undefined, cases);
+        if (scene.within) return fail(say.infiniteInside(name), binder);
+        return moving(solved, scene, binder, (at, inner, steps) => inside(at, inner, steps, cases));
+      });
+    });
+  });
   if (found.length === 0 && set.parts.length > 0 && binder.where)
     scene.note({ ...say.emptySet(), start: binder.start, end: binder.end });
   return found;

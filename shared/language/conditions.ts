@@ -103,6 +103,19 @@ function conjuncts(condition: Condition): Condition[] {
   return [condition];
 }
 
+/** The parts of a condition of which one must hold; at most `most`, else the condition itself. */
+export function disjuncts(condition: Condition, most: number): Condition[] {
+  const all: Condition[] = [];
+  const open: Condition[] = [condition];
+  for (let one = open.pop(); one; one = open.pop()) {
+    if (one.type === 'group') open.push(one.body);
+    else if (one.type === 'or') open.push(one.right, one.left);
+    else all.push(one);
+    if (all.length + open.length > most) return [condition];
+  }
+  return all;
+}
+
 const isVariable = (node: Expression, name: string): boolean =>
   node.type === 'bracket'
     ? isVariable(node.body, name)

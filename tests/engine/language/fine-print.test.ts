@@ -117,6 +117,18 @@ describe('5 sums and products over cells', () => {
     expect(bounded.lines).toEqual(['1 sz(0,0) ~ 0,0', '1 sz(1,0) ~ 0,0']);
     expect(bounded.codes).toEqual(['declared-size']);
   });
+  it('take the cases of an or one by one, each cell once', () => {
+    expect(expression('sum(v: vertices where v.y == 0 or v.y == 2) s^z[v]').lines).toEqual([
+      '1 sz(0,0) ~ 1,0',
+      '1 sz(0,2) ~ 1,0',
+    ]);
+    expect(
+      same(
+        'sum(v: vertices where v.x % 2 == 0 or v.y % 2 == 0) s^z[v]',
+        'sum(v: vertices) s^z[v] - sum(v: vertices where v.x % 2 == 1 and v.y % 2 == 1) s^z[v]',
+      ),
+    ).toBe(true);
+  });
   it('know in, not and classes', () => {
     expect(
       same(
