@@ -10,7 +10,7 @@ export default defineConfig({
     alias: [{ find: /^katex$/, replacement: fileURLToPath(new URL('src/components/katex.ts', import.meta.url)) }],
   },
   // `npm run dev` starts Vite in front of the server and says where that one listens.
-  server: process.env.BACKEND ? { proxy: { '^/(api|auth)(/|$)': { target: process.env.BACKEND } } } : {},
+  server: process.env.BACKEND ? { proxy: { '^/(api|auth|healthz)(/|$)': { target: process.env.BACKEND } } } : {},
   // The server puts each answer's nonce in its place.
   html: { cspNonce: '__CSP_NONCE__' },
   worker: { format: 'es' },
