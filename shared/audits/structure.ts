@@ -270,7 +270,12 @@ function findings(name: string, model: Model, found: Found, values: Values): Fin
     statement: listed.proofs
       ? `every string found commutes with every term of ${name}, on ${sizesWords(listed.proofs)}; the local ones generate all that are local`
       : `the strings found and ${name}`,
-    figures: { strings: listed.texts.length },
+    figures: {
+      local: figures.local,
+      subsystem: figures.subsystem,
+      global: figures.global,
+      strings: listed.texts.length,
+    },
     sources: [source],
   };
   if (unexplained.length > 0) {
