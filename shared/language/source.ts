@@ -24,6 +24,8 @@ export interface SourceProblem {
 }
 
 const isBlank = (line: string): boolean => /^\s*(?:#|$)/u.test(line);
+/** Prose and borders of a notebook's entries (`notebook/text`): a statement ends with its entry. Other comments end nothing. */
+const entryMark = /^#[:~]/u;
 const indentOf = (line: string): number => /^\s*/u.exec(line)?.[0].length ?? 0;
 
 /** Maps with a body and `lattice custom`: there each indented line is one rule. Other statements are one run of words. */
@@ -76,7 +78,10 @@ export function layoutOf(source: string): {
     open = undefined;
   };
   for (const [k, line] of lines.entries()) {
-    if (isBlank(line)) continue;
+    if (isBlank(line)) {
+      if (entryMark.test(line)) close();
+      continue;
+    }
     if (indentOf(line) === 0) {
       close();
       if (statements.length >= limits.statements) {
