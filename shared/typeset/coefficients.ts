@@ -72,16 +72,19 @@ const spokenPower = ([name, e]: readonly [string, number]): string =>
       ? `${nameSpoken(name)} squared`
       : `${nameSpoken(name)} to the power ${String(e)}`;
 
-function spokenTerm(t: TermParts): string {
+/** Number and couplings above the stroke. */
+function spokenAbove(t: TermParts): string {
   const words = [
     ...(size(t.num) === 1n ? [] : [String(size(t.num))]),
     ...(t.imaginary ? ['i'] : []),
     ...(t.radicand === 1n ? [] : [`root ${String(t.radicand)}`]),
     ...t.powers.map(spokenPower),
   ];
-  const top = words.length === 0 ? '1' : words.join(' ');
-  return t.den === 1n ? top : `${top} over ${String(t.den)}`;
+  return words.length === 0 ? '1' : words.join(' ');
 }
+
+const spokenTerm = (t: TermParts): string =>
+  t.den === 1n ? spokenAbove(t) : `${spokenAbove(t)} over ${String(t.den)}`;
 
 const spokenSum = (terms: readonly TermParts[]): string =>
   terms.map((t, k) => `${t.num < 0n ? 'minus ' : k === 0 ? '' : 'plus '}${spokenTerm(t)}`).join(' ');
@@ -92,11 +95,16 @@ export function coefficientSpoken(c: Coefficient): { readonly negative: boolean;
   const [top] = numerator;
   if (!top) return { negative: false, words: 'zero' };
   const negative = numerator.length === 1 && top.num < 0n;
-  const head = numerator.length === 1 ? spokenTerm(top) : `the quantity ${spokenSum(numerator)}`;
   const [under] = denominator;
-  const whole = denominator.length === 1 && under !== undefined && unit(under);
-  const words = whole
-    ? head
-    : `${head} over ${denominator.length === 1 && under ? spokenTerm(under) : `the quantity ${spokenSum(denominator)}`}`;
+  const couplings =
+    denominator.length === 1 && under
+      ? unit(under)
+        ? ''
+        : spokenAbove(under)
+      : `the quantity ${spokenSum(denominator)}`;
+  const number = numerator.length === 1 && top.den !== 1n ? String(top.den) : '';
+  const below = [number, couplings].filter((w) => w !== '').join(' ');
+  const head = numerator.length === 1 ? spokenAbove(top) : `the quantity ${spokenSum(numerator)}`;
+  const words = below === '' ? head : `${head} over ${below}`;
   return { negative, words: words === '1' ? '' : words };
 }

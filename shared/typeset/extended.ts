@@ -2,10 +2,11 @@ import { compareOffsets } from '../algebra/pauli/string.ts';
 import type { Extended, Pauli, ProductPart, Steps } from '../algebra/pauli/types.ts';
 import type { CellKind, Offset } from '../lattice/cells.ts';
 import { coloopLinks, loopLinks, membraneLinks, type SteppedCell } from '../lattice/windings.ts';
-import { labelsOf, letters, type Style, type TypesetContext } from './context.ts';
+import { classLabel, labelsOf, letters, type Style, type TypesetContext } from './context.ts';
 import { nameSpoken } from './names.ts';
+import { classesTex, conditionsSpoken, conditionsTex, labelTex, residueOf } from './ranges.ts';
 import { placed } from './shapes.ts';
-import { pauliTex, shapeTex } from './shape-tex.ts';
+import { pauliTex, placeTex, shapeTex } from './shape-tex.ts';
 
 /** Single-Pauli parts of one species, Pauli and kind. */
 interface Orbit {
@@ -35,7 +36,7 @@ function orbits(extended: Extended): { orbits: Orbit[]; others: ProductPart[] } 
 }
 
 const memberKey = (index: number, offset: Offset, steps: Steps): string =>
-  `${String(index)}@${offset.map((c, d) => (steps[d] ? ((c % steps[d]) + steps[d]) % steps[d] : c)).join(',')}/${steps.join(',')}`;
+  `${String(index)}@${residueOf(offset, steps).join(',')}/${steps.join(',')}`;
 
 const sameSet = (cells: unknown, members: Orbit['members']): boolean => {
   if (!Array.isArray(cells)) return false;
@@ -61,54 +62,50 @@ function winding(orbit: Orbit, { family }: TypesetContext): { tex: string; spoke
   return undefined;
 }
 
-/** Classes with the same residues and steps are one product. */
-function domains(orbit: Orbit): { indices: number[]; offset: Offset; steps: Steps }[] {
-  const by = new Map<string, { indices: number[]; offset: Offset; steps: Steps }>();
+/** Classes on the same residues with the same steps are one product. */
+function domains(orbit: Orbit): { indices: number[]; residues: Offset[]; steps: Steps }[] {
+  const byClass = new Map<string, { index: number; residues: Offset[]; steps: Steps }>();
   for (const m of [...orbit.members].sort((a, b) => compareOffsets(a.offset, b.offset) || a.index - b.index)) {
-    const key = memberKey(0, m.offset, m.steps);
-    const domain = by.get(key) ?? { indices: [], offset: m.offset, steps: m.steps };
-    by.set(key, domain);
-    domain.indices.push(m.index);
+    // what stands still is named one by one
+    const still = m.steps.every((s) => s === 0) ? m.offset.join(',') : '';
+    const key = `${String(m.index)}/${m.steps.join(',')}/${still}`;
+    const own = byClass.get(key) ?? { index: m.index, residues: [], steps: m.steps };
+    byClass.set(key, own);
+    own.residues.push(residueOf(m.offset, m.steps));
   }
-  return [...by.values()];
+  const out = new Map<string, { indices: number[]; residues: Offset[]; steps: Steps }>();
+  for (const { index, residues, steps } of byClass.values()) {
+    const key = `${steps.join(',')}|${residues.map((r) => r.join(',')).join(' ')}`;
+    const own = out.get(key) ?? { indices: [], residues, steps };
+    out.set(key, own);
+    own.indices.push(index);
+  }
+  return [...out.values()];
 }
-
-const labelTex = (label: string): string => (/^[\dA-Z]$/.test(label) ? label : `\\mathrm{${label}}`);
 
 function orbitTex(orbit: Orbit, context: TypesetContext, style: Style): string {
   const letter = letters[orbit.kind];
   const factor = pauliTex(orbit.species, orbit.pauli, letter, style);
   const named = winding(orbit, context);
   if (named) return `\\prod_{${letter}\\in ${named.tex}}${factor}`;
+  const all = context.species.get(orbit.species)?.classes.length ?? context.family[orbit.kind].length;
   return domains(orbit)
-    .map(({ indices, offset, steps }) => {
-      const n = steps.length;
-      const all = context.species.get(orbit.species)?.classes.length ?? context.family[orbit.kind].length;
-      const labels = labelsOf(context.family, orbit.kind, indices).map(labelTex);
-      if (steps.every((m) => m === 0)) {
-        const place = n === 1 ? String(offset[0] ?? 0) : `(${offset.join(',')})`;
+    .map(({ indices, residues, steps }) => {
+      const [first = []] = residues;
+      if (steps.every((m) => m === 0))
         return indices
-          .map((_, k) =>
-            pauliTex(
+          .map((index) => {
+            const label = classLabel(context.family, orbit.kind, index);
+            return pauliTex(
               orbit.species,
               orbit.pauli,
-              context.family[orbit.kind].length === 1 ? place : `${place},${labels[k] ?? ''}`,
+              label === '' ? placeTex(first) : `${placeTex(first)},${labelTex(label)}`,
               style,
-            ),
-          )
+            );
+          })
           .join(' ');
-      }
-      const range =
-        indices.length >= all ? '' : `\\in ${labels.length === 1 ? (labels[0] ?? '') : `\\{${labels.join(',')}\\}`}`;
-      const extra = steps.flatMap((m, d) => {
-        const name = n === 1 ? letter : `${letter}_{${String(d + 1)}}`;
-        return m === 1
-          ? []
-          : m === 0
-            ? [`${name}=${String(offset[d] ?? 0)}`]
-            : [`${name}\\equiv ${String(offset[d] ?? 0)}\\,(${String(m)})`];
-      });
-      return `\\prod_{${letter}${range}${extra.length === 0 ? '' : `:\\,${extra.join(',\\,')}`}}${factor}`;
+      const extra = conditionsTex(letter, steps, residues);
+      return `\\prod_{${letter}${classesTex(context, orbit.kind, indices, all)}${extra === '' ? '' : `:\\,${extra}`}}${factor}`;
     })
     .join(' ');
 }
@@ -140,8 +137,12 @@ export function extendedSpoken(extended: Extended, context: TypesetContext): str
     const name = `${nameSpoken(o.species)} ${o.pauli}`;
     if (named) return `the product of ${name} over ${named.spoken}`;
     const all = context.species.get(o.species)?.classes.length ?? context.family[o.kind].length;
-    const whole = o.members.length >= all && o.members.every((m) => m.steps.every((s) => s === 1));
-    return `the product of ${name} over ${whole ? `all ${o.kind}` : `${o.kind} of a sublattice or a line`}`;
+    const over = domains(o).map(({ indices, residues, steps }) => {
+      const which = indices.length >= all ? '' : ` of class ${labelsOf(context.family, o.kind, indices).join(' and ')}`;
+      const where = conditionsSpoken(steps, residues);
+      return `${which === '' && where === '' ? 'all ' : ''}${o.kind}${which}${where}`;
+    });
+    return `the product of ${name} over ${over.join(', and ')}`;
   });
   const rest = others.map((p) =>
     p.string.factors.length === 0 ? 'a sign for each cell' : 'a product along the lattice',

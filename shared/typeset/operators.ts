@@ -6,6 +6,7 @@ import type { Cell, Offset } from '../lattice/cells.ts';
 import { coefficientSpoken, coefficientTex } from './coefficients.ts';
 import { labelsOf, type Style, type TypesetContext } from './context.ts';
 import { extendedSpoken, extendedTex } from './extended.ts';
+import { classesTex, conditionsSpoken, conditionsTex, labelTex, residueOf, uniqueOffsets } from './ranges.ts';
 import { fullShells, placed, shellShape, type Placed, type Shape, type ShiftedCell } from './shapes.ts';
 import {
   anchorLetter,
@@ -35,46 +36,21 @@ interface Bucket {
   readonly members: { readonly number: number; readonly index: number; readonly residue: Offset }[];
 }
 
-const residueOf = (offset: Offset, steps: Steps): number[] =>
-  offset.map((c, d) => (steps[d] ? ((c % steps[d]) + steps[d]) % steps[d] : c));
-
-const axis = (letter: string, d: number, dimension: number): string =>
-  dimension === 1 ? letter : `${letter}_{${String(d + 1)}}`;
-
-/** Conditions on the unit cell of the anchor: pinned coordinates and residues; empty for a plain sum over all cells. */
-function conditions(letter: string, steps: Steps, residues: readonly Offset[]): string[] {
-  const n = steps.length;
-  if (steps.every((m) => m === 1)) return [];
-  const one = residues.length === 1 ? residues[0] : undefined;
-  if (one)
-    return steps.flatMap((m, d) =>
-      m === 1
-        ? []
-        : m === 0
-          ? [`${axis(letter, d, n)}=${String(one[d] ?? 0)}`]
-          : [`${axis(letter, d, n)}\\equiv ${String(one[d] ?? 0)}\\,(${String(m)})`],
-    );
-  const list = residues.map((r) => (n === 1 ? String(r[0] ?? 0) : `(${r.join(',')})`)).join(',');
-  const modulus = steps.map(String);
-  return [`${letter}\\equiv ${list}\\;(${n === 1 ? (modulus[0] ?? '') : modulus.join(',')})`];
-}
-
-const labelTex = (label: string): string => (/^[\dA-Z]$/.test(label) ? label : `\\mathrm{${label}}`);
-
 /** What stands under the sum sign: `v`, `l\in 1`, `\langle a,b\rangle`, `p\in\mathrm{triangle}`, with conditions. */
 function underSum(bucket: Bucket, context: TypesetContext): string {
   const { shape } = bucket;
   const letter = anchorLetter(shape);
-  const residues = unique(bucket.members.map((m) => m.residue));
-  const extra = conditions(letter, bucket.steps, residues);
-  const link = usesAnchor(shape) || extra.length > 0 ? 'l=' : '';
+  const extra = conditionsTex(letter, bucket.steps, residuesOf(bucket));
+  const link = usesAnchor(shape) || extra !== '' ? 'l=' : '';
   const pair = pairTex(endLetters(context.species.keys()), shape.shell);
   const variable = hasEnds(shape) ? `${shape.shell === undefined ? link : ''}${pair}` : letter;
-  const range = shape.anchor === 'cell' ? '' : rangeTex(bucket, context);
-  return `${variable}${range}${extra.length === 0 ? '' : `:\\,${extra.join(',\\,')}`}`;
+  const range = rangeTex(bucket, context);
+  return `${variable}${range}${extra === '' ? '' : `:\\,${extra}`}`;
 }
 
-const unique = (offsets: readonly Offset[]): Offset[] => [...new Map(offsets.map((o) => [o.join(','), o])).values()];
+const residuesOf = (bucket: Bucket): Offset[] => uniqueOffsets(bucket.members.map((m) => m.residue));
+
+const indicesOf = (bucket: Bucket): number[] => [...new Set(bucket.members.map((m) => m.index))].sort((a, b) => a - b);
 
 /** All classes that could stand under the sum: those of the kind that carry every species of the shape standing on the anchor itself. */
 function domain(shape: Shape, context: TypesetContext): readonly number[] {
@@ -87,11 +63,9 @@ function domain(shape: Shape, context: TypesetContext): readonly number[] {
 
 function rangeTex(bucket: Bucket, context: TypesetContext): string {
   const { shape } = bucket;
-  if (shape.anchor === 'cell') return '';
-  const indices = [...new Set(bucket.members.map((m) => m.index))].sort((a, b) => a - b);
-  if (indices.length >= domain(shape, context).length) return '';
-  const labels = labelsOf(context.family, shape.anchor, indices).map(labelTex);
-  return `\\in ${labels.length === 1 ? (labels[0] ?? '') : `\\{${labels.join(',')}\\}`}`;
+  return shape.anchor === 'cell'
+    ? ''
+    : classesTex(context, shape.anchor, indicesOf(bucket), domain(shape, context).length);
 }
 
 const isPinned = (steps: Steps): boolean => steps.every((m) => m === 0);
@@ -128,7 +102,7 @@ function bucketSpoken(bucket: Bucket, context: TypesetContext): string {
   const { shape } = bucket;
   const body = shapeSpoken(shape);
   if (isPinned(bucket.steps)) return `${body} at unit cell ${(bucket.members[0]?.residue ?? []).join(' ')}`;
-  const indices = [...new Set(bucket.members.map((m) => m.index))];
+  const indices = indicesOf(bucket);
   const kind =
     shape.shell !== undefined
       ? `pairs of neighbours of order ${String(shape.shell)}`
@@ -139,10 +113,7 @@ function bucketSpoken(bucket: Bucket, context: TypesetContext): string {
     shape.anchor === 'cell' || indices.length >= domain(shape, context).length
       ? ''
       : ` of class ${labelsOf(context.family, shape.anchor, indices).join(' and ')}`;
-  const every = bucket.steps.every((m) => m === 1)
-    ? ''
-    : ` at every ${bucket.steps.map(String).join(' by ')} unit cells`;
-  return `the sum over ${kind}${which}${every} of ${body}`;
+  return `the sum over ${kind}${which}${conditionsSpoken(bucket.steps, residuesOf(bucket))} of ${body}`;
 }
 
 /** Constants: for each unit cell with the number of cells N, or once. */

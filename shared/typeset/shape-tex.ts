@@ -2,9 +2,8 @@ import type { Pauli } from '../algebra/pauli/types.ts';
 import type { CellKind, Offset } from '../lattice/cells.ts';
 import { letters, rank, singular, type Style } from './context.ts';
 import { nameSpoken, nameTex } from './names.ts';
+import { labelTex } from './ranges.ts';
 import type { Shape, SpotGroup } from './shapes.ts';
-
-const lowerLabel = (label: string): string => (/^[\dA-Z]$/.test(label) ? label : `\\mathrm{${label}}`);
 
 /** One Pauli matrix: `s^{x}_{v}`, on the page wrapped in the macro that gives X, Y and Z their ink. */
 export function pauliTex(species: string, pauli: Pauli, place: string, style: Style): string {
@@ -80,18 +79,13 @@ function groupTex(shape: Shape, g: SpotGroup, style: Style, still: Standing): { 
       const { cell, direction, count } = g.spot;
       const start = still ? placeTex(cell.by) : shiftTex(anchor, cell.by);
       const place = `${start}+k${cell.by.length === 1 ? '' : `\\hat{${String(direction + 1)}}`}`;
-      const body = pauliTex(
-        g.species,
-        g.pauli,
-        cell.label === '' ? place : `${place},${lowerLabel(cell.label)}`,
-        style,
-      );
+      const body = pauliTex(g.species, g.pauli, cell.label === '' ? place : `${place},${labelTex(cell.label)}`, style);
       return { order: 3, tex: `\\prod_{k=0}^{${String(count - 1)}}${body}` };
     }
     case 'shifts': {
       const words = g.spot.cells.map((c) => {
         const place = still ? placeTex(c.by) : shiftTex(anchor, c.by);
-        return pauliTex(g.species, g.pauli, c.label === '' ? place : `${place},${lowerLabel(c.label)}`, style);
+        return pauliTex(g.species, g.pauli, c.label === '' ? place : `${place},${labelTex(c.label)}`, style);
       });
       return { order: 2, tex: words.join(' ') };
     }

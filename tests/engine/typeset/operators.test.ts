@@ -3,7 +3,7 @@ import { describe, expect, it } from 'vitest';
 import { Coefficient } from '../../../shared/algebra/numbers/coefficient.ts';
 import { collect } from '../../../shared/algebra/pauli/family.ts';
 import type { Operator } from '../../../shared/algebra/pauli/types.ts';
-import { coefficientText } from '../../../shared/typeset/coefficients.ts';
+import { coefficientSpoken, coefficientText } from '../../../shared/typeset/coefficients.ts';
 import { extendedTex } from '../../../shared/typeset/extended.ts';
 import { lawTex, typesetContext } from '../../../shared/typeset/declarations.ts';
 import { nameTex } from '../../../shared/typeset/names.ts';
@@ -62,6 +62,13 @@ describe('coefficients and names', () => {
     // the order of couplings in a product and a sum is the canonical one
     expect([...told].sort().join('')).toBe([...tex].sort().join(''));
     expect(() => katex.renderToString(told, { throwOnError: true })).not.toThrow();
+  });
+  it('are said with one stroke, the sign apart', () => {
+    const c = over(S.symbol('J').pow(2) ?? C.zero, C.rational(-16).mul(S.symbol('Jx').pow(3) ?? C.one));
+    expect(coefficientSpoken(c)).toEqual({ negative: true, words: 'J squared over 16 Jx to the power 3' });
+    expect(coefficientSpoken(C.rational(3, 5).mul(S.symbol('h')))).toEqual({ negative: false, words: '3 h over 5' });
+    expect(coefficientSpoken(C.one)).toEqual({ negative: false, words: '' });
+    expect(coefficientSpoken(S.symbol('J').sub(S.symbol('h'))).words).toMatch(/^the quantity /);
   });
   it.each([
     ['J', 'J'],
