@@ -1,10 +1,12 @@
-import { actions, type Action, type Role, type Visibility } from '../shared/contracts/rights.ts';
+import { actions, type Action, type Role, type Scope, type Visibility } from '../shared/contracts/rights.ts';
 
 /** Where a person stands: on the installation, and on one notebook or one linked edition if the question is about one. */
 export interface Standing {
   /** Null for a visitor. */
   readonly person: string | null;
   readonly steward: boolean;
+  /** Of the access token that was shown; left out where a person asks from a page. */
+  readonly scopes?: readonly Scope[];
   readonly on: StandingOn | null;
 }
 
@@ -32,17 +34,21 @@ const writers: readonly Hat[] = ['coauthor', 'owner'];
 const table: Readonly<Record<Action, readonly Hat[]>> = {
   visit: ['anyone'],
   keep: ['person'],
+  make: ['person'],
+  account: ['person'],
   steward: ['steward'],
   read: ['guest', ...readers],
   export: ['guest', ...readers],
   fork: readers,
   leave: ['reader', 'referee', 'coauthor'],
+  follow: ['reader', 'referee', ...writers],
   remark: ['referee', ...writers],
   judge: ['referee'],
   edit: writers,
   publish: writers,
   adopt: writers,
   invite: ['owner'],
+  transfer: ['owner'],
   show: ['owner'],
   link: ['owner'],
   delete: ['owner'],
@@ -50,6 +56,13 @@ const table: Readonly<Record<Action, readonly Hat[]>> = {
 
 /** What a link opens is one edition, to be looked at. */
 const byLink: ReadonlySet<Action> = new Set<Action>(['read', 'export']);
+
+/** What an access token of each scope opens, of what its person may. A token manages neither accounts nor rights. */
+const scopeTable: Readonly<Record<Scope, readonly Action[]>> = {
+  read: ['visit', 'keep', 'read', 'export'],
+  write: ['make', 'fork', 'remark', 'judge', 'edit'],
+  publish: ['publish', 'adopt'],
+};
 
 function hats(standing: Standing): readonly Hat[] {
   const { person, steward, on } = standing;
@@ -65,6 +78,7 @@ function hats(standing: Standing): readonly Hat[] {
 /** Whether someone who stands there may do that. Pure; the only place that decides it. */
 export function may(standing: Standing, action: Action): boolean {
   if (standing.on !== null && standing.on.linked !== null && !byLink.has(action)) return false;
+  if (standing.scopes?.some((scope) => scopeTable[scope].includes(action)) === false) return false;
   return hats(standing).some((hat) => table[action].includes(hat));
 }
 

@@ -10,8 +10,8 @@ import { type Context, personOf } from './context.ts';
 export const standInProvider = 'github-stand-in';
 
 export async function me({ database }: Context, standing: Standing): Promise<Me> {
-  const person = standing.person === null ? null : await findAccount(database, standing.person);
-  return { person, may: actionsOf(standing) };
+  const account = standing.person === null ? null : await findAccount(database, standing.person);
+  return { person: account && { ...account, unread: 0 }, may: actionsOf(standing) };
 }
 
 /** The person who signs in with an account elsewhere; made at the first time. Returns the person's id. */

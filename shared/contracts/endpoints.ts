@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { accountRows } from './account-rows.ts';
 import { bounds, idSchema, pageOf, pageQuery, plainText } from './common.ts';
 import { editionSchema, editionSummarySchema, linkSchema, publishSchema } from './editions.ts';
 import {
@@ -13,79 +14,15 @@ import {
   notebookSummarySchema,
   titleSchema,
 } from './notebooks.ts';
-import { addMemberSchema, memberSchema, meSchema, sessionSchema, signInSchema } from './people.ts';
-import { type Action, grantedRoleSchema, visibilitySchema } from './rights.ts';
+import { addMemberSchema, memberSchema } from './people.ts';
+import { grantedRoleSchema, visibilitySchema } from './rights.ts';
+import { editionNumber, ofEdition, ofEntry, ofLink, ofNotebook, row, search, silence } from './row.ts';
 
-/** Header that every request other than GET carries, with any value: a foreign page cannot add it without asking. */
-export const writeHeader = 'x-gaugewright';
-
-export type Method = 'GET' | 'POST' | 'PUT' | 'PATCH' | 'DELETE';
-
-/**
- * One thing that the server can be asked. `of` says whose rights decide the action: the installation's, those on the notebook
- * in `:notebook`, or those that a share link's `:token` gives. `form`: what the answer is, `json`, `text` (text/plain) or `events`
- * (server-sent events, see liveEvents). `ifMatch`: the request names the version it started from in If-Match ("3").
- * Unreadable things are 404, readable ones on which the action is not allowed 403 (401 for visitors).
- */
-export interface Endpoint<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodType, A extends z.ZodType> {
-  readonly method: Method;
-  readonly path: string;
-  readonly action: Action;
-  readonly of: 'installation' | 'notebook' | 'link';
-  readonly params: P;
-  readonly query: Q;
-  readonly body: B;
-  readonly answer: A;
-  readonly status: 200 | 201 | 202 | 204;
-  readonly form: 'json' | 'text' | 'events';
-  readonly ifMatch: boolean;
-}
-
-const none = z.object({});
-type None = typeof none;
-const silence = z.void();
-
-type Given<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodType, A extends z.ZodType> = Pick<
-  Endpoint<P, Q, B, A>,
-  'action' | 'of' | 'answer'
-> &
-  Partial<Omit<Endpoint<P, Q, B, A>, 'method' | 'path' | 'action' | 'of' | 'answer'>>;
-
-function row<A extends z.ZodType, P extends z.ZodType = None, Q extends z.ZodType = None, B extends z.ZodType = None>(
-  what: `${Method} /${string}`,
-  given: Given<P, Q, B, A>,
-): Endpoint<P, Q, B, A> {
-  const [method, path] = what.split(' ') as [Method, string];
-  const defaults = { params: none, query: none, body: none, status: 200, form: 'json', ifMatch: false };
-  // The cast stands for the default type arguments, which TypeScript cannot tie to the default values.
-  return { ...defaults, ...given, method, path } as unknown as Endpoint<P, Q, B, A>;
-}
-
-const ofNotebook = { of: 'notebook', params: z.object({ notebook: idSchema }) } as const;
-const ofEntry = { of: 'notebook', params: z.object({ notebook: idSchema, entry: idSchema }) } as const;
-const editionNumber = z.coerce.number().int().min(1).max(2_000_000_000);
-const ofEdition = { of: 'notebook', params: z.object({ notebook: idSchema, edition: editionNumber }) } as const;
-const ofLink = { of: 'link', params: z.object({ token: z.string().max(100) }) } as const;
-const search = { ...pageQuery, q: plainText(200).default('') };
+export { type Endpoint, type Method, writeHeader } from './row.ts';
 
 /** The table. Client calls, server routes and the matrix test of rights all walk it. */
 export const endpoints = {
-  // people and sign-in
-  getMe: row('GET /api/me', { action: 'visit', of: 'installation', answer: meSchema }),
-  getSignIn: row('GET /api/sign-in', { action: 'visit', of: 'installation', answer: signInSchema }),
-  signOut: row('POST /api/sign-out', { action: 'visit', of: 'installation', answer: silence, status: 204 }),
-  listSessions: row('GET /api/sessions', {
-    action: 'keep',
-    of: 'installation',
-    answer: z.object({ items: z.array(sessionSchema) }),
-  }),
-  endSession: row('DELETE /api/sessions/:session', {
-    action: 'keep',
-    of: 'installation',
-    params: z.object({ session: z.string().max(100) }),
-    answer: silence,
-    status: 204,
-  }),
+  ...accountRows,
 
   // shelf and public notebooks, newest change first
   listShelf: row('GET /api/shelf', {
@@ -103,7 +40,7 @@ export const endpoints = {
 
   // notebooks
   createNotebook: row('POST /api/notebooks', {
-    action: 'keep',
+    action: 'make',
     of: 'installation',
     body: newNotebookSchema,
     answer: notebookSchema,
@@ -111,7 +48,7 @@ export const endpoints = {
   }),
   /** Makes a notebook of a `.gw` text; its title is the text's own, else the one given, else the first line of prose. */
   importNotebook: row('POST /api/imports', {
-    action: 'keep',
+    action: 'make',
     of: 'installation',
     body: z.object({ title: titleSchema.optional(), source: plainText(bounds.sourceCharacters) }),
     answer: notebookSchema,

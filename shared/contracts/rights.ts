@@ -22,22 +22,31 @@ export const visibilitySchema = z.enum(visibilities);
 export const actions = [
   // of the installation
   'visit', // look around without an account: sign-in, public notebooks
-  'keep', // have a shelf: make, import and list one's own notebooks; one's own account
+  'keep', // have a shelf, and notices
+  'make', // make and import notebooks of one's own
+  'account', // one's own account: profile, ways in, sessions, tokens, invitations
   'steward', // accounts, job limits, health
   // of a notebook
   'read',
   'export',
   'fork',
   'leave', // give up one's own role
+  'follow', // choose how notices about it come
   'remark',
   'judge', // give a verdict
   'edit', // write entries, title, authors
   'publish', // seal an edition
   'adopt', // take variants of a fork over
   'invite', // people and their roles
+  'transfer', // make someone else the owner
   'show', // visibility
   'link', // share one edition by link
   'delete',
 ] as const;
 export type Action = (typeof actions)[number];
 export const actionSchema = z.enum(actions);
+
+/** What a personal access token can be good for; never one's account, other people's rights or the installation. */
+export const scopes = ['read', 'write', 'publish'] as const;
+export type Scope = (typeof scopes)[number];
+export const scopeSchema = z.enum(scopes);

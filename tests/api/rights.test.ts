@@ -16,12 +16,14 @@ const expected: Readonly<Record<Visibility, Partial<Record<Action, string>>>> = 
     export: '--xxxx',
     fork: '--xxxx',
     leave: '--xxx-',
+    follow: '--xxxx',
     remark: '---xxx',
     judge: '---x--',
     edit: '----xx',
     publish: '----xx',
     adopt: '----xx',
     invite: '-----x',
+    transfer: '-----x',
     show: '-----x',
     link: '-----x',
     delete: '-----x',
@@ -31,12 +33,14 @@ const expected: Readonly<Record<Visibility, Partial<Record<Action, string>>>> = 
     export: 'xxxxxx',
     fork: '-xxxxx',
     leave: '--xxx-',
+    follow: '--xxxx',
     remark: '---xxx',
     judge: '---x--',
     edit: '----xx',
     publish: '----xx',
     adopt: '----xx',
     invite: '-----x',
+    transfer: '-----x',
     show: '-----x',
     link: '-----x',
     delete: '-----x',
@@ -54,7 +58,7 @@ describe('the table of rights', () => {
   });
 
   it('names every action of a notebook, and grants what the design says, to stewards no more', () => {
-    const ofNotebook = actions.filter((action) => !['visit', 'keep', 'steward'].includes(action));
+    const ofNotebook = actions.filter((action) => !['visit', 'keep', 'make', 'account', 'steward'].includes(action));
     for (const visibility of visibilities) {
       expect(Object.keys(expected[visibility]).sort()).toEqual([...ofNotebook].sort());
       for (const action of ofNotebook) {
@@ -148,7 +152,7 @@ describe('every row of the table of endpoints', () => {
     const { of, action } = endpoints[name];
     if (of === 'link' || action === 'visit') return 'allowed';
     const refusal = column === 'visitor' ? 401 : 403;
-    if (of === 'installation') return action === 'keep' && column !== 'visitor' ? 'allowed' : refusal;
+    if (of === 'installation') return action !== 'steward' && column !== 'visitor' ? 'allowed' : refusal;
     if (!allowed(visibility, 'read', column)) return 404;
     return allowed(visibility, action, column) ? 'allowed' : refusal;
   }
