@@ -14,7 +14,7 @@ const signs = ['', '\\mathrm{i}\\,', '-', '-\\mathrm{i}\\,'] as const;
 const spokenSigns = ['', 'i times ', 'minus ', 'minus i times '] as const;
 
 /** Strings of a declared law as a named shape: `A_{v}`. */
-export const lawShape = (law: LawValue): NamedShape => ({
+const lawShape = (law: LawValue): NamedShape => ({
   name: law.name,
   kind: law.parameter.kind,
   instances: law.families.map((f) => ({
@@ -31,7 +31,7 @@ export const lawShape = (law: LawValue): NamedShape => ({
 });
 
 /** A declared operator with a parameter as a named shape, where it is one Pauli string for each class of its cells. */
-export function operatorShape(
+function operatorShape(
   value: OperatorValue,
   { family }: Pick<TypesetContext, 'family'>,
   budget: Budget,
@@ -84,26 +84,19 @@ export function typesetContext(
 }
 
 /** A signed Pauli product at its anchor's letter: `s^{z}_{a} s^{z}_{b}`, `-\prod_{l\ni v} g^{x}_{l}`. */
-export function stringTex(string: LocalString, context: TypesetContext, style: Style = 'plain'): string {
+function stringTex(string: LocalString, context: TypesetContext, style: Style = 'plain'): string {
   if (string.factors.length === 0) return `${signs[string.phase]}1`;
   const steps = Array<number>(context.family.dimension).fill(1);
   return `${signs[string.phase]}${shapeTex(placed(string, steps, context).shape, style, { species: context.species.keys() })}`;
 }
 
-export function stringSpoken(string: LocalString, context: TypesetContext): string {
+function stringSpoken(string: LocalString, context: TypesetContext): string {
   if (string.factors.length === 0) return `${spokenSigns[string.phase]}1`;
   return `${spokenSigns[string.phase]}${shapeSpoken(placed(string, Array<number>(context.family.dimension).fill(1), context).shape)}`;
 }
 
 export const sideTex = (side: LocalString | Extended, context: TypesetContext, style: Style = 'plain'): string =>
   isExtended(side) ? extendedTex(side, context, style) : stringTex(side, context, style);
-
-export const sideSpoken = (side: LocalString | Extended, context: TypesetContext): string =>
-  isExtended(side) ? extendedSpoken(side, context) : stringSpoken(side, context);
-
-/** `left \mapsto right` of a dictionary rule. */
-export const ruleTex = (rule: DictionaryRule, context: TypesetContext, style: Style = 'plain'): string =>
-  `${sideTex(rule.left, context, style)} \\mapsto ${sideTex(rule.right, context, style)}`;
 
 /** `A_{v} = \prod_{l\ni v} g^{x}_{l} = +1`, one formula for each shape that its classes have. */
 export function lawTex(law: LawValue, context: TypesetContext, style: Style = 'plain'): string {

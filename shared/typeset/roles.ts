@@ -151,7 +151,7 @@ const commute = (a: { string: LocalString; steps: Steps }, b: Family): boolean =
  * of no flux); without laws it is the single-link matrix of the model that differs from that of its plaquette terms. Undefined where
  * nothing tells: then every single-link term is electric.
  */
-export function electricPauli(context: RoleContext): Pauli | undefined {
+function electricPauli(context: RoleContext): Pauli | undefined {
   const obeyed = context.laws.filter((law) => context.operator.families.every((f) => commute(law, f)));
   for (const kind of ['vertices', 'plaquettes'] as const)
     for (const law of obeyed) {

@@ -12,7 +12,7 @@ export function pauliTex(species: string, pauli: Pauli, place: string, style: St
 }
 
 /** `v+\hat{1}`, `v-2\hat{2}`; on a chain `v+3`. */
-export function shiftTex(letter: string, by: Offset): string {
+function shiftTex(letter: string, by: Offset): string {
   if (by.length === 1) {
     const c = by[0] ?? 0;
     return c === 0 ? letter : `${letter}${c > 0 ? '+' : '-'}${String(Math.abs(c))}`;

@@ -26,8 +26,8 @@ export interface Use {
   readonly by: Offset;
 }
 
-export const hasX = (p: Pauli): boolean => p !== 'z';
-export const hasZ = (p: Pauli): boolean => p !== 'x';
+const hasX = (p: Pauli): boolean => p !== 'z';
+const hasZ = (p: Pauli): boolean => p !== 'x';
 
 /** Numbers for coordinates and their tracks, given as they occur. */
 export class Numbering {

@@ -49,7 +49,7 @@ export function exactUse(term: LocalString, shift: Steps, rules: readonly Dictio
 }
 
 /** Product of the left sides (translated) of uses, in order. */
-export const leftProduct = (uses: readonly Use[], rules: readonly DictionaryRule[]): LocalString =>
+const leftProduct = (uses: readonly Use[], rules: readonly DictionaryRule[]): LocalString =>
   uses.reduce((all, u) => {
     const left = rules[u.generator]?.left;
     return left && !isExtended(left) ? multiplyStrings(all, translateString(left, u.by)) : all;

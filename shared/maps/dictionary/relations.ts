@@ -6,7 +6,7 @@ import { onSize, type SizeFindings, type SizeProblem } from './sizes.ts';
 /** Findings on the declared size, computed once for each declaration: sentences of many images ask for them. */
 const declaredSize = new WeakMap<DictionaryDeclaration, SizeFindings | SizeProblem>();
 
-export function onDeclaredSize(
+function onDeclaredSize(
   declaration: DictionaryDeclaration,
   context: Context,
   budget: Budget,

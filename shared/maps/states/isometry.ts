@@ -142,7 +142,7 @@ const table: Readonly<Record<string, readonly [letter: string, phase: number]>> 
 };
 
 /** Product of two strings of letters: i^phase times letters. */
-export function timesLetters(a: string, b: string): { readonly letters: string; readonly phase: number } {
+function timesLetters(a: string, b: string): { readonly letters: string; readonly phase: number } {
   let phase = 0;
   const letters = [...a].map((p, k) => {
     const q = b[k] ?? 'I';
