@@ -223,9 +223,14 @@ function twisted(node: CallNode, scene: Scene): Operator {
   if (direction < 1 || direction > scene.dimension)
     return fail(say.direction(String(direction), scene.dimension), directionNode);
   if (!scene.lattice.periodic[direction - 1]) return fail(say.twistOpen(direction), directionNode);
-  const operator = asOperator(scene.amount(modelNode, scene), scene, modelNode);
+  const inner: Scene = { ...scene, seams: [] };
+  const operator = asOperator(scene.amount(modelNode, inner), inner, modelNode);
   if (scene.within) return fail(say.wholeInside(textOf(node, scene)), node);
-  scene.seams.push({ symmetry: symmetry.extended, direction });
+  // P is its own inverse: a second equal seam takes the first away.
+  const seam = { symmetry: symmetry.extended, direction };
+  const others = inner.seams.filter((s) => JSON.stringify(s) !== JSON.stringify(seam));
+  const odd = (inner.seams.length - others.length) % 2 === 0;
+  scene.seams.push(...others, ...(odd ? [seam] : []));
   return operator;
 }
 

@@ -10,7 +10,7 @@ import type {
   Word,
 } from '../../grammar/syntax.ts';
 
-import { gateArity, gateNames } from './gates.ts';
+import { gateNamed, gates as gateTable } from '../algebra/pauli/clifford.ts';
 import type { Coefficient } from '../algebra/numbers/coefficient.ts';
 import { canonicalExtended } from '../algebra/pauli/extended.ts';
 import { siteKey } from '../algebra/pauli/string.ts';
@@ -19,7 +19,8 @@ import { options } from './arithmetic.ts';
 import { instances } from './binding.ts';
 import { dotted, isOnSite } from './calls.ts';
 import { asSymmetry, operatorOf, signedProduct } from './declare-operators.ts';
-import { amount, siteOf } from './expand.ts';
+import { amount } from './expand.ts';
+import { siteOf } from './spins.ts';
 import { fail, say, whatIsIt } from './problem.ts';
 import { textOf, type Scene } from './scene.ts';
 import type {
@@ -134,8 +135,15 @@ const siteAt = (place: SpinPlace, scene: Scene): Site => ({
 
 function circuitLayer(rule: Rule & { type: 'gate' }, scene: Scene, placeOf: PlaceOf): CircuitLayer {
   const { text } = rule.gate;
-  const arity = gateArity(text);
-  if (arity === undefined) return fail(say.gate(text, gateNames), rule.gate);
+  const arity = gateNamed(text)?.arity;
+  if (arity === undefined)
+    return fail(
+      say.gate(
+        text,
+        gateTable.map((g) => g.name),
+      ),
+      rule.gate,
+    );
   if (arity !== rule.targets.length) return fail(say.gateTargets(text, arity, rule.targets.length), rule);
   const gates = instances(rule.binders, 'sum', scene, (inner) => {
     const targets = rule.targets.map((place) => siteAt(place, inner));

@@ -8,6 +8,7 @@ import { asOperator, options, phaseOf, total } from './arithmetic.ts';
 import { instances } from './binding.ts';
 import { dotted, moveOperator, type DeclaredOperator, type Standing } from './calls.ts';
 import { amount } from './expand.ts';
+import { speciesNamed } from './named-species.ts';
 import { fail, say } from './problem.ts';
 import { cellSet } from './sets.ts';
 import { settled, textOf, type Amount, type Scene } from './scene.ts';
@@ -88,7 +89,7 @@ export function declareModel(node: Of<'model'>, heading: Heading, scene: Scene, 
     ...heading,
     what: 'model',
     operator,
-    species: [...speciesOfOperator(operator)].sort(),
+    species: [...new Set([...speciesOfOperator(operator), ...speciesNamed(body, scene)])].sort(),
     image: imageOf(body, scene),
     pieces,
     seams: [...new Map(scene.seams.map((s) => [`${s.direction} ${JSON.stringify(s.symmetry)}`, s])).values()],

@@ -1,9 +1,8 @@
-import type { BigNode, CallNode, Expression, NameNode, ProductNode, SpinNode, SumNode } from '../../grammar/syntax.ts';
+import type { BigNode, CallNode, Expression, NameNode, ProductNode, SumNode } from '../../grammar/syntax.ts';
 import { Coefficient } from '../algebra/numbers/coefficient.ts';
 import { isOrderFree } from '../algebra/pauli/extended.ts';
 import { collect, isPinned, notHermitian, spread } from '../algebra/pauli/family.ts';
-import { newString } from '../algebra/pauli/string.ts';
-import type { Factor, Family, Operator, ProductPart } from '../algebra/pauli/types.ts';
+import type { Operator, ProductPart } from '../algebra/pauli/types.ts';
 import { geometryFunction } from '../lattice/geometry.ts';
 import {
   add,
@@ -22,10 +21,10 @@ import {
 import { instances, type Instance } from './binding.ts';
 import { applyCall, coupling, namedValue } from './calls.ts';
 import { namedCell, partOf, shiftCell } from './cells.ts';
-import { fail, say, whatIsIt } from './problem.ts';
-import { cellArgument, cellWords, isKind } from './sets.ts';
+import { fail, say } from './problem.ts';
+import { isKind } from './sets.ts';
+import { spin } from './spins.ts';
 import {
-  Aperiodic,
   integerAmount,
   numberAmount,
   operatorAmount,
@@ -124,80 +123,6 @@ function powerOf(baseNode: Expression, exponentNode: Expression, scene: Scene): 
     return multiply(factor, power(argument, exponent, scene, exponentNode), scene, baseNode);
   }
   return power(amount(baseNode, scene), exponent, scene, exponentNode);
-}
-
-// ------------------------------------------------------------------ spins
-
-/** Fails or asks for another way where a cell does not go along with the frame it stands in. */
-function demandMoving(cell: MovingCell, scene: Scene, place: Expression): void {
-  if (cell.unknown) fail(say.notACell(textOf(place, scene)), place);
-  if (scene.frame?.some((moves, d) => moves && !cell.moves[d])) throw new Aperiodic(place);
-}
-
-const pauliTerms: Readonly<
-  Record<'x' | 'y' | 'z' | 'n' | '+' | '-', readonly (readonly [Coefficient, 'x' | 'y' | 'z' | undefined])[]>
-> = (() => {
-  const half = Coefficient.rational(1, 2);
-  const i = half.mul(Coefficient.i);
-  return {
-    x: [[Coefficient.one, 'x']],
-    y: [[Coefficient.one, 'y']],
-    z: [[Coefficient.one, 'z']],
-    n: [
-      [half, undefined],
-      [half.neg(), 'z'],
-    ],
-    '+': [
-      [half, 'x'],
-      [i, 'y'],
-    ],
-    '-': [
-      [half, 'x'],
-      [i.neg(), 'y'],
-    ],
-  };
-})();
-
-/** The spin a species has on a cell; fails where it does not live there. */
-export function siteOf(
-  species: { readonly text: string; readonly start: number; readonly end: number },
-  cellNode: Expression,
-  scene: Scene,
-): MovingCell {
-  const value = scene.values.find(species.text);
-  if (value?.what !== 'spins')
-    return fail(
-      value ? say.notSpins(species.text, whatIsIt[value.what] ?? value.what) : say.unknownName(species.text, undefined),
-      species,
-    );
-  const cell = cellArgument(cellNode, scene);
-  if (cell.cell.kind !== value.kind || !value.classes.includes(cell.cell.index)) {
-    const classes = scene.family[value.kind];
-    const all = value.classes.length === classes.length;
-    const lives = all
-      ? value.kind
-      : value.classes.map((k) => `${value.kind}.${classes[k]?.labels[0] ?? ''}`).join(', ');
-    return fail(say.speciesCell(species.text, lives, cellWords(cell.cell, scene)), cellNode);
-  }
-  demandMoving(cell, scene, cellNode);
-  if (scene.cut && !cell.optional) return fail(say.cutFactor(), cellNode);
-  return cell;
-}
-
-function spin(node: SpinNode, scene: Scene): Amount {
-  const at = siteOf(node.species, node.cell, scene);
-  const site = {
-    species: node.species.text,
-    cell: at.cell,
-    ...(at.optional && scene.open ? { optional: true as const } : {}),
-  };
-  const steps = new Array<number>(scene.dimension).fill(0);
-  const families = pauliTerms[node.operator].map(([coefficient, pauli]): Family => {
-    const factors: Factor[] = pauli ? [{ ...site, pauli }] : [];
-    // a constant that came from a spin is there only where the spin is
-    return { coefficient, string: newString(factors), steps, needs: scene.open && !pauli ? [at.cell] : [] };
-  });
-  return operatorAmount({ families, extended: [] });
 }
 
 // ------------------------------------------------------------------ products and sums
