@@ -1,13 +1,13 @@
 import type { Extended, LocalString } from '../algebra/pauli/types.ts';
 import type { MapValue, Values } from '../language/values.ts';
-import { newBudget, type Budget } from '../limits.ts';
+import { newBudget } from '../limits.ts';
 import { isStraight, sizeKey, straight, sizeText } from '../lattice/cluster.ts';
 import type { Lattice, Size } from '../lattice/cells.ts';
 import type { Context } from '../maps/context.ts';
 import { keptCommutation, type CommutationBreak, type KeptCommutation } from '../maps/dictionary/commutation.ts';
 import { isExtended, translateExtended } from '../maps/dictionary/decompose.ts';
 import type { DictionaryDeclaration } from '../maps/dictionary/declaration.ts';
-import { localRelations } from '../maps/dictionary/local.ts';
+import { localRelations, type LocalRelations } from '../maps/dictionary/local.ts';
 import { onSize, type SignBreak, type SizeFindings } from '../maps/dictionary/sizes.ts';
 import { extendedPhrase, stringPhrase } from '../maps/phrases.ts';
 import { translateString } from '../algebra/pauli/string.ts';
@@ -178,7 +178,11 @@ export function dictionaryFindings(
   const all = decided.flatMap(({ found }) => ('problem' in found ? [] : [found]));
   const [main = lattice.size] = sizes;
   const declared = all.find((found) => found.size === sizeText(main));
-  const signs = kept.kept === false || !declared ? false : !declared.signBreak && !declared.commutationBroken;
+  // Translates are moved freely only where every line goes everywhere; else the sizes decide alone.
+  const moving = declaration.rules.every((rule) => rule.steps.every((m) => m > 0));
+  const local = kept.kept !== false && moving ? localRelations(declaration, context, budget) : undefined;
+  const signs =
+    kept.kept === false || !declared ? false : !local?.signBreak && !declared.signBreak && !declared.commutationBroken;
   const figures = {
     commutation: kept.kept === true || (kept.kept === 'depends' && declared?.commutationBroken === undefined),
     relations: declared ? declared.leftRelations : 0,
@@ -194,14 +198,23 @@ export function dictionaryFindings(
       decided.flatMap(({ found }) => ('problem' in found ? [found.problem] : []))[0] ?? 'no size was decided';
     return [first, openFinding(`product relations of ${value.name}`, problem, { ...figures })];
   }
-  if (declared.signBreak) {
+  if (local?.signBreak ?? declared.signBreak) {
+    const good = all.filter((found) => !found.signBreak && !found.commutationBroken).map((found) => found.size);
     return [
       first,
       {
         evidence: { kind: 'counterexample' },
-        statement: `${value.name} does not keep the sign of a product relation, so it is no duality`,
+        statement: `${value.name} does not keep the sign of a product relation, so it is no duality${local?.signBreak ? '' : ` on ${declared.size}`}`,
         figures,
-        witness: signWitness(declared.signBreak, declaration, context, declared.size),
+        witness: declared.signBreak
+          ? signWitness(declared.signBreak, declaration, context, declared.size)
+          : local?.signBreak
+            ? signWitness(local.signBreak, declaration, context, 'every size')
+            : {},
+        cautions:
+          local?.signBreak || good.length === 0
+            ? []
+            : [`The relation closes around the lattice; on ${good.join(', ')} all signs are kept.`],
         sources: [source],
       },
     ];
@@ -220,22 +233,16 @@ export function dictionaryFindings(
       ? []
       : ['The declared size is tilted; the small sizes decided besides it are straight.'];
   const holds = holdsFinding(value.name, all, declared, figures);
-  const local = localFinding(value.name, declaration, context, figures, budget);
-  return [first, ...local, { ...holds, cautions: [...(holds.cautions ?? []), ...tilted] }];
+  return [
+    first,
+    ...localFinding(value.name, local, figures),
+    { ...holds, cautions: [...(holds.cautions ?? []), ...tilted] },
+  ];
 }
 
 /** Local relations of the lines that repeat everywhere, for every size; nothing where a limit ends the search or a line stands still. */
-function localFinding(
-  name: string,
-  declaration: DictionaryDeclaration,
-  context: Context,
-  figures: Record<string, unknown>,
-  budget: Budget,
-): Finding[] {
-  const moving = declaration.rules.every((rule) => rule.steps.every((m) => m > 0));
-  const local = moving ? localRelations(declaration, context, budget) : undefined;
-  if (!local || local.signBreak || local.evidence.length === 0 || local.evidence.length < local.left + local.right)
-    return [];
+function localFinding(name: string, local: LocalRelations | undefined, figures: Record<string, unknown>): Finding[] {
+  if (!local || local.evidence.length === 0 || local.evidence.length < local.left + local.right) return [];
   const forced = (laws: typeof local.rightLaws): string => list([...new Set(laws.map((law) => law.text))]);
   return [
     {

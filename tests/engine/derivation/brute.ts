@@ -204,7 +204,7 @@ export const wordOn = (lattice: TestLattice, species: readonly string[], most: n
     });
 
 /** A word as a product that moves with the cell `v` of class `home`. */
-export function phrase(word: Word, lattice: TestLattice, home: string): string {
+export function phrase(word: Word, home: string): string {
   const axes = ['x', 'y', 'z'];
   const factors = word.places.map(({ at, offset, pauli: p }) => {
     const [species = '', cls = ''] = at.split('.');
@@ -220,11 +220,11 @@ export const domain = (home: string): string => (home === '' ? 'vertices' : `ver
 export const homeOf = (word: Word): string => word.places[0]!.at.split('.')[1] ?? '';
 
 /** A law of a word; its sign is the value that the law declares. */
-export const lawText = (name: string, word: Word, lattice: TestLattice): string =>
-  `law ${name}(v: ${domain(homeOf(word))}) = ${phrase(word, lattice, homeOf(word))}${word.sign === 1 ? '' : ' is -1'}`;
+export const lawText = (name: string, word: Word): string =>
+  `law ${name}(v: ${domain(homeOf(word))}) = ${phrase(word, homeOf(word))}${word.sign === 1 ? '' : ' is -1'}`;
 /** A translation-invariant sum of a word. */
-export const sumText = (coefficient: string, word: Word, lattice: TestLattice): string =>
-  `${word.sign === 1 ? '+' : '-'} ${coefficient} sum(v: ${domain(homeOf(word))}) ${phrase(word, lattice, homeOf(word))}`;
+export const sumText = (coefficient: string, word: Word): string =>
+  `${word.sign === 1 ? '+' : '-'} ${coefficient} sum(v: ${domain(homeOf(word))}) ${phrase(word, homeOf(word))}`;
 
 export const derive = (text: string): Report => newDerivation().derive(text);
 

@@ -60,8 +60,8 @@ const source = (
   [
     lattice.text(size),
     ...species.map((s) => `spins ${s} on vertices`),
-    `model m = ${terms.map((t) => sumText('1', t, lattice)).join(' ')}`,
-    lawText('G', law, lattice),
+    `model m = ${terms.map((t) => sumText('1', t)).join(' ')}`,
+    lawText('G', law),
     'audit commute m with G',
     '',
   ].join('\n');

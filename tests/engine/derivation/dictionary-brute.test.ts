@@ -25,11 +25,10 @@ interface Line {
   readonly right: Word;
 }
 
-const signed = (word: Word, lattice: TestLattice): string =>
-  `${word.sign === 1 ? '' : '- '}${phrase(word, lattice, '')}`;
-const mapText = (lines: readonly Line[], lattice: TestLattice): string[] => [
+const signed = (word: Word): string => `${word.sign === 1 ? '' : '- '}${phrase(word, '')}`;
+const mapText = (lines: readonly Line[]): string[] => [
   'map n from s to m',
-  ...lines.map(({ left, right }) => `  ${signed(left, lattice)} => ${signed(right, lattice)} for v: vertices`),
+  ...lines.map(({ left, right }) => `  ${signed(left)} => ${signed(right)} for v: vertices`),
 ];
 
 const straight = (dimension: number, extent: number): number[][] =>
@@ -147,7 +146,7 @@ describe.each(['chain', 'square', 'triangular'])('dictionaries on the %s lattice
           lattice.text(declared.text),
           'spins s on vertices',
           'spins m on vertices',
-          ...mapText(lines, lattice),
+          ...mapText(lines),
           'audit map n',
           '',
         ].join('\n');
@@ -159,8 +158,10 @@ describe.each(['chain', 'square', 'triangular'])('dictionaries on the %s lattice
           expect(refuted.length).toBeGreaterThan(0);
           return;
         }
-        const sizes = [declared.periods, ...[1, 2, 3, 4].map((extent) => straight(dimension, extent))];
-        const signs = sizes.every((periods) => onTorus(lines, periods).signs);
+        // the declared size decides; a torus so large that nothing local wraps shows what holds everywhere
+        const signs = [declared.periods, straight(dimension, dimension === 1 ? 12 : 7)].every(
+          (periods) => onTorus(lines, periods).signs,
+        );
         if (signs) seen.right++;
         else seen.sign++;
         expect(refuted).toHaveLength(signs ? 0 : 1);
@@ -201,12 +202,12 @@ describe('the duality of the ring, carried through circuits', () => {
             `lattice chain torus ${String(n)}`,
             'spins s on vertices',
             'spins m on vertices',
-            ...mapText(lines, lattice),
-            `symmetry even = ${sign(flip!.left, n)}prod(v: vertices) ${phrase(flip!.left, lattice, '')}`,
-            `symmetry walls = ${sign(bond!.right, n)}prod(v: vertices) ${phrase(bond!.right, lattice, '')}`,
-            `model left = ${sign(bond!.left, 1)}${String(j)}/3 sum(v: vertices) ${phrase(bond!.left, lattice, '')} ${
+            ...mapText(lines),
+            `symmetry even = ${sign(flip!.left, n)}prod(v: vertices) ${phrase(flip!.left, '')}`,
+            `symmetry walls = ${sign(bond!.right, n)}prod(v: vertices) ${phrase(bond!.right, '')}`,
+            `model left = ${sign(bond!.left, 1)}${String(j)}/3 sum(v: vertices) ${phrase(bond!.left, '')} ${
               flip!.left.sign === 1 ? '+' : '-'
-            } ${String(h)}/4 sum(v: vertices) ${phrase(flip!.left, lattice, '')}`,
+            } ${String(h)}/4 sum(v: vertices) ${phrase(flip!.left, '')}`,
             'model right = n(left)',
             'audit map n',
             `audit spectrum left [even = +1] ~ right [walls = +1] on ${String(n)} levels 64`,

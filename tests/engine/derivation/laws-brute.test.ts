@@ -133,7 +133,7 @@ describe.each(Object.keys(lattices))('laws on the %s lattice', (name) => {
         const text = [
           lattice.text(on[0]?.text ?? '1'),
           ...species.map((s) => `spins ${s} on vertices`),
-          ...laws.map((w, k) => lawText(`G${String(k)}`, w, lattice)),
+          ...laws.map((w, k) => lawText(`G${String(k)}`, w)),
           `audit laws ${laws.map((_, k) => `G${String(k)}`).join(', ')} on ${on.map((s) => s.text).join(', ')}`,
           '',
         ].join('\n');
