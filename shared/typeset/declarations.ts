@@ -1,9 +1,9 @@
 import type { LocalString, Operator } from '../algebra/pauli/types.ts';
 import type { Extended } from '../algebra/pauli/types.ts';
-import type { DictionaryRule, LawValue, OperatorValue, Values } from '../language/values.ts';
+import type { LawValue, OperatorValue, Values } from '../language/values.ts';
 import { newBudget, type Budget } from '../limits.ts';
 import { letters, type Carrier, type NamedShape, type Style, type TypesetContext } from './context.ts';
-import { extendedSpoken, extendedTex } from './extended.ts';
+import { extendedTex } from './extended.ts';
 import { nameSpoken, nameTex } from './names.ts';
 import { operatorTex } from './operators.ts';
 import { placed } from './shapes.ts';
