@@ -178,7 +178,6 @@ describe.each(['chain', 'square', 'triangular'])('dictionaries on the %s lattice
 });
 
 describe('the duality of the ring, carried through circuits', () => {
-  const lattice = lattices['chain']!;
   const word = (at: string, ...places: readonly (readonly [number, 'x' | 'y' | 'z'])[]): Word => ({
     sign: 1,
     places: places.map(([offset, pauli]) => ({ at, offset: [offset], pauli })),
