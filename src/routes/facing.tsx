@@ -64,6 +64,12 @@ export function Facing(props: Props) {
         <aside className="strip-right" aria-label="Margin">
           <div>
             <Guard what="The margin could not be shown." until={reading.answered}>
+              {reading.waiting > 0 && (
+                <p role="status" className="mb-4">
+                  {reading.waiting === 1 ? 'One numerical answer' : `${String(reading.waiting)} numerical answers`}{' '}
+                  under way
+                </p>
+              )}
               {margin}
               <Key slices={reading.slices} />
             </Guard>

@@ -12,8 +12,9 @@ import { Present } from '../features/margin/present.tsx';
 import type { EntryText } from '../features/spread/entry.tsx';
 import { titleOf } from '../features/spread/rows.ts';
 import { useRows } from '../features/spread/useRows.ts';
-import { savingInWords, textOf } from '../features/writing/drafts.ts';
+import { type Drafts, savingInWords, textOf } from '../features/writing/drafts.ts';
 import { SourceFoot } from '../features/writing/foot.tsx';
+import { TwoTexts } from '../features/writing/two-texts.tsx';
 import { useEntries } from '../features/writing/useEntries.ts';
 import { useHolding } from '../features/writing/useHolding.ts';
 import { useSaving } from '../features/writing/useSaving.ts';
@@ -90,6 +91,15 @@ function Opened({ notebook, me }: { notebook: Notebook; me: string | null }) {
     const made = await changes.insert(kind, before);
     if (made !== null) desk.open({ entry: made, line: 0, column: 1 });
   };
+  const { drafts } = saving;
+  const settled = useSettled(drafts.size, flush);
+  const remove = async (id: string) => {
+    desk.close();
+    // What was typed last is saved first, so that undoing the deletion brings all of it back.
+    await settled().catch(() => undefined);
+    await changes.remove(id);
+    choose(id, 'theirs');
+  };
   const desk = useDesk({
     entries,
     reading,
@@ -104,10 +114,7 @@ function Opened({ notebook, me }: { notebook: Notebook; me: string | null }) {
         last={place(entry.id) === entries.length - 1}
         acts={{
           move: (way) => void changes.move(entry.id, way),
-          remove: () => {
-            desk.close();
-            void changes.remove(entry.id);
-          },
+          remove: () => void remove(entry.id),
           insertAfter: (kind) => void insert(kind, entries[place(entry.id) + 1]?.id ?? null),
         }}
       />
@@ -123,7 +130,6 @@ function Opened({ notebook, me }: { notebook: Notebook; me: string | null }) {
     return new Map(others);
   }, [notebook.entries, me, now]);
 
-  const settled = useSettled(saving.drafts.size, flush);
   useCommands(() => commandsOf({ notebook, entries, changes, insert, open: desk.open, show: setPart }));
   const edits = may
     ? { open: desk.open, insert: (kind: EntryText['kind'], before: string | null) => void insert(kind, before) }
@@ -149,6 +155,7 @@ function Opened({ notebook, me }: { notebook: Notebook; me: string | null }) {
       foot={
         <>
           {entries.length === 0 && may && <FirstEntry />}
+          <Orphans drafts={drafts} entries={entries} drop={(id) => choose(id, 'theirs')} />
           <p role="status" className="label min-h-6">
             {changes.removed && (
               <>
@@ -213,6 +220,15 @@ function Head({ notebook, saving }: { notebook: Notebook; saving: string | null 
       </p>
     </>
   );
+}
+
+/** Texts whose entry someone else deleted meanwhile: kept until the writer lets them go. */
+function Orphans(props: { drafts: Drafts; entries: readonly EntryText[]; drop: (id: string) => void }) {
+  const there = new Set(props.entries.map((entry) => entry.id));
+  const orphans = [...props.drafts].filter(([id, draft]) => !there.has(id) && draft.state !== 'sending');
+  return orphans.map(([id, draft]) => (
+    <TwoTexts key={id} draft={{ ...draft, theirs: null }} choose={() => props.drop(id)} />
+  ));
 }
 
 function FirstEntry() {

@@ -27,12 +27,11 @@ interface EntryProps {
   readonly claims: (row: ClaimsRow) => ReactNode;
   /** Who else writes here. */
   readonly heldBy: string | undefined;
-  readonly version: number;
 }
 
 /** One numbered entry: its source when it is open, and what is set from it. */
 export const Entry = memo(function Entry(props: EntryProps) {
-  const { entry, number, slice, rows, source, open, claims, heldBy, version } = props;
+  const { entry, number, slice, rows, source, open, claims, heldBy } = props;
   const cite = `(${String(number)})`;
   const writing = source !== null;
   return (
@@ -46,7 +45,7 @@ export const Entry = memo(function Entry(props: EntryProps) {
     >
       {heldBy !== undefined && <p className="label held-by">{heldBy} is writing here</p>}
       {source}
-      <Guard what="This entry could not be set." until={version}>
+      <Guard what="This entry could not be set." until={rows ?? entry}>
         {entry.kind === 'prose' ? (
           <ProseRow entry={entry} cite={cite} open={open} />
         ) : (

@@ -63,7 +63,6 @@ export function Spread({ entries, reading, rows, writing, source, claims, edits,
             open={edits && !heldBy.has(entry.id) ? edits.open : undefined}
             claims={claims}
             heldBy={heldBy.get(entry.id)}
-            version={reading.answered}
           />
         </div>
       ))}

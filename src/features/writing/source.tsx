@@ -1,5 +1,5 @@
 import './writing.css';
-import { defaultKeymap, history, historyKeymap, indentWithTab } from '@codemirror/commands';
+import { defaultKeymap, history, historyKeymap } from '@codemirror/commands';
 import { bracketMatching, indentUnit } from '@codemirror/language';
 import { EditorSelection, EditorState, type Extension, Transaction } from '@codemirror/state';
 import { EditorView, keymap } from '@codemirror/view';
@@ -80,10 +80,10 @@ export function Source(props: SourceProps) {
       ref={host}
       className={`source source-${props.kind}`}
       onBlur={(event) => {
-        // The window losing focus is no leaving; neither is a step into what belongs to the open entry.
+        // Being taken away is no leaving, nor is the window losing focus, nor a step into what belongs to the open entry.
         const frame = event.currentTarget.closest('[data-entry]');
         const to = event.relatedTarget;
-        if (!document.hasFocus()) return;
+        if (!view.current || !document.hasFocus()) return;
         if (to instanceof Node && frame?.contains(to)) return;
         props.onLeave('away');
       }}
@@ -111,8 +111,7 @@ function extensions(props: SourceProps, now: () => SourceProps): Extension {
       { key: 'ArrowUp', run: edge('up') },
       { key: 'ArrowDown', run: edge('down') },
       { key: 'Escape', run: leave },
-      // Tab leaves the source, as everywhere on the page; Shift-Alt-Arrow indents and dedents in statements.
-      ...(props.kind === 'statements' ? [{ ...indentWithTab, key: 'Alt-Shift-ArrowRight' }] : []),
+      // Tab leaves the source, as everywhere on the page; Mod-[ and Mod-] of the default keys indent.
       ...defaultKeymap,
       ...historyKeymap,
     ]),
