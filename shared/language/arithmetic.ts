@@ -12,6 +12,7 @@ import {
   zeroOperator,
   type CollectOptions,
 } from '../algebra/pauli/family.ts';
+import { multiplyStrings } from '../algebra/pauli/string.ts';
 import type { Operator } from '../algebra/pauli/types.ts';
 import { limits } from '../limits.ts';
 import { fail, say, whatIsIt } from './problem.ts';
@@ -116,6 +117,26 @@ export function multiply(a: Amount, b: Amount, scene: Scene, place: Span): Amoun
       return { what: 'kets', amplitudes: new Map([...other.amplitudes].map(([bits, x]) => [bits, x.mul(c)])) };
   }
   const [left, right] = [asOperator(a, scene, place), asOperator(b, scene, place)];
+  const [f, f2] = left.families;
+  const [g, g2] = right.families;
+  // the commonest product, one string by one string, needs no collecting
+  if (
+    f &&
+    g &&
+    !f2 &&
+    !g2 &&
+    !scene.open &&
+    left.extended.length + right.extended.length === 0 &&
+    isPinned(f) &&
+    isPinned(g)
+  ) {
+    scene.budget.spend(f.string.factors.length + g.string.factors.length);
+    const string = multiplyStrings(f.string, g.string);
+    return operatorAmount({
+      families: [{ ...f, coefficient: f.coefficient.mul(g.coefficient), string }],
+      extended: [],
+    });
+  }
   scene.budget.spend(familyCost * left.families.length * right.families.length);
   const product = multiplyOperators(left, right, options(scene));
   if (product) return operatorAmount(product);
