@@ -25,7 +25,7 @@ CREATE TABLE "mails" (
 	"to" text NOT NULL,
 	"subject" text NOT NULL,
 	"text" text,
-	"headers" json NOT NULL,
+	"stops" json,
 	"state" "mail_state" DEFAULT 'waiting' NOT NULL,
 	"attempts" integer DEFAULT 0 NOT NULL,
 	"error" text,

@@ -11,7 +11,8 @@ export type Role = (typeof roles)[number];
 export const roleSchema = z.enum(roles);
 
 /** Roles that an owner can hand out. */
-export const grantedRoleSchema = z.enum(['coauthor', 'referee', 'reader']);
+export const grantedRoles = ['coauthor', 'referee', 'reader'] as const;
+export const grantedRoleSchema = z.enum(grantedRoles);
 export type GrantedRole = z.infer<typeof grantedRoleSchema>;
 
 export const visibilities = ['private', 'public'] as const;

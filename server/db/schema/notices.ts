@@ -13,7 +13,7 @@ import {
   uuid,
 } from 'drizzle-orm/pg-core';
 import { noticeKinds } from '../../../shared/contracts/notices.ts';
-import { grantedRoleSchema } from '../../../shared/contracts/rights.ts';
+import { grantedRoles } from '../../../shared/contracts/rights.ts';
 import { mailStates } from '../../../shared/contracts/steward.ts';
 import { notebooks } from './notebooks.ts';
 import { mailMode, people } from './people.ts';
@@ -22,7 +22,7 @@ const time = () => timestamp({ withTimezone: true, precision: 3 });
 
 export const noticeKind = pgEnum('notice_kind', noticeKinds);
 export const mailState = pgEnum('mail_state', mailStates);
-export const grantedRole = pgEnum('granted_role', grantedRoleSchema.options);
+export const grantedRole = pgEnum('granted_role', grantedRoles);
 
 /** Invitations by mail that wait. Accepting, declining and withdrawing remove them. */
 export const invitations = pgTable(
@@ -90,6 +90,11 @@ export const noticeSettings = pgTable(
   (table) => [primaryKey({ columns: [table.person, table.notebook] })],
 );
 
+export interface Stops {
+  readonly person: string;
+  readonly notebook: string | null;
+}
+
 /** Mail on its way out. What it says goes once it is sent, since it may carry a link that opens something. */
 export const mails = pgTable(
   'mails',
@@ -98,7 +103,8 @@ export const mails = pgTable(
     to: text().notNull(),
     subject: text().notNull(),
     text: text(),
-    headers: json().$type<Record<string, string>>().notNull(),
+    /** Whose notices, about which notebook or (null) about all, its recipient can stop by one click; none for mail that was asked for. */
+    stops: json().$type<Stops>(),
     state: mailState().notNull().default('waiting'),
     attempts: integer().notNull().default(0),
     error: text(),
