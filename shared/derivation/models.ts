@@ -1,3 +1,4 @@
+import { familyKey } from '../algebra/pauli/family.ts';
 import { bodyKey } from '../algebra/pauli/string.ts';
 import type { Extended, Factor, Family, Operator, Steps } from '../algebra/pauli/types.ts';
 import type { Kind, ReportModel, ReportTerm } from '../contracts/report.ts';
@@ -51,6 +52,25 @@ function constantText(operator: Operator): string {
   return parts.length === 0 ? '0' : parts.join(' + ');
 }
 
+/** Constants as sums of their own: the page shows them apart, a formula to paste elsewhere must not lose them. */
+const constantSums = (operator: Operator, context: TypesetContext): Gathered[] =>
+  gather(operator, context).filter((sum) => sum.members.every((member) => isConstantAt(operator, member)));
+
+const sameOperator = (a: Operator, b: Operator): boolean =>
+  a.families.length === b.families.length &&
+  a.extended.length === b.extended.length &&
+  a.families.every((family, k) => familyKey(family) === (b.families[k] && familyKey(b.families[k])));
+
+/** Pieces of a model's source in order; a piece that is another model by name stands for that model's own pieces. */
+function piecesInOrder(model: ModelValue, values: Values): Operator[] {
+  return model.pieces.flatMap(({ operator }) => {
+    const named = [...values.all.values()].find(
+      (value) => value.what === 'model' && value !== model && value.operator === operator,
+    );
+    return named?.what === 'model' ? piecesInOrder(named, values) : [operator];
+  });
+}
+
 /** Which gathered sum of this model each gathered sum of the origin turns into. */
 function pairsWith(
   origin: { readonly operator: Operator; readonly sums: readonly Gathered[] },
@@ -88,11 +108,7 @@ function sumsOf(
   const all = gather(model.operator, context).filter(
     (sum) => !sum.members.every((m) => isConstantAt(model.operator, m)),
   );
-  const ordered = inSourceOrder(
-    model.operator,
-    all,
-    model.pieces.map((piece) => piece.operator),
-  );
+  const ordered = inSourceOrder(model.operator, all, piecesInOrder(model, values));
   const { image } = model;
   const origin = image && values.find(image.of);
   if (!image || origin?.what !== 'model') return { sums: ordered, image: null };
@@ -204,7 +220,7 @@ export function reportModel(model: ModelValue, values: Values, context: TypesetC
   return {
     terms: termsOf(model, sums, roles, context),
     groups,
-    tex: sumTex(sums, 'plain'),
+    tex: sumTex([...sums, ...constantSums(model.operator, context)], 'plain'),
     spoken: operatorSpoken(model.operator, context),
     constant: constantText(model.operator),
     line: model.place.line,
