@@ -109,7 +109,7 @@ audit laws X, Z on ${sizes}
       if (b.length === 0) return a;
       let r = [...a];
       while (r.length >= b.length) {
-        const q = mul(r.at(-1)!, inverse[b.at(-1)!]!);
+        const q = mul(r.at(-1), inverse[b.at(-1)]!);
         const shift = r.length - b.length;
         b.forEach((x, d) => {
           r[d + shift] = r[d + shift]! ^ mul(q, x);
