@@ -65,7 +65,7 @@ const sameOperator = (a: Operator, b: Operator): boolean =>
 function piecesInOrder(model: ModelValue, values: Values): Operator[] {
   return model.pieces.flatMap(({ operator }) => {
     const named = [...values.all.values()].find(
-      (value) => value.what === 'model' && value !== model && value.operator === operator,
+      (value) => value.what === 'model' && value !== model && sameOperator(value.operator, operator),
     );
     return named?.what === 'model' ? piecesInOrder(named, values) : [operator];
   });
