@@ -62,6 +62,7 @@ function asked({ statement, values }: Question): Asked | string {
   const model = values.find(subject?.name ?? '');
   const unperturbed = values.find(statement.from ?? '');
   if (model?.what !== 'model') return `${subject?.name ?? 'the subject'} is not a model`;
+  if (model.seams.length > 0) return `${model.name} has a seam; the infinite lattice has none`;
   if (unperturbed?.what !== 'model') return `${statement.from ?? 'what stands behind from'} is not a model`;
   return { model: model.operator, unperturbed: unperturbed.operator, order: statement.order ?? 2 };
 }
@@ -117,10 +118,18 @@ function finding(
     order: firstOrder(one),
   }));
   const list = terms.map((t) => `${t.coefficient} × ${t.string}`).join('; ');
+  // Order by order: the collected constant is one long fraction.
+  const constants = found.orders.map(constantOf).filter((c): c is Coefficient => c !== undefined && !c.isZero());
+  const each = `${constants.length === 0 ? '0' : joined(constants.map((c) => c.toText()))} for each unit cell`;
+  const besides = terms.length > 0 && constants.length > 0 ? `, besides ${each}` : '';
+  const sums = [
+    ...(terms.length > 0 ? [operatorTex(operator, context)] : []),
+    ...(constants.length > 0 ? [`${joined(constants.map(coefficientText))} \\text{ for each unit cell}`] : []),
+  ];
   return {
     evidence: { kind: 'exact on', sizes: ['the infinite lattice'] },
-    statement: `${words}: ${terms.length === 0 ? 'a constant' : list}${constant ? `, besides ${constant.toText()} for each unit cell` : ''}`,
-    tex: `H_{\\mathrm{eff}} = ${[...(terms.length > 0 ? [operatorTex(operator, context)] : []), ...(constant ? [`${coefficientText(constant)} \\text{ for each unit cell}`] : [])].join(' + ') || '0'}`,
+    statement: `${words}: ${terms.length === 0 ? `a constant, ${each}` : list}${besides}`,
+    tex: `H_{\\mathrm{eff}} = ${sums.length === 0 ? '0' : joined(sums)}`,
     figures: {
       terms,
       constant: constant?.toText() ?? '0',
@@ -138,6 +147,9 @@ function finding(
     sources,
   };
 }
+
+/** A sum of signed texts. */
+const joined = (texts: readonly string[]): string => texts.join(' + ').replaceAll('+ -', '- ');
 
 const termTex = (one: Family, context: TypesetContext): string =>
   operatorTex({ families: [one], extended: [] }, context);

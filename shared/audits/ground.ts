@@ -22,7 +22,11 @@ const mostLevels = 96;
 const isWhole = ({ multiplets, energies, dimension }: Spectrum): boolean =>
   (multiplets[0]?.complete === true && multiplets.length > 1) || energies.length >= dimension;
 
-/** The whole ground multiplet and the next level, for given couplings; with vectors on request (free `space` afterwards). Throws Fault, Unanswerable. */
+/** Whether the vectors of the ground multiplet are all kept, where they were asked for. */
+const hasVectors = ({ multiplets, space }: Spectrum, vectors: boolean): boolean =>
+  !vectors || (space !== undefined && space.vectors.length * space.copies >= (multiplets[0]?.multiplicity ?? 0));
+
+/** The whole ground multiplet and, where it is not very large, the next level, for given couplings; with vectors on request (free `space` afterwards). Throws Fault, Unanswerable. */
 export function* groundOf(
   values: Values,
   subject: FiniteSubject,
@@ -34,14 +38,16 @@ export function* groundOf(
   for (let levels = firstLevels; ; levels = Math.min(3 * levels, mostLevels)) {
     const question = { ...spectrumQuestion(values, subject, levels, couplings), vectors };
     const spectrum = yield* levelsOf(question, subject, means, doing);
-    if (isWhole(spectrum)) return spectrum;
-    if (levels < mostLevels) {
-      spectrum.space?.free();
-      continue;
-    }
+    const last = levels >= mostLevels;
+    const complete = spectrum.multiplets[0]?.complete === true;
+    if ((isWhole(spectrum) || (last && complete)) && hasVectors(spectrum, vectors)) return spectrum;
     spectrum.space?.free();
+    if (!last) continue;
+    const at = sizeText(subject.cluster.size);
     throw new Unanswerable(
-      `more than ${String(spectrum.energies.length)} levels are degenerate on ${sizeText(subject.cluster.size)}; the ground multiplet was not found whole`,
+      complete
+        ? `${String(spectrum.multiplets[0]?.multiplicity ?? 0)} states are degenerate on ${at}, too many to keep them all`
+        : `more than ${String(spectrum.energies.length)} levels are degenerate on ${at}; the ground multiplet was not found whole`,
     );
   }
 }
@@ -96,6 +102,10 @@ export function measured(
   switch (value?.what) {
     case 'model':
     case 'operator': {
+      // The subject itself has its seams already.
+      if (name === subject.name) return subject.model;
+      if (value.what === 'model' && value.seams.length > 0)
+        throw new Unanswerable(`${name} has a seam; measure the parts of it as operators`, true);
       const model = wrapOperator(table, cluster, value.operator);
       if (isWrapProblem(model))
         throw new Unanswerable(`${name} does not fit on ${sizeText(cluster.size)}: ${model.message}`);

@@ -1,3 +1,4 @@
+import type { AllSizes } from '../algebra/f2/all-sizes.ts';
 import { siteTable } from '../algebra/finite/wrap.ts';
 import { collectFamilies } from '../algebra/pauli/collect.ts';
 import { keepsRules, obeys, type Leak, type LinearRule } from '../algebra/pauli/keeping.ts';
@@ -5,8 +6,8 @@ import { siteKey } from '../algebra/pauli/string.ts';
 import type { Family, Site } from '../algebra/pauli/types.ts';
 import { Coefficient } from '../algebra/numbers/coefficient.ts';
 import type { RuleValue, Values } from '../language/values.ts';
-import { isLatticeProblem, type LatticeFamily } from '../lattice/cells.ts';
-import { newCluster, sizeText, straight } from '../lattice/cluster.ts';
+import { isLatticeProblem, type Lattice, type LatticeFamily } from '../lattice/cells.ts';
+import { isStraight, newCluster, sizeText, straight } from '../lattice/cluster.ts';
 import { BudgetSpent, newBudget } from '../limits.ts';
 import { stringPhrase } from '../maps/phrases.ts';
 import type { Finding } from './audit.ts';
@@ -154,7 +155,7 @@ export function keepsRule(name: string, rule: RuleValue, values: Values): Findin
         evidence: { kind: 'all sizes', proof: [verdict.evidence] },
         statement: `every move of ${name} keeps ${rule.name}, on ${sizesWords([verdict.evidence])}`,
         figures,
-        cautions: edges,
+        cautions: [...edges, ...tooSmall(verdict.evidence, lattice)],
       };
     if (!verdict.leak || at === undefined) return open(verdict.reason, figures);
     const witness = witnessOf(verdict.leak, rule, rules, at, lattice.family);
@@ -170,6 +171,14 @@ export function keepsRule(name: string, rule: RuleValue, values: Values): Findin
     if (error instanceof Unanswerable) return open(error.message, {}, error.isProblem);
     throw error;
   }
+}
+
+/** Says so where the declared size is below those that are decided. */
+function tooSmall(evidence: AllSizes, { size }: Lattice): string[] {
+  const small = isStraight(size) && evidence.from.some((from, d) => (size.periods[d]?.[d] ?? 1) < from);
+  return small
+    ? [`the declared ${sizeText(size)} is smaller: there a move may meet itself, and that is not looked at`]
+    : [];
 }
 
 const lcm = (a: number, b: number): number => {

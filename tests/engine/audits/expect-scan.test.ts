@@ -105,12 +105,14 @@ audit scan gap of ising over h = 0.4 .. 2 by 0.2, J = 1 on 6`,
   });
 
   it('of overlaps dip at the transition; with the reference of a field they grow to one', () => {
-    const [near, far] = claimsOf(
+    const [near, far, model] = claimsOf(
       scan,
       `${ising}law up(v: vertices) = s^x[v]
 reference field0 = stabilizer state of up
+model field1 = - 2 sum(v: vertices) s^x[v]
 audit scan overlap of ising [flip = +1] over h = 0.25 .. 2.25 by 0.25 on 8
-audit scan overlap of ising over h = 0 .. 8 by 2 with field0 on 8`,
+audit scan overlap of ising over h = 0 .. 8 by 2 with field0 on 8
+audit scan overlap of ising over h = 0 .. 8 by 2 with field1 on 8`,
     );
     const steps = numbers(near, 'values');
     expect(steps[0]).toBeNull();
@@ -120,6 +122,9 @@ audit scan overlap of ising over h = 0 .. 8 by 2 with field0 on 8`,
     const values = numbers(far, 'values');
     for (let k = 1; k < values.length; k++) expect(values[k]).toBeGreaterThan(values[k - 1] ?? 0);
     expect(values.at(-1)).toBeGreaterThan(0.98);
+    // the same state as the ground state of a model
+    expect(model?.grade).toBe('numerical');
+    for (const [k, value] of numbers(model, 'values').entries()) expect(value).toBeCloseTo(values[k] ?? 0, 7);
     // two ground states at h = 0, one of which holds the even half: |<+…+|even cat>|² = 2 / 2^8
     expect(values[0]).toBeCloseTo(Math.sqrt(2 / 2 ** 8), 6);
   });
