@@ -61,12 +61,13 @@ const sameOperator = (a: Operator, b: Operator): boolean =>
   a.extended.length === b.extended.length &&
   a.families.every((family, k) => familyKey(family) === (b.families[k] && familyKey(b.families[k])));
 
-/** Pieces of a model's source in order; a piece that is another model by name stands for that model's own pieces. */
+/** Pieces of a model's source in order; a piece that is an earlier model by name stands for that model's own pieces. */
 function piecesInOrder(model: ModelValue, values: Values): Operator[] {
+  const all = [...values.all.values()];
+  // Only those declared before: two models may be equal.
+  const earlier = all.slice(0, Math.max(0, all.indexOf(model)));
   return model.pieces.flatMap(({ operator }) => {
-    const named = [...values.all.values()].find(
-      (value) => value.what === 'model' && value !== model && sameOperator(value.operator, operator),
-    );
+    const named = earlier.find((value) => value.what === 'model' && sameOperator(value.operator, operator));
     return named?.what === 'model' ? piecesInOrder(named, values) : [operator];
   });
 }
