@@ -1,9 +1,9 @@
 import { randomUUID } from 'node:crypto';
 import pg from 'pg';
-import { type Announcement, announce, channel } from './db/announce.ts';
+import { type Announcement, announce, channel, type Word } from './db/announce.ts';
 import type { Database } from './db/connection.ts';
 import { clearStale, listPresent, sayGone, sayPresent } from './db/queries/presences.ts';
-import { may, type NotebookStanding, standingOnNotebook } from './db/standing.ts';
+import { askerFor, may, type NotebookStanding, standingOnNotebook } from './db/standing.ts';
 
 /** How often an open connection says that it is there, and whether it may still listen is asked again. */
 const renewMs = 25_000;
@@ -11,7 +11,7 @@ const longestPauseMs = 10_000;
 
 /** Where a listener's events go; `end` is called when it may not listen any more, or the server stops. */
 export interface Listener {
-  readonly send: (event: Announcement['event'], data: unknown) => void;
+  readonly send: (event: Announcement['event'] | Word['event'], data: unknown) => void;
   readonly end: () => void;
 }
 
@@ -19,6 +19,8 @@ export interface Listener {
 export interface Live {
   /** Listens until the function that it resolves with is called. Members of the notebook count as present meanwhile. */
   readonly listen: (standing: NotebookStanding, listener: Listener) => Promise<() => Promise<void>>;
+  /** Listens for what concerns a person, until the function that it returns is called or the account is closed. */
+  readonly listenFor: (person: string, listener: Listener) => () => void;
   readonly close: () => Promise<void>;
 }
 
@@ -34,6 +36,7 @@ const isMember = ({ person, on }: NotebookStanding): boolean => person !== null 
 
 export function openLive(database: Database, onTrouble: (error: unknown) => void): Live {
   const ears = new Map<string, Set<Ear>>();
+  const persons = new Map<string, Set<Listener>>();
   const quietly = (work: Promise<unknown>): void => void work.catch(onTrouble);
   const all = (): Ear[] => [...ears.values()].flatMap((set) => [...set]);
 
@@ -61,11 +64,22 @@ export function openLive(database: Database, onTrouble: (error: unknown) => void
     }
   };
 
+  const passTo = async ({ person, event, data }: Word): Promise<void> => {
+    const listeners = persons.get(person);
+    if (listeners === undefined) return;
+    const open = event !== 'account' || (await askerFor(database, person)) !== null;
+    for (const listener of [...listeners]) {
+      if (open) listener.send(event, data);
+      else listener.end();
+    }
+  };
+
   const radio = listenForever(database.url, {
-    heard: (said) => quietly(pass(said)),
+    heard: (said) => quietly('person' in said ? passTo(said) : pass(said)),
     // What was said while nobody listened is lost: everyone reads again.
     again: () => {
       for (const ear of all()) ear.listener.send('notebook', {});
+      for (const listener of [...persons.values()].flatMap((set) => [...set])) listener.send('account', {});
     },
     onTrouble,
   });
@@ -108,8 +122,17 @@ export function openLive(database: Database, onTrouble: (error: unknown) => void
       }
       return ear.leave;
     },
+    listenFor: (person, listener) => {
+      const set = persons.get(person) ?? new Set<Listener>();
+      persons.set(person, set.add(listener));
+      return () => {
+        set.delete(listener);
+        if (set.size === 0 && persons.get(person) === set) persons.delete(person);
+      };
+    },
     close: async () => {
       clearInterval(renew);
+      for (const listener of [...persons.values()].flatMap((set) => [...set])) listener.end();
       // Those who listen leave while the database still answers.
       await Promise.allSettled(all().map(endAndLeave));
       await radio.close();
@@ -129,7 +152,7 @@ function once(work: () => Promise<void>): () => Promise<void> {
 }
 
 interface Hearing {
-  readonly heard: (said: Announcement) => void;
+  readonly heard: (said: Announcement | Word) => void;
   /** Called when the connection stands again after it broke. */
   readonly again: () => void;
   readonly onTrouble: (error: unknown) => void;
@@ -155,7 +178,7 @@ function listenForever(connectionString: string, hearing: Hearing): { readonly c
     own.on('error', breaks);
     own.on('end', () => breaks(new Error('the connection that listens for changes ended')));
     own.on('notification', ({ payload }) => {
-      hearing.heard(JSON.parse(payload ?? '{}') as Announcement);
+      hearing.heard(JSON.parse(payload ?? '{}') as Announcement | Word);
     });
     try {
       await own.connect();

@@ -1,4 +1,5 @@
 import { and, eq, isNull, sql, type SQL } from 'drizzle-orm';
+import type { Scope } from '../../shared/contracts/rights.ts';
 import { actionsOf, may, type Standing } from '../rights.ts';
 import type { Asking } from './connection.ts';
 import { notFound } from './refusal.ts';
@@ -17,6 +18,8 @@ export interface NotebookStanding extends Standing {
 export interface Asker {
   readonly person: string | null;
   readonly steward: boolean;
+  /** What the access token is good for that was shown; left out where a person asks from a page. */
+  readonly scopes?: readonly Scope[];
 }
 
 export const visitor: Asker = { person: null, steward: false };
@@ -79,8 +82,9 @@ export async function lockNotebook({ db }: Asking, standing: NotebookStanding): 
   if (rows.length === 0) throw notFound();
 }
 
-/** Who a person is to the installation; null if the account is gone. */
+/** Who a person is to the installation; null if the account is gone or closed. */
 export async function askerFor({ db }: Asking, person: string): Promise<Asker | null> {
-  const [row] = await db.select({ steward: people.steward }).from(people).where(eq(people.id, person));
+  const open = and(eq(people.id, person), isNull(people.suspendedAt), isNull(people.deletedAt));
+  const [row] = await db.select({ steward: people.steward }).from(people).where(open);
   return row === undefined ? null : { person, steward: row.steward };
 }
