@@ -3,7 +3,6 @@ import { defineConfig } from 'vitest/config';
 /** Each project is a set of tests with the surroundings they need; `--project engine` runs one of them. */
 export default defineConfig({
   test: {
-    passWithNoTests: true,
     projects: [
       {
         extends: true,

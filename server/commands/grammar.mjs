@@ -12,7 +12,6 @@ const target = join(root, 'grammar', 'operator.grammar.ts');
 
 /** Throws with the compiler's words when the grammar does not compile. */
 export function compileGrammar() {
-  if (!existsSync(source)) return;
   if (existsSync(target) && statSync(target).mtimeMs > statSync(source).mtimeMs) return;
   // Written beside the target and renamed: a reader never sees half a grammar, also when two builds meet.
   const partial = join(root, 'grammar', `.${process.pid}.grammar.ts`);

@@ -12,7 +12,6 @@ const target = join(folder, 'kernel.wasm');
 
 /** Throws with the compiler's words when the kernel does not compile. */
 export async function compileKernel() {
-  if (!existsSync(sources)) return;
   const newest = Math.max(...readdirSync(sources).map((name) => statSync(join(sources, name)).mtimeMs));
   if (existsSync(target) && statSync(target).mtimeMs > newest) return;
   const { default: asc } = await import('assemblyscript/asc');

@@ -222,11 +222,9 @@ async function startAll() {
     LOG_LEVEL: process.env.LOG_LEVEL ?? (process.stdout.isTTY ? 'warn' : 'info'),
     ...(dev ? { NODE_ENV: 'development', PUBLIC_URL: process.env.PUBLIC_URL || where } : {}),
   };
-  if (existsSync(join(root, 'server', 'commands', 'demo.ts'))) {
-    const words = dev ? ['--import', 'tsx', 'server/commands/demo.ts'] : ['dist/server/commands/demo.js'];
-    const code = await new Promise((resolve) => keep(words, environment, resolve));
-    if (code !== 0) throw new Trouble('The demonstration data could not be written; the reason stands above.');
-  }
+  const demo = dev ? ['--import', 'tsx', 'server/commands/demo.ts'] : ['dist/server/commands/demo.js'];
+  const written = await new Promise((resolve) => keep(demo, environment, resolve));
+  if (written !== 0) throw new Trouble('The demonstration could not be written; the reason stands above.');
   const ended = (code) => {
     process.stderr.write(`The server ended unexpectedly (exit code ${code}).\n`);
     void stop(code || 1);
@@ -241,7 +239,6 @@ async function startAll() {
 
 /** The worker that takes heavy audits; started again, a little later each time, if it ends. */
 function startCompanion(environment, wait = 1_000) {
-  if (!existsSync(join(root, 'server', 'worker.ts'))) return;
   keep(program('worker'), environment, (code) => {
     process.stderr.write(`The worker ended (exit code ${code}); starting it again in ${wait / 1_000} s.\n`);
     setTimeout(() => stopping ?? startCompanion(environment, Math.min(2 * wait, 60_000)), wait);
