@@ -66,6 +66,15 @@ async function replace(name, make) {
   }
 }
 
+/** Removes what builds that were killed left beside the real folders; a name ends with its process's number. */
+function sweep() {
+  if (!existsSync(join(root, 'dist'))) return;
+  for (const name of readdirSync(join(root, 'dist'))) {
+    const pid = /^\.(?:server|client)\.(\d+)/.exec(name)?.[1];
+    if (pid && !existsSync(`/proc/${pid}`)) rmSync(join(root, 'dist', name), { recursive: true, force: true });
+  }
+}
+
 async function buildServer(outdir) {
   const { build } = await import('esbuild');
   await build({
@@ -96,6 +105,7 @@ async function buildClient(outDir) {
 
 export async function buildAll() {
   const sources = fingerprint();
+  sweep();
   compileGrammar();
   await compileKernel();
   await replace('server', buildServer);

@@ -41,8 +41,12 @@ function stop(code) {
 /** Runs a process of ours to its end; resolves with its exit code. */
 function finished(words) {
   const child = spawn(process.execPath, words, { cwd: root, stdio: ['ignore', 'inherit', 'inherit'] });
-  undo.push(() => void child.kill('SIGKILL'));
-  return new Promise((resolve) => child.once('exit', (code) => resolve(code)));
+  const gone = new Promise((resolve) => child.once('exit', (code) => resolve(code)));
+  undo.push(() => {
+    child.kill();
+    return gone;
+  });
+  return gone;
 }
 
 /** Starts a long-running process that ends with this one; `ended(code)` is called if it ends before it was asked to. */

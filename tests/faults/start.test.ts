@@ -67,6 +67,9 @@ function anyLeft({ child }: Start): boolean {
   }
 }
 
+/** A build that is cut short ends its own helpers a moment later; hence the waiting. */
+const nothingLeft = (one: Start): Promise<void> => until('that nothing is left', () => !anyLeft(one), one.output);
+
 /** The process number of the program that it started, such as `dist/server/index.js`. */
 function programOf({ child }: Start, program: string): number {
   const children = readFileSync(`/proc/${child.pid}/task/${child.pid}/children`, 'utf8').trim().split(' ').map(Number);
@@ -94,7 +97,7 @@ describe('npm start', () => {
       expect(await page.text()).toContain('<title>Gaugewright</title>');
       one.child.kill(signal);
       expect(await one.ended).toBe(0);
-      expect(anyLeft(one)).toBe(false);
+      await nothingLeft(one);
       await expect(fetch(one.url)).rejects.toThrow();
     },
   );
@@ -104,7 +107,7 @@ describe('npm start', () => {
     await ready(one);
     process.kill(-(one.child.pid ?? Number.NaN), 'SIGINT');
     expect(await one.ended).toBe(0);
-    expect(anyLeft(one)).toBe(false);
+    await nothingLeft(one);
     expect(one.output()).not.toMatch(/unexpectedly|ended \(exit/);
   });
 
@@ -113,14 +116,14 @@ describe('npm start', () => {
     await new Promise((resolve) => setTimeout(resolve, 300));
     one.child.kill('SIGTERM');
     expect(await one.ended).toBe(0);
-    expect(anyLeft(one)).toBe(false);
+    await nothingLeft(one);
   });
 
   test('when it is killed, then what it started ends by itself', async () => {
     const one = await start();
     await ready(one);
     one.child.kill('SIGKILL');
-    await until('that nothing is left', () => !anyLeft(one), one.output);
+    await nothingLeft(one);
   });
 
   test('when the server crashes, then it stops the rest and says so with exit code 1', async () => {
@@ -129,7 +132,7 @@ describe('npm start', () => {
     process.kill(programOf(one, 'dist/server/index.js'), 'SIGKILL');
     expect(await one.ended).toBe(1);
     expect(one.output()).toContain('The server ended unexpectedly');
-    expect(anyLeft(one)).toBe(false);
+    await nothingLeft(one);
   });
 
   test('when the worker crashes, then another takes its place and the server goes on', async () => {
@@ -177,6 +180,6 @@ describe('npm start', () => {
     expect(await one.ended).toBe(1);
     expect(one.output()).toContain(words);
     expect(one.output()).not.toContain('    at ');
-    expect(anyLeft(one)).toBe(false);
+    await nothingLeft(one);
   });
 });
