@@ -10,9 +10,9 @@ import { fitting, Unanswerable } from './unanswerable.ts';
 /** The state map that a name in a sector stands for: itself, or what undoes one. Throws Unanswerable. */
 function statesOf({ name, declaration }: MapValue): StatesDeclaration {
   if (declaration.kind === 'states') return declaration;
-  if (declaration.kind === 'inverse' && declaration.of.declaration.kind === 'states') {
+  if (declaration.kind === 'inverse') {
     try {
-      return inverseStates(declaration.of.declaration);
+      return inverseStates(statesOf(declaration.of));
     } catch (error) {
       if (error instanceof MapRefused) throw new Unanswerable(error.message, true);
       throw error;

@@ -1,3 +1,4 @@
+import { bodyKey } from '../algebra/finite/string.ts';
 import type { FiniteModel, FiniteString, SiteTable } from '../algebra/finite/types.ts';
 import {
   anticommutesOnSite,
@@ -9,6 +10,7 @@ import {
   type Seam,
   type SpeciesCells,
 } from '../algebra/finite/wrap.ts';
+import { Coefficient } from '../algebra/numbers/coefficient.ts';
 import type { Operator } from '../algebra/pauli/types.ts';
 import type {
   LawValue,
@@ -76,6 +78,7 @@ function speciesOfLabel(values: Values, label: SectorLabel, into: Set<string>): 
   };
   if (value?.what === 'law') add(value.families);
   if (value?.what === 'symmetry') add(value.extended.parts);
+  if (value?.what === 'operator') speciesOfOperator(value.operator, into);
   if (value?.what === 'rule') for (const family of value.families) speciesOfOperator(family.operator, into);
   if (value?.what === 'map') for (const name of value.map.to) into.add(name);
 }
@@ -115,6 +118,38 @@ export function symmetryConstraint(
   return { label: symmetry.name, string, value };
 }
 
+/** The one string that an operator of a sector is; with a parameter that of the cell at the origin. Throws Unanswerable. */
+function chargeConstraint(
+  cluster: Cluster,
+  table: SiteTable,
+  { name, operator }: OperatorValue,
+  value: 1 | -1 = 1,
+): SectorConstraint {
+  const [family] = operator.families;
+  const [term] = operator.extended;
+  const only = operator.families.length + operator.extended.length === 1 ? (family ?? term) : undefined;
+  const sign = only?.coefficient.equals(Coefficient.one)
+    ? 1
+    : only?.coefficient.equals(Coefficient.one.neg())
+      ? -1
+      : undefined;
+  if (!only || !sign || family?.steps.some((m) => m > 0))
+    throw new Unanswerable(`${name} is no single Pauli product, so it labels no sector`, true);
+  const [string] = fitting(`operator ${name}`, cluster, () =>
+    family ? wrapOrbit(table, cluster, family) : term ? [wrapExtended(table, cluster, term.extended)] : [],
+  );
+  if (!string) throw new Unanswerable(`${name} does not stand on ${sizeText(cluster.size)}`);
+  return { label: name, string, value: value * sign === 1 ? 1 : -1 };
+}
+
+/** A label for one cell stands instead of the law's instance there: a static charge. */
+function placeCharge(constraints: SectorConstraint[], charge: SectorConstraint): void {
+  const key = bodyKey(charge.string);
+  const at = constraints.findIndex((c) => bodyKey(c.string) === key);
+  if (at < 0) constraints.push(charge);
+  else constraints[at] = charge;
+}
+
 interface Labels {
   readonly constraints: SectorConstraint[];
   readonly rules: RuleValue[];
@@ -123,14 +158,18 @@ interface Labels {
 
 function resolve(values: Values, cluster: Cluster, table: SiteTable, sector: readonly SectorLabel[]): Labels {
   const labels: Labels = { constraints: [], rules: [], images: [] };
-  for (const label of sector) {
+  // Labels of single cells last: they stand instead of a law's instance.
+  const isCharge = (label: SectorLabel): number => (values.find(label.name)?.what === 'operator' ? 1 : 0);
+  for (const label of [...sector].sort((a, b) => isCharge(a) - isCharge(b))) {
     const value = values.find(label.name);
     if (value?.what === 'law') labels.constraints.push(...lawConstraints(cluster, table, value, label.value));
     else if (value?.what === 'symmetry')
       labels.constraints.push(symmetryConstraint(cluster, table, value, label.value));
+    else if (value?.what === 'operator')
+      placeCharge(labels.constraints, chargeConstraint(cluster, table, value, label.value));
     else if (value?.what === 'rule') labels.rules.push(value);
     else if (value?.what === 'map') labels.images.push(value);
-    else throw new Unanswerable(`${label.name} is not a law, a symmetry, a rule or a state map`, true);
+    else throw new Unanswerable(`${label.name} is not a law, a symmetry, a rule, a Pauli product or a state map`, true);
   }
   return labels;
 }

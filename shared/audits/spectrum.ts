@@ -104,12 +104,17 @@ function* decide(question: Question, means: Means): Generator<Progress, readonly
   }
 }
 
+/** Notes about wrapping that are listed one by one. */
+const mostNotes = 4;
+
 /** What wrapping did to a model, and which of its terms a rule projects. */
 export function sideNotes(name: string, notes: readonly string[], spectrum: Spectrum): string[] {
   const leaving = spectrum.leaving.length;
   const projected =
     leaving === 0 ? [] : [`${name} is taken as PHP: ${String(leaving)} terms lead out of the states of its sector`];
-  return [...notes.map((note) => `${name}: ${note}`), ...projected];
+  const more = notes.length - mostNotes;
+  const shown = more > 1 ? [...notes.slice(0, mostNotes), `and ${String(more)} more terms of this kind`] : notes;
+  return [...shown.map((note) => `${name}: ${note}`), ...projected];
 }
 
 export const spectrum: Audit = {

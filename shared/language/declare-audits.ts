@@ -15,7 +15,16 @@ import { dotted } from './calls.ts';
 import { sizesOf } from './declare-lattice.ts';
 import type { AuditForm } from './forms.ts';
 import { fail, say, whatIsIt } from './problem.ts';
-import type { AuditStatement, Place, ScanRange, SectorLabel, Subject, Value, Values } from './values.ts';
+import type {
+  AuditStatement,
+  MapDeclaration,
+  Place,
+  ScanRange,
+  SectorLabel,
+  Subject,
+  Value,
+  Values,
+} from './values.ts';
 
 type AuditNode = Statement & { readonly type: 'audit' };
 type Of<N extends ClauseName> = Clause & { readonly name: N };
@@ -33,6 +42,10 @@ export interface AuditScene {
 }
 
 const mostLevels = 1024;
+
+/** A state map, or what undoes one: it has an image that can be a sector. */
+const isStates = (declaration: MapDeclaration): boolean =>
+  declaration.kind === 'states' || (declaration.kind === 'inverse' && isStates(declaration.of.declaration));
 const mostOrder = 8;
 const mostPoints = 2_000;
 
@@ -47,7 +60,7 @@ function label(node: LabelNode, scene: AuditScene): SectorLabel {
   const value = scene.named(node.path);
   const name = dotted(node.path);
   const kinds: readonly Value['what'][] = ['law', 'symmetry', 'rule', 'map', 'operator'];
-  const states = value.what !== 'map' || value.declaration.kind === 'states';
+  const states = value.what !== 'map' || isStates(value.declaration);
   if (!kinds.includes(value.what) || !states) fail(say.sectorKind(name, whatIsIt[value.what] ?? value.what), node.path);
   if (node.value === undefined) return { name, value: undefined, place: scene.placeOf(node) };
   if (value.what === 'rule' || value.what === 'map') return fail(say.sectorRule(name), node);

@@ -32,7 +32,8 @@ const indentOf = (line: string): number => /^\s*/u.exec(line)?.[0].length ?? 0;
 function hasBody(header: string): boolean {
   const words = header.replace(/#.*$/u, '').trim();
   if (/^lattice\s+custom$/u.test(words)) return true;
-  return /^map\s/u.test(words) && (!words.includes('=') || /=\s*circuit$/u.test(words));
+  // `map N = …` has a body only for a circuit; a later sign of equality stands in a condition.
+  return /^map\s/u.test(words) && (!/^map\s+[^\s=]+\s*=/u.test(words) || /=\s*circuit$/u.test(words));
 }
 
 /** Offsets of the rules of a body: a line no deeper than the first one begins a rule, a deeper one continues it. */
