@@ -71,7 +71,8 @@ export const table = {
   },
   'server/mail': { may: ['server/settings'], packages: nodePackages },
   'server/live': { may: ['server/settings', 'server/db'], packages: nodePackages },
-  'server/fakes': { may: ['server/settings'], packages: nodePackages },
+  'server/page': {},
+  'server/fakes': { may: ['server/settings', 'server/page'], packages: nodePackages },
   'server/catalogue': { may: ['server/settings', 'shared/notebook'], packages: nodePackages },
   'server/services': {
     may: [
@@ -86,7 +87,7 @@ export const table = {
     packages: nodePackages,
   },
   'server/routes': {
-    may: ['server/services', 'server/middleware', 'server/live', 'shared/contracts'],
+    may: ['server/services', 'server/middleware', 'server/live', 'server/page', 'shared/contracts'],
     packages: nodePackages,
   },
   'server/program': { may: ['server/settings'], packages: nodePackages },

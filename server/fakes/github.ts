@@ -2,6 +2,7 @@ import { randomBytes } from 'node:crypto';
 import { createServer } from 'node:http';
 import type { AddressInfo } from 'node:net';
 import express, { type Request, type RequestHandler, type Router } from 'express';
+import { escapeHtml, plainPage } from '../page.ts';
 import { type InventedPerson, inventedPeople } from './people.ts';
 
 /**
@@ -102,42 +103,19 @@ function isOwn(address: string, request: Request): boolean {
   return host === request.get('host') || ['127.0.0.1', 'localhost', '[::1]'].includes(hostname);
 }
 
-const escape = (text: string): string => text.replace(/[&<>"']/g, (sign) => `&#${String(sign.charCodeAt(0))};`);
-
 function choice(request: Request, nonce: string): string {
   const own = new URLSearchParams(request.originalUrl.split('?')[1]);
   const items = inventedPeople.map(({ login, name, part }) => {
     const query = new URLSearchParams(own);
     query.set('as', login);
-    return `<li><a href="?${escape(query.toString())}">${escape(name)}</a> <span>${escape(part)}</span></li>`;
+    return `<li><a href="?${escapeHtml(query.toString())}">${escapeHtml(name)}</a> <span>${escapeHtml(part)}</span></li>`;
   });
-  return `<!doctype html>
-<html lang="en">
-<head>
-<meta charset="utf-8">
-<meta name="viewport" content="width=device-width, initial-scale=1">
-<meta name="color-scheme" content="light dark">
-<title>Who are you today?</title>
-<style nonce="${escape(nonce)}">
-:root { color-scheme: light dark; }
-body { max-width: 34rem; margin: 12vh auto; padding: 0 1.5rem; font: 1.0625rem/1.6 Georgia, serif;
-  color: light-dark(#1c1b19, #e8e4da); background: light-dark(#fdfcf9, #171614); }
-h1 { font-size: 1.5rem; font-weight: 500; margin: 0 0 .5rem; }
-ul { list-style: none; margin: 1.5rem 0; padding: 0; border-top: 1px solid light-dark(#c9c4b8, #4a463e); }
-li { display: flex; flex-wrap: wrap; gap: 0 1rem; align-items: baseline; border-bottom: 1px solid light-dark(#c9c4b8, #4a463e); }
-a { flex: 0 0 9rem; padding: .55rem 0; color: light-dark(#7a1f12, #f0a08f); text-underline-offset: .2em; }
-a:focus-visible { outline: 2px solid; outline-offset: 2px; }
-</style>
-</head>
-<body>
-<main>
-<h1>Who are you today?</h1>
-<p>This installation has no account with GitHub, so this page stands in for it. The people are invented; choose one to sign in.</p>
+  return plainPage(
+    'Who are you today?',
+    nonce,
+    `<p>This installation has no account with GitHub, so this page stands in for it. The people are invented; choose one to sign in.</p>
 <ul>
 ${items.join('\n')}
-</ul>
-</main>
-</body>
-</html>
-`;
+</ul>`,
+  );
 }
