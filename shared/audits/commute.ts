@@ -116,7 +116,7 @@ function decide(question: Question): readonly Finding[] {
   if (laws.size > 0 || rules.length === 0) {
     findings.push(commutation(subject.name, terms, laws, values, lattice.family));
   }
-  for (const rule of rules) findings.push(keepsRule(subject.name, rule, values));
+  for (const rule of rules) findings.push(keepsRule(subject.name, rule, values, rules));
   return findings;
 }
 

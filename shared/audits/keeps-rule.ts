@@ -90,28 +90,35 @@ function roomyTori(leak: Leak, steps: readonly number[]): number[][] {
 }
 
 /** A torus on which a whole allowed state holds the local configuration. */
-function extended(leak: Leak, rule: RuleValue, period: readonly number[], values: Values): string | undefined {
+function extended(
+  leak: Leak,
+  rules: readonly RuleValue[],
+  period: readonly number[],
+  values: Values,
+): string | undefined {
   const { lattice } = values;
   if (!lattice) return undefined;
   const names = new Set(leak.before.map(({ site }) => site.species));
-  for (const family of rule.families) speciesOfOperator(family.operator, names);
+  for (const family of rules.flatMap((rule) => rule.families)) speciesOfOperator(family.operator, names);
   for (const extents of roomyTori(leak, period)) {
     const cluster = newCluster({ family: lattice.family, periodic: extents.map(() => true) }, straight(...extents));
     if (isLatticeProblem(cluster)) continue;
     const table = siteTable(cluster, speciesCells(values, names));
     const fixed = new Map(leak.before.map(({ site, bit }) => [table.number(site) ?? -1, bit] as const));
     if (fixed.has(-1) || fixed.size < leak.before.length) continue;
-    const rules = diagonalRules(cluster, table, rule);
-    if (typeof completeState(table.sites.length, rules, fixed) !== 'string') return sizeText(straight(...extents));
+    const instances = rules.flatMap((rule) => diagonalRules(cluster, table, rule));
+    if (typeof completeState(table.sites.length, instances, fixed) !== 'string') return sizeText(straight(...extents));
   }
   return undefined;
 }
 
 /**
  * Whether a model, operator, law or symmetry keeps a rule: whether it leads from states that obey it to such states alone. Decided on the
- * infinite lattice, move by move (`algebra/pauli/keeping.ts`); refuted with a local configuration that stands in a whole allowed state of a torus.
+ * infinite lattice, move by move, in states that obey `others` besides (`algebra/pauli/keeping.ts`); refuted with a local configuration that stands in a whole allowed state of a torus.
  */
-export function keepsRule(name: string, rule: RuleValue, values: Values): Finding {
+export function keepsRule(name: string, rule: RuleValue, values: Values, others: readonly RuleValue[] = []): Finding {
+  const beside = others.filter((other) => other.name !== rule.name);
+  const among = beside.length > 0 ? ` among the states of ${beside.map((other) => other.name).join(', ')}` : '';
   const { lattice } = values;
   const value = values.find(name);
   const open = (reason: string, figures: Record<string, unknown> = {}, problem = false): Finding => ({
@@ -131,7 +138,8 @@ export function keepsRule(name: string, rule: RuleValue, values: Values): Findin
   );
   let at: string | undefined;
   try {
-    const rules = linearRules(rule);
+    const judged = linearRules(rule);
+    const rules = [...judged, ...beside.flatMap(linearRules)];
     const period = [...families, ...rules].reduce<number[]>(
       (all, { steps }) => all.map((m, d) => lcm(m, steps[d] ?? 1)),
       lattice.family.vectors.map(() => 1),
@@ -139,7 +147,8 @@ export function keepsRule(name: string, rule: RuleValue, values: Values): Findin
     const verdict = keepsRules(
       families,
       rules,
-      (leak) => (at = extended(leak, rule, period, values)) !== undefined,
+      (leak) => (at = extended(leak, [rule, ...beside], period, values)) !== undefined,
+      judged.length,
       newBudget(8_000_000, 'operations of comparing moves with a rule'),
     );
     const figures = {
@@ -153,7 +162,7 @@ export function keepsRule(name: string, rule: RuleValue, values: Values): Findin
     if (verdict.kept)
       return {
         evidence: { kind: 'all sizes', proof: [verdict.evidence] },
-        statement: `every move of ${name} keeps ${rule.name}, on ${sizesWords([verdict.evidence])}`,
+        statement: `every move of ${name} keeps ${rule.name}${among}, on ${sizesWords([verdict.evidence])}`,
         figures,
         cautions: [...edges, ...tooSmall(verdict.evidence, lattice)],
       };
@@ -161,7 +170,7 @@ export function keepsRule(name: string, rule: RuleValue, values: Values): Findin
     const witness = witnessOf(verdict.leak, rule, rules, at, lattice.family);
     return {
       evidence: { kind: 'counterexample' },
-      statement: `${name} does not keep ${rule.name}: ${String(verdict.leaving.length)} of ${String(families.length)} terms lead out of it`,
+      statement: `${name} does not keep ${rule.name}${among}: ${String(verdict.leaving.length)} of ${String(families.length)} terms lead out of it`,
       figures: { ...figures, size: at },
       witness,
       cautions: [...edges, ...cancels(verdict.leak, values)],

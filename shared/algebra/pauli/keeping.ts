@@ -2,7 +2,8 @@ import { newBudget, type Budget } from '../../limits.ts';
 import type { Offset } from '../../lattice/cells.ts';
 import { shownForAllSizes, type AllSizes } from '../f2/all-sizes.ts';
 import { Coefficient } from '../numbers/coefficient.ts';
-import { lcmOf, modulo, phaseCoefficient, residueCount, residues } from './collect.ts';
+import { amplitudesOf } from './amplitudes.ts';
+import { lcmOf, modulo, residueCount, residues } from './collect.ts';
 import { classKey, siteKey, translateString } from './string.ts';
 import type { Family, LocalString, Site, Steps } from './types.ts';
 
@@ -125,12 +126,12 @@ interface Instance {
   readonly weights: readonly number[];
 }
 
-/** Instances of the rules that hold a flipped spin with weight. */
-function touched(flip: readonly Site[], rules: readonly LinearRule[]): Instance[] {
+/** Instances of the rules that hold one of the spins with weight, by key. */
+function touching(spins: readonly Site[], rules: readonly LinearRule[]): Map<string, Instance> {
   const found = new Map<string, Instance>();
   rules.forEach((rule, k) => {
     for (const { site } of rule.weights)
-      for (const f of flip) {
+      for (const f of spins) {
         if (classKey(site) !== classKey(f)) continue;
         const by = f.cell.offset.map((c, d) => c - (site.cell.offset[d] ?? 0));
         if (!by.every((c, d) => c % Math.max(rule.steps[d] ?? 1, 1) === 0)) continue;
@@ -141,60 +142,19 @@ function touched(flip: readonly Site[], rules: readonly LinearRule[]): Instance[
         });
       }
   });
-  return [...found.values()];
+  return found;
 }
 
-/** Σ terms as a function of the bits of `spins` (bit k of the index is spin k): exact, by the fast Walsh–Hadamard transform. */
-function amplitudes(
-  move: Move,
-  families: readonly Family[],
-  spins: readonly Site[],
-  budget: Budget,
-): (bits: number) => Coefficient {
-  const numberOf = new Map(spins.map((s, k) => [siteKey(s), k]));
-  const size = 2 ** spins.length;
-  // Coefficients up to rational factors: one table of whole numbers for each kind.
-  const kinds: { unit: Coefficient; den: bigint; entries: { mask: number; num: bigint; den: bigint }[] }[] = [];
-  for (const { family, string } of move.terms) {
-    let mask = 0;
-    let phase: number = string.phase;
-    for (const f of string.factors) {
-      if (f.pauli !== 'x') mask |= 1 << (numberOf.get(siteKey(f)) ?? 0);
-      if (f.pauli === 'y') phase++;
-    }
-    const value = (families[family]?.coefficient ?? Coefficient.zero).mul(phaseCoefficient(phase));
-    let done = false;
-    for (const kind of kinds) {
-      const ratio = value.div(kind.unit)?.asRational();
-      if (!ratio) continue;
-      kind.entries.push({ mask, ...ratio });
-      kind.den = (kind.den * ratio.den) / gcd(kind.den, ratio.den);
-      done = true;
-      break;
-    }
-    if (!done && !value.isZero()) kinds.push({ unit: value, den: 1n, entries: [{ mask, num: 1n, den: 1n }] });
-  }
-  const tables = kinds.map(({ unit, den, entries }) => {
-    const table = Array<bigint>(size).fill(0n);
-    for (const { mask, num, den: d } of entries) table[mask] = (table[mask] ?? 0n) + num * (den / d);
-    budget.spend(size * (spins.length + 1));
-    for (let half = 1; half < size; half *= 2)
-      for (let k = 0; k < size; k++) {
-        if (k & half) continue;
-        const [a, b] = [table[k] ?? 0n, table[k + half] ?? 0n];
-        table[k] = a + b;
-        table[k + half] = a - b;
-      }
-    return { unit, den, table };
-  });
-  return (bits) =>
-    tables.reduce((sum, { unit, den, table }) => {
-      const n = table[bits] ?? 0n;
-      return n === 0n ? sum : sum.add(unit.mul(Coefficient.rational(n, den)));
-    }, Coefficient.zero);
+/** Of the instances that the move does not touch those that lie within the spins: they hold before and after, and rule out local configurations. */
+function within(
+  spins: ReadonlyMap<string, Site>,
+  touched: ReadonlyMap<string, Instance>,
+  rules: readonly LinearRule[],
+): Instance[] {
+  return [...touching([...spins.values()], rules)].flatMap(([key, instance]) =>
+    !touched.has(key) && instance.sites.every((s) => spins.has(siteKey(s))) ? [instance] : [],
+  );
 }
-
-const gcd = (a: bigint, b: bigint): bigint => (b === 0n ? a : gcd(b, a % b));
 
 /** Whether a sum obeys a relation. */
 export function obeys(relation: LinearRule['relation'], sum: number, bound: number): boolean {
@@ -234,9 +194,14 @@ function* leaks(
   spins: readonly Site[],
   inAmplitude: number,
   instances: readonly Instance[],
+  judged: number,
   budget: Budget,
 ): Generator<Leak> {
-  const amplitude = amplitudes(move, families, spins.slice(0, inAmplitude), budget);
+  const terms = move.terms.map(({ family, string }) => ({
+    coefficient: families[family]?.coefficient ?? Coefficient.zero,
+    string,
+  }));
+  const amplitude = amplitudesOf(terms, spins.slice(0, inAmplitude), budget);
   const numberOf = new Map(spins.map((s, k) => [siteKey(s), k]));
   const flips = new Set(move.flip.map(siteKey));
   const forms = instances.map((instance) => {
@@ -274,7 +239,7 @@ function* leaks(
             flips.has(siteKey(spins[spin] ?? move.flip[0]!)) ? sum + w * (1 - 2 * (bits[spin] ?? 0)) : sum,
           before,
         );
-        if (!rule || obeys(rule.relation, after, rule.bound)) continue;
+        if (!rule || instance.rule >= judged || obeys(rule.relation, after, rule.bound)) continue;
         yield {
           flip: move.flip,
           families: [...new Set(move.terms.map((t) => t.family))],
@@ -304,13 +269,14 @@ function* leaks(
 }
 
 /**
- * Does the sum of the families keep the rules? `accept` is offered local configurations that leave, until it takes one (it may extend
+ * Does the sum of the families keep the first `judged` rules, in states that obey all of them? `accept` is offered local configurations that leave, until it takes one (it may extend
  * them to a whole allowed state); if it takes none, the answer is not known. Throws BudgetSpent. Rules must be translated in every direction.
  */
 export function keepsRules(
   families: readonly Family[],
   rules: readonly LinearRule[],
   accept: (leak: Leak) => boolean,
+  judged: number = rules.length,
   budget: Budget = newBudget(),
 ): Keeping {
   const dimension = rules[0]?.steps.length ?? families[0]?.steps.length ?? 0;
@@ -323,25 +289,26 @@ export function keepsRules(
   let [taken, reason]: [Leak | undefined, string] = [undefined, ''];
   const moves = movesOf(families, period, budget);
   for (const move of moves) {
-    const instances = touched(move.flip, rules);
+    const touched = touching(move.flip, rules);
     const spins = new Map<string, Site>();
     const take = (site: Site): void => void spins.set(siteKey(site), { species: site.species, cell: site.cell });
     for (const { string } of move.terms) string.factors.forEach(take);
     const inAmplitude = spins.size;
-    for (const instance of instances) instance.sites.forEach(take);
+    for (const instance of touched.values()) instance.sites.forEach(take);
+    const instances = [...touched.values(), ...within(spins, touched, rules)];
     const sites = [...spins.values()];
     from.forEach((f, d) => {
       const along = sites.map((s) => s.cell.offset[d] ?? 0);
       from[d] = Math.max(f, Math.max(...along) - Math.min(...along) + 1);
     });
-    if (instances.length === 0) continue;
+    if (touched.size === 0) continue;
     if (inAmplitude > mostAmplitudeSpins) {
       reason = `the amplitude of a move depends on ${String(inAmplitude)} spins; at most ${String(mostAmplitudeSpins)} are tabulated`;
       move.terms.forEach((t) => leaving.add(t.family));
       continue;
     }
     let offers = 0;
-    for (const leak of leaks(move, families, rules, sites, inAmplitude, instances, budget)) {
+    for (const leak of leaks(move, families, rules, sites, inAmplitude, instances, judged, budget)) {
       leak.families.forEach((f) => leaving.add(f));
       if (taken) break;
       if (accept(leak)) taken = leak;

@@ -120,3 +120,37 @@ describe('moves and rules', () => {
     expect(gradeOf(keepsRule('free', blockade, all).evidence)).toBe('refuted');
   });
 });
+
+describe('several rules together', () => {
+  it('count in one another’s states', () => {
+    const chain = lattice('chain', 'torus', 6);
+    const s = spins('s', 'vertices', [0]);
+    const apart = rule('apart', '<=', 1, [
+      {
+        sites: [
+          ['s:v0(0)', 1],
+          ['s:v0(1)', 1],
+        ],
+        anchor: 'v0(0)',
+        steps: [1],
+      },
+    ]);
+    const few = rule('few', '<=', 2, [
+      {
+        sites: [
+          ['s:v0(0)', 1],
+          ['s:v0(1)', 1],
+          ['s:v0(2)', 1],
+        ],
+        anchor: 'v0(0)',
+        steps: [1],
+      },
+    ]);
+    // one that hops beside a pair makes three in a row; where neighbours exclude each other there is no pair
+    const hop = operator(family(1, 'sx:v0(0) sx:v0(1)', [1]), family(1, 'sy:v0(0) sy:v0(1)', [1]));
+    const all = values(chain, s, apart, few, model('m', hop));
+    expect(gradeOf(keepsRule('m', few, all).evidence)).toBe('refuted');
+    expect(gradeOf(keepsRule('m', few, all, [apart, few]).evidence)).toBe('proved');
+    expect(gradeOf(keepsRule('m', apart, all, [apart, few]).evidence)).toBe('refuted');
+  });
+});

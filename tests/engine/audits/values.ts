@@ -1,24 +1,8 @@
 import { Coefficient } from '../../../shared/algebra/numbers/coefficient.ts';
 import { collect, scaleOperator, multiplyOperators, pinnedOperator } from '../../../shared/algebra/pauli/family.ts';
 import { newString } from '../../../shared/algebra/pauli/string.ts';
-import type {
-  Extended,
-  Factor,
-  Family,
-  LocalString,
-  Operator,
-  Pauli,
-  Steps,
-} from '../../../shared/algebra/pauli/types.ts';
-import type {
-  AuditStatement,
-  LawValue,
-  ModelValue,
-  RuleValue,
-  SymmetryValue,
-  Value,
-  Values,
-} from '../../../shared/language/values.ts';
+import type { Factor, Family, LocalString, Operator, Pauli, Steps } from '../../../shared/algebra/pauli/types.ts';
+import type { AuditStatement, ModelValue, RuleValue, Value, Values } from '../../../shared/language/values.ts';
 import { builtInFamily } from '../../../shared/lattice/built-in.ts';
 import type { Cell, CellKind, Lattice } from '../../../shared/lattice/cells.ts';
 import { periodicDirections, straight } from '../../../shared/lattice/cluster.ts';
@@ -79,14 +63,6 @@ export const spins = (name: string, kind: CellKind, classes: readonly number[]):
   classes,
 });
 
-export const coupling = (name: string, value?: Coefficient): Value => ({
-  what: 'coupling',
-  name,
-  place,
-  text: '',
-  value,
-});
-
 export function model(name: string, op: Operator): ModelValue {
   const species = [...new Set(op.families.flatMap((f) => f.string.factors.map((x) => x.species)))];
   return {
@@ -101,34 +77,6 @@ export function model(name: string, op: Operator): ModelValue {
     seams: [],
   };
 }
-
-export const law = (
-  name: string,
-  kind: CellKind,
-  value: 1 | -1,
-  strings: readonly { text: string; anchor: string; steps: Steps }[],
-): LawValue => ({
-  what: 'law',
-  name,
-  place,
-  text: '',
-  parameter: { variable: kind[0] ?? 'v', kind },
-  value,
-  families: strings.map(({ text, anchor, steps }) => ({
-    string: string(text),
-    steps,
-    needs: [cell(anchor)],
-    anchor: cell(anchor),
-  })),
-});
-
-export const symmetry = (name: string, extended: Extended): SymmetryValue => ({
-  what: 'symmetry',
-  name,
-  place,
-  text: '',
-  extended,
-});
 
 /** (1 − Z)/2 of each spin, times its weight, summed. */
 function occupation(sites: readonly (readonly [site: string, weight: number])[], dimension: number): Operator {
