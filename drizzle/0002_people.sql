@@ -12,6 +12,7 @@ CREATE TABLE "invitations" (
 	"invited_by" uuid,
 	"created_at" timestamp (3) with time zone DEFAULT now() NOT NULL,
 	"expires_at" timestamp (3) with time zone NOT NULL,
+	"ended_at" timestamp (3) with time zone,
 	CONSTRAINT "invitations_hash_unique" UNIQUE("hash")
 );
 --> statement-breakpoint
@@ -97,7 +98,7 @@ ALTER TABLE "notices" ADD CONSTRAINT "notices_actor_people_id_fk" FOREIGN KEY ("
 ALTER TABLE "notices" ADD CONSTRAINT "notices_notebook_notebooks_id_fk" FOREIGN KEY ("notebook") REFERENCES "public"."notebooks"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "access_tokens" ADD CONSTRAINT "access_tokens_person_people_id_fk" FOREIGN KEY ("person") REFERENCES "public"."people"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "mail_links" ADD CONSTRAINT "mail_links_person_people_id_fk" FOREIGN KEY ("person") REFERENCES "public"."people"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
-CREATE UNIQUE INDEX "invitations_address" ON "invitations" USING btree ("notebook","email");--> statement-breakpoint
+CREATE UNIQUE INDEX "invitations_address" ON "invitations" USING btree ("notebook","email") WHERE "invitations"."ended_at" is null;--> statement-breakpoint
 CREATE INDEX "invitations_email" ON "invitations" USING btree ("email");--> statement-breakpoint
 CREATE INDEX "invitations_by" ON "invitations" USING btree ("invited_by","created_at");--> statement-breakpoint
 CREATE INDEX "mails_due" ON "mails" USING btree ("due_at") WHERE "mails"."state" = 'waiting';--> statement-breakpoint

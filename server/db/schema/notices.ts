@@ -24,7 +24,7 @@ export const noticeKind = pgEnum('notice_kind', noticeKinds);
 export const mailState = pgEnum('mail_state', mailStates);
 export const grantedRole = pgEnum('granted_role', grantedRoles);
 
-/** Invitations by mail that wait. Accepting, declining and withdrawing remove them. */
+/** Invitations by mail. Accepting, declining, withdrawing and inviting anew end them; they are kept to count them. */
 export const invitations = pgTable(
   'invitations',
   {
@@ -39,9 +39,12 @@ export const invitations = pgTable(
     invitedBy: uuid().references(() => people.id, { onDelete: 'set null' }),
     createdAt: time().notNull().defaultNow(),
     expiresAt: time().notNull(),
+    endedAt: time(),
   },
   (table) => [
-    uniqueIndex('invitations_address').on(table.notebook, table.email),
+    uniqueIndex('invitations_address')
+      .on(table.notebook, table.email)
+      .where(sql`${table.endedAt} is null`),
     index('invitations_email').on(table.email),
     index('invitations_by').on(table.invitedBy, table.createdAt),
   ],
