@@ -68,7 +68,8 @@ function ensureChromium() {
 
 for (const signal of ['SIGINT', 'SIGTERM']) {
   process.on(signal, () => {
-    for (const child of running) child.kill(signal);
+    // Vitest takes its surroundings down on SIGINT; SIGTERM would end it on the spot.
+    for (const child of running) child.kill('SIGINT');
     process.exitCode = 1;
   });
 }

@@ -213,13 +213,41 @@ function fastFolder() {
   return free.bavail * free.bsize > 512 * 2 ** 20 ? memory : tmpdir();
 }
 
-/** A cluster for tests: quick instead of durable, gone after `stop`. */
+const throwaway = /^gaugewright-(\d+)-/;
+
+/** Stops a throwaway cluster, if it runs, and deletes it. */
+function discard(folder, bin, as) {
+  const data = join(folder, 'data');
+  try {
+    if (existsSync(join(data, 'postmaster.pid'))) run(bin, 'pg_ctl', ['-D', data, '-m', 'immediate', '-w', 'stop'], as);
+  } finally {
+    rmSync(folder, { recursive: true, force: true });
+  }
+}
+
+/** Discards the throwaway clusters of processes that were killed before they could; a folder's name holds its owner's number. */
+function sweep(place, bin, as) {
+  for (const name of readdirSync(place)) {
+    const pid = throwaway.exec(name)?.[1];
+    if (pid === undefined || existsSync(`/proc/${pid}`)) continue;
+    const folder = join(place, name);
+    if (statSync(folder).uid === (as.uid ?? process.getuid())) discard(folder, bin, as);
+  }
+}
+
+/** A cluster for tests: quick instead of durable, gone after `stop` or with this process. */
 export async function openThrowaway() {
   const as = runner();
-  const folder = mkdtempSync(join(fastFolder(), 'gaugewright-'));
+  const place = fastFolder();
+  const bin = programs(join(place, 'none'));
+  sweep(place, bin, as);
+  const folder = mkdtempSync(join(place, `gaugewright-${process.pid}-`));
   claim(folder, as);
-  const bin = programs(join(folder, 'data'));
-  const clear = () => rmSync(folder, { recursive: true, force: true });
+  const stop = () => {
+    process.off('exit', stop);
+    discard(folder, bin, as);
+  };
+  process.once('exit', stop);
   try {
     create(folder, bin, as, ['-N']);
     const quick = ['fsync=off', 'synchronous_commit=off', 'full_page_writes=off', 'wal_level=minimal'];
@@ -229,19 +257,9 @@ export async function openThrowaway() {
       'autovacuum=off',
       'max_connections=200',
     ]);
-    return {
-      url: address(folder, port, 'postgres'),
-      bin,
-      stop: () => {
-        try {
-          run(bin, 'pg_ctl', ['-D', join(folder, 'data'), '-m', 'immediate', '-w', 'stop'], as);
-        } finally {
-          clear();
-        }
-      },
-    };
+    return { url: address(folder, port, 'postgres'), bin, stop };
   } catch (error) {
-    clear();
+    stop();
     throw error;
   }
 }

@@ -1,4 +1,4 @@
-import { spawnSync } from 'node:child_process';
+import { spawn, spawnSync } from 'node:child_process';
 import { chmodSync, existsSync, mkdtempSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
@@ -7,6 +7,7 @@ import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { findCluster, openCluster, openThrowaway } from '../../server/commands/cluster.mjs';
 import { holderOf, takeLock } from '../../server/commands/lock.mjs';
 import { ensureDatabase } from '../../server/commands/migrate.mjs';
+import { root } from '../../server/commands/root.mjs';
 
 let folder = '';
 beforeAll(() => {
@@ -60,6 +61,38 @@ describe('the private cluster', () => {
       cluster.stop();
     }
     await expect(ask(cluster.url, 'SELECT 1')).rejects.toThrow(/ECONNREFUSED/);
+  });
+});
+
+describe('a throwaway cluster', () => {
+  const program = `
+    import { openThrowaway } from ${JSON.stringify(join(root, 'server', 'commands', 'cluster.mjs'))};
+    const { url } = await openThrowaway();
+    process.stdout.write(url + '\\n');
+    if (process.argv[1] === 'stay') setInterval(() => {}, 1000);
+    else process.exit(0);`;
+  const begin = (...words: string[]) => spawn(process.execPath, ['--input-type=module', '-e', program, ...words]);
+  const urlFrom = async (child: ReturnType<typeof begin>): Promise<string> => {
+    for await (const piece of child.stdout) return String(piece).trim();
+    throw new Error('it printed no address');
+  };
+
+  test('goes with its process, whether that stops it or not', async () => {
+    const child = begin();
+    const url = await urlFrom(child);
+    if (child.exitCode === null) await new Promise((resolve) => child.once('exit', resolve));
+    await expect(ask(url, 'SELECT 1')).rejects.toThrow(/ECONNREFUSED/);
+  });
+
+  test('of a killed process is discarded by the next', async () => {
+    const child = begin('stay');
+    const url = await urlFrom(child);
+    child.kill('SIGKILL');
+    await new Promise((resolve) => child.once('exit', resolve));
+    expect(await ask(url, 'SELECT 1 AS one')).toEqual([{ one: 1 }]);
+    const next = await openThrowaway();
+    next.stop();
+    await expect(ask(url, 'SELECT 1')).rejects.toThrow(/ECONNREFUSED/);
   });
 });
 
