@@ -44,6 +44,7 @@ const table: Readonly<Record<Action, readonly Hat[]>> = {
   follow: ['reader', 'referee', ...writers],
   remark: ['referee', ...writers],
   judge: ['referee'],
+  rerun: ['referee', ...writers],
   edit: writers,
   publish: writers,
   adopt: writers,
@@ -60,7 +61,7 @@ const byLink: ReadonlySet<Action> = new Set<Action>(['read', 'export']);
 /** What an access token of each scope opens, of what its person may. A token manages neither accounts nor rights. */
 const scopeTable: Readonly<Record<Scope, readonly Action[]>> = {
   read: ['visit', 'keep', 'read', 'export'],
-  write: ['make', 'fork', 'remark', 'judge', 'edit'],
+  write: ['make', 'fork', 'remark', 'judge', 'rerun', 'edit'],
   publish: ['publish', 'adopt'],
 };
 

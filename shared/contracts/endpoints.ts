@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { accountRows } from './account-rows.ts';
-import { bounds, idSchema, pageOf, pageQuery, plainText } from './common.ts';
+import { idSchema, pageOf, pageQuery } from './common.ts';
 import { editionSchema, editionSummarySchema, linkSchema, publishSchema } from './editions.ts';
 import {
   authorsSchema,
@@ -15,6 +15,8 @@ import {
   titleSchema,
 } from './notebooks.ts';
 import { addMemberSchema, memberSchema } from './people.ts';
+import { reviewRows } from './review-rows.ts';
+import { filters, uploadSchema } from './reviews.ts';
 import { grantedRoleSchema, visibilitySchema } from './rights.ts';
 import { editionNumber, ofEdition, ofEntry, ofLink, ofNotebook, row, search, silence } from './row.ts';
 
@@ -23,18 +25,25 @@ export { type Endpoint, type Method, writeHeader } from './row.ts';
 /** The table. Client calls, server routes and the matrix test of rights all walk it. */
 export const endpoints = {
   ...accountRows,
+  ...reviewRows,
 
   // shelf and public notebooks, newest change first
   listShelf: row('GET /api/shelf', {
     action: 'keep',
     of: 'installation',
-    query: z.object({ ...search, whose: z.enum(['all', 'own', 'shared']).default('all') }),
+    query: z.object({
+      ...search,
+      ...filters,
+      whose: z.enum(['all', 'own', 'shared']).default('all'),
+      /** Notebooks that one put off the shelf are listed apart. */
+      state: z.enum(['kept', 'archived']).default('kept'),
+    }),
     answer: pageOf(notebookSummarySchema),
   }),
   listPublic: row('GET /api/public', {
     action: 'visit',
     of: 'installation',
-    query: z.object(search),
+    query: z.object({ ...search, ...filters }),
     answer: pageOf(notebookSummarySchema),
   }),
 
@@ -46,11 +55,14 @@ export const endpoints = {
     answer: notebookSchema,
     status: 201,
   }),
-  /** Makes a notebook of a `.gw` text; its title is the text's own, else the one given, else the first line of prose. */
+  /**
+   * Makes a notebook of a file (`.gw`, JSON, Pauli strings as CSV); its title is the file's own, else the one given, else the first
+   * line of prose. 400 with `places` by line where the file cannot be read: `previewImport` says so beforehand.
+   */
   importNotebook: row('POST /api/imports', {
     action: 'make',
     of: 'installation',
-    body: z.object({ title: titleSchema.optional(), source: plainText(bounds.sourceCharacters) }),
+    body: uploadSchema,
     answer: notebookSchema,
     status: 201,
   }),
@@ -68,6 +80,7 @@ export const endpoints = {
     body: z.object({ visibility: visibilitySchema }),
     answer: notebookSchema,
   }),
+  /** Into the bin of its owner, for 30 days. */
   deleteNotebook: row('DELETE /api/notebooks/:notebook', {
     ...ofNotebook,
     action: 'delete',

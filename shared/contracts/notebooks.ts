@@ -88,6 +88,14 @@ export const liveEvents = {
   /** Title, authors, visibility, people or rights changed, or the notebook was deleted: read it again. */
   notebook: z.object({}),
   edition: z.object({ number: z.number().int(), status: z.enum(['computing', 'sealed', 'failed']) }),
+  /** Remarks were made, answered, settled or taken back: read them again. */
+  remarks: z.object({ remark: idSchema.nullable() }),
+  /** Verdicts on an edition were given or taken back: read them again. */
+  verdicts: z.object({ edition: z.number().int() }),
+  /** Variants came, went or were decided: read them again. */
+  variants: z.object({ sending: idSchema }),
+  /** The server evaluated a text that someone waits for here: a comparison, a collation or a rerun. */
+  evaluation: z.object({ status: z.enum(['done', 'failed']) }),
   /** The people of the notebook who have it open now. */
   present: z.object({ people: z.array(personSchema) }),
 } as const;

@@ -32,9 +32,10 @@ export const actions = [
   'export',
   'fork',
   'leave', // give up one's own role
-  'follow', // choose how notices about it come
+  'follow', // choose how notices about it come, and put it off one's shelf
   'remark',
   'judge', // give a verdict
+  'rerun', // have the server compute claims of an edition again
   'edit', // write entries, title, authors
   'publish', // seal an edition
   'adopt', // take variants of a fork over
