@@ -166,7 +166,7 @@ export function mapPeriod(value: MapValue, dimension: number): number[] {
     case 'states':
       return join(declaration.blocks.map((b) => b.steps));
     case 'gauge':
-      return join([]);
+      return join(declaration.symmetry.extended.parts.map((p) => p.steps));
     case 'then':
       return join([mapPeriod(declaration.first, dimension), mapPeriod(declaration.second, dimension)]);
     case 'inverse':

@@ -1,4 +1,4 @@
-import type { SpeciesValue, Values } from '../language/values.ts';
+import type { LawValue, SpeciesValue, Values } from '../language/values.ts';
 import type { Lattice, LatticeFamily } from '../lattice/cells.ts';
 
 /** What every map is built on: the lattice and what was declared before it. */
@@ -16,3 +16,12 @@ export const speciesOf = (context: Context, name: string): SpeciesValue | undefi
   const value = context.values.find(name);
   return value?.what === 'spins' ? value : undefined;
 };
+
+/** Laws that maps declare (`N.gauss`), then the declared ones. */
+export function lawsOf(values: Values): LawValue[] {
+  const all = [...values.all.values()];
+  return [
+    ...all.flatMap((value) => (value.what === 'map' ? [...value.map.laws.values()] : [])),
+    ...all.flatMap((value) => (value.what === 'law' ? [value] : [])),
+  ];
+}

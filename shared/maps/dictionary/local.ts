@@ -6,7 +6,7 @@ import type { LocalString, Phase, Steps } from '../../algebra/pauli/types.ts';
 import { newFrame, type Frame } from '../../algebra/pauli/vector.ts';
 import { BudgetSpent, type Budget } from '../../limits.ts';
 import type { DictionaryRule } from '../../language/values.ts';
-import type { Context } from '../context.ts';
+import { lawsOf, type Context } from '../context.ts';
 import { incidencePhrase, stringPhrase } from '../phrases.ts';
 import { inSteps, lcm, minus, residues } from '../steps.ts';
 import { slotsOf } from './charged.ts';
@@ -88,8 +88,8 @@ function declaredAs(
   context: Context,
 ): { readonly name: string; readonly phase: number } | undefined {
   const [first] = string.factors;
-  for (const value of context.values.all.values()) {
-    if (value.what !== 'law' || !first) continue;
+  if (!first) return undefined;
+  for (const value of lawsOf(context.values)) {
     for (const f of value.families) {
       const own = f.string.factors[0];
       if (!own || f.string.factors.length !== string.factors.length) continue;

@@ -10,7 +10,7 @@ import type { Cluster } from '../../lattice/cluster.ts';
 import { geometryTable } from '../../lattice/geometry.ts';
 import type { SteppedCell } from '../../lattice/windings.ts';
 import type { Budget } from '../../limits.ts';
-import { speciesOf, type Context } from '../context.ts';
+import { lawsOf, speciesOf, type Context } from '../context.ts';
 import { extendedPhrase, stringPhrase } from '../phrases.ts';
 import { points } from '../steps.ts';
 
@@ -52,7 +52,10 @@ function declared(
 ): Candidate[] {
   const own = (s: LocalString) => s.factors.length > 0 && s.factors.every((f) => species.includes(f.species));
   const out: Candidate[] = [];
-  for (const value of context.values.all.values()) {
+  for (const value of [
+    ...lawsOf(context.values).filter((law) => !context.values.all.has(law.name)),
+    ...context.values.all.values(),
+  ]) {
     if (value.what === 'law' && value.families.every((f) => own(f.string) && cluster.admits(f.steps))) {
       const strings = value.families.flatMap((f) => wrapOrbit(table, cluster, f, budget));
       const [first] = value.families;
