@@ -4,9 +4,10 @@ import type { Settings } from '../settings.ts';
 import * as notebooks from './schema/notebooks.ts';
 import * as notices from './schema/notices.ts';
 import * as people from './schema/people.ts';
+import * as reviews from './schema/reviews.ts';
 import * as work from './schema/work.ts';
 
-const schema = { ...people, ...notebooks, ...notices, ...work };
+const schema = { ...people, ...notebooks, ...notices, ...work, ...reviews };
 // Stands here and in drizzle.config.ts: with one alone, queries ask for columns that do not exist.
 const casing = 'snake_case';
 

@@ -1,6 +1,7 @@
-import { sql } from 'drizzle-orm';
+import { sql, type SQL } from 'drizzle-orm';
 import {
   type AnyPgColumn,
+  customType,
   index,
   integer,
   pgEnum,
@@ -19,6 +20,11 @@ export const role = pgEnum('role', roles);
 export const visibility = pgEnum('visibility', visibilities);
 export const entryKind = pgEnum('entry_kind', entryKinds);
 
+const tsvector = customType<{ data: string }>({ dataType: () => 'tsvector' });
+const marks = '^[](){}<>|.,:;/\\+-*=&!?@#$%~"`_';
+/** The last two arguments of translate(): marks to spaces, so that words are the same on both sides of a search. */
+export const parting = `'${marks}', '${' '.repeat(marks.length)}'`;
+
 export const notebooks = pgTable(
   'notebooks',
   {
@@ -30,12 +36,17 @@ export const notebooks = pgTable(
     changedAt: timestamp({ withTimezone: true, precision: 3 }).notNull().defaultNow(),
     originNotebook: uuid().references((): AnyPgColumn => notebooks.id, { onDelete: 'set null' }),
     originEdition: integer(),
+    /** In the bin since; nobody finds it then but its owner, there. */
+    deletedAt: timestamp({ withTimezone: true, precision: 3 }),
   },
   (table) => [
     index('notebooks_public')
       .on(table.changedAt, table.id)
       .where(sql`${table.visibility} = 'public'`),
     index('notebooks_origin').on(table.originNotebook),
+    index('notebooks_bin')
+      .on(table.deletedAt)
+      .where(sql`${table.deletedAt} is not null`),
   ],
 );
 
@@ -50,6 +61,8 @@ export const memberships = pgTable(
       .references(() => people.id, { onDelete: 'cascade' }),
     role: role().notNull(),
     since: timestamp({ withTimezone: true, precision: 3 }).notNull().defaultNow(),
+    /** Put off this person's shelf. */
+    archivedAt: timestamp({ withTimezone: true, precision: 3 }),
   },
   (table) => [
     primaryKey({ columns: [table.notebook, table.person] }),
@@ -75,8 +88,18 @@ export const entries = pgTable(
     changedBy: uuid().references(() => people.id, { onDelete: 'set null' }),
     changedAt: timestamp({ withTimezone: true, precision: 3 }).notNull().defaultNow(),
     deletedAt: timestamp({ withTimezone: true, precision: 3 }),
+    /**
+     * What is found by words. Punctuation of the operator language parts words ("s^z[l.a]" is s, z, l, a); the cut keeps a text
+     * of many rare words below the bound of a tsvector.
+     */
+    words: tsvector().generatedAlwaysAs(
+      (): SQL => sql`to_tsvector('simple', translate(left(${entries.text}, 100000), ${sql.raw(parting)}))`,
+    ),
   },
-  (table) => [index('entries_notebook').on(table.notebook, table.position)],
+  (table) => [
+    index('entries_notebook').on(table.notebook, table.position),
+    index('entries_words').using('gin', table.words),
+  ],
 );
 
 /** Who writes in an entry now. Past its time a hold counts for nothing. */
