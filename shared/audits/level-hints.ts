@@ -18,6 +18,7 @@ export function differenceHint(
   if (
     shared > 2 &&
     Number.isFinite(ratio) &&
+    Math.abs(ratio) > 1e-6 &&
     !near(ratio, 1) &&
     pairs.every(([a, b]) => near(a - a0, ratio * (b - b0)))
   )
