@@ -1,9 +1,10 @@
 import { familyKey } from '../algebra/pauli/family.ts';
+import { extendedKey } from '../algebra/pauli/extended.ts';
 import { bodyKey } from '../algebra/pauli/string.ts';
 import type { Extended, Factor, Family, Operator, Steps } from '../algebra/pauli/types.ts';
 import type { Kind, ReportModel, ReportTerm } from '../contracts/report.ts';
 import { newBudget } from '../limits.ts';
-import type { ModelValue, Values } from '../language/values.ts';
+import type { LawFamily, ModelValue, Values } from '../language/values.ts';
 import { classLabel, type TypesetContext } from '../typeset/context.ts';
 import {
   gather,
@@ -56,19 +57,46 @@ function constantText(operator: Operator): string {
 const constantSums = (operator: Operator, context: TypesetContext): Gathered[] =>
   gather(operator, context).filter((sum) => sum.members.every((member) => isConstantAt(operator, member)));
 
-const sameOperator = (a: Operator, b: Operator): boolean =>
-  a.families.length === b.families.length &&
-  a.extended.length === b.extended.length &&
-  a.families.every((family, k) => familyKey(family) === (b.families[k] && familyKey(b.families[k])));
+const operatorKey = (operator: Operator): string =>
+  [
+    ...operator.families.map(familyKey),
+    ...operator.extended.map((term) => `${term.coefficient.key()} ${extendedKey(term.extended)}`),
+  ].join('\n');
 
-/** Pieces of a model's source in order; a piece that is an earlier model by name stands for that model's own pieces. */
-function piecesInOrder(model: ModelValue, values: Values): Operator[] {
-  const all = [...values.all.values()];
-  // Only those declared before: two models may be equal.
-  const earlier = all.slice(0, Math.max(0, all.indexOf(model)));
+const keys = new WeakMap<ModelValue, string>();
+/** Equal for models that are the same operator. */
+function modelKey(model: ModelValue): string {
+  const key = keys.get(model) ?? operatorKey(model.operator);
+  keys.set(model, key);
+  return key;
+}
+
+const byOperator = new WeakMap<Values, ReadonlyMap<string, ModelValue>>();
+/** The first model that is each operator. */
+function modelsByOperator(values: Values): ReadonlyMap<string, ModelValue> {
+  const known = byOperator.get(values);
+  if (known) return known;
+  const all = new Map<string, ModelValue>();
+  for (const value of values.all.values())
+    if (value.what === 'model' && !all.has(modelKey(value))) all.set(modelKey(value), value);
+  byOperator.set(values, all);
+  return all;
+}
+
+/**
+ * Pieces of a model's source in order; a piece that is an earlier model by name stands for that model's own sums, in the
+ * order in which that model is set.
+ */
+function piecesInOrder(model: ModelValue, values: Values, context: TypesetContext): Operator[] {
+  const known = modelsByOperator(values);
   return model.pieces.flatMap(({ operator }) => {
-    const named = earlier.find((value) => value.what === 'model' && sameOperator(value.operator, operator));
-    return named?.what === 'model' ? piecesInOrder(named, values) : [operator];
+    const named = known.get(operatorKey(operator));
+    // Only one declared before: two models may be equal.
+    if (!named || named.place.line >= model.place.line) return [operator];
+    return sumsOf(named, values, context).sums.map(({ members }) => ({
+      families: members.flatMap((member) => named.operator.families[member] ?? []),
+      extended: members.flatMap((member) => named.operator.extended[member - named.operator.families.length] ?? []),
+    }));
   });
 }
 
@@ -109,7 +137,7 @@ function sumsOf(
   const all = gather(model.operator, context).filter(
     (sum) => !sum.members.every((m) => isConstantAt(model.operator, m)),
   );
-  const ordered = inSourceOrder(model.operator, all, piecesInOrder(model, values));
+  const ordered = inSourceOrder(model.operator, all, piecesInOrder(model, values, context));
   const { image } = model;
   const origin = image && values.find(image.of);
   if (!image || origin?.what !== 'model') return { sums: ordered, image: null };
@@ -161,10 +189,13 @@ function termsOf(
     sum.members.map((member): ReportTerm => {
       const family = model.operator.families[member];
       const extended = model.operator.extended[member - model.operator.families.length];
-      const alone = gather(
-        family ? { families: [family], extended: [] } : { families: [], extended: extended ? [extended] : [] },
-        context,
-      )[0];
+      const alone =
+        sum.members.length === 1
+          ? sum
+          : gather(
+              family ? { families: [family], extended: [] } : { families: [], extended: extended ? [extended] : [] },
+              context,
+            )[0];
       const factors = family
         ? family.string.factors
         : (extended?.extended.parts.flatMap((part) => part.string.factors) ?? []);
@@ -197,20 +228,32 @@ function languageOf(model: ModelValue, kinds: ReadonlyMap<string, string>): Repo
   return [...kinds.values()].some((kind) => kind !== 'vertices') ? 'gauge' : 'spin';
 }
 
+const laws = new WeakMap<Values, readonly LawFamily[]>();
+/** Families of all laws, those that maps declare included. */
+function lawsOf(values: Values): readonly LawFamily[] {
+  const known = laws.get(values);
+  if (known) return known;
+  const all = [...values.all.values()];
+  const found = [
+    ...all.flatMap((value) => (value.what === 'law' ? value.families : [])),
+    ...all.flatMap((value) =>
+      value.what === 'map' ? [...value.map.laws.values()].flatMap((law) => law.families) : [],
+    ),
+  ];
+  laws.set(values, found);
+  return found;
+}
+
 export function reportModel(model: ModelValue, values: Values, context: TypesetContext): ReportModel {
   const { sums, image } = sumsOf(model, values, context);
   const names = new Set(model.species);
   for (const family of model.operator.families) for (const factor of family.string.factors) names.add(factor.species);
-  const laws = [...values.all.values()].flatMap((value) => (value.what === 'law' ? value.families : []));
-  const declared = [...values.all.values()].flatMap((value) =>
-    value.what === 'map' ? [...value.map.laws.values()].flatMap((law) => law.families) : [],
-  );
   const kinds = kindsOf(context, names);
   const roles = rolesOf({
     family: context.family,
     operator: model.operator,
     species: kinds,
-    laws: [...laws, ...declared],
+    laws: lawsOf(values),
   });
   const groups = sums.map((sum) => ({
     tex: signed(sum, 'page'),

@@ -70,8 +70,10 @@ const constant = (c: Coefficient, scene: Scene): Operator =>
 /** a + b or a − b. */
 export function add(a: Amount, b: Amount, sign: 1 | -1, scene: Scene, place: Span): Amount {
   scene.budget.spend();
-  if (a.what === 'number' && b.what === 'number')
+  if (a.what === 'number' && b.what === 'number') {
+    scene.budget.spend(a.value.size + b.value.size);
     return numberAmount(sign === 1 ? a.value.add(b.value) : a.value.sub(b.value), sumOfAlong(a.along, b.along, sign));
+  }
   const factor = Coefficient.rational(sign);
   if (a.what === 'kets' && b.what === 'kets') return addKets(a, b, factor, place);
   return operatorAmount(
@@ -88,7 +90,15 @@ export function total(operators: readonly Operator[], scene: Scene): Operator {
   return collect(operators, options(scene));
 }
 
+/** An operator times a number; spends what the coefficients cost. */
+function scaled(operator: Operator, c: Coefficient, scene: Scene): Operator {
+  const terms = [...operator.families, ...operator.extended];
+  scene.budget.spend(c.size * terms.reduce((n, t) => n + t.coefficient.size, 0));
+  return scaleOperator(operator, c);
+}
+
 function scaleNumber(a: NumberAmount, b: NumberAmount, scene: Scene, place: Span): NumberAmount {
+  scene.budget.spend(a.value.size * b.value.size);
   if (!a.along && !b.along) return numberAmount(a.value.mul(b.value));
   const [moving, fixed] = a.along ? [a, b] : [b, a];
   const k = fixed.along ? undefined : integerOf(fixed.value);
@@ -112,7 +122,7 @@ export function multiply(a: Amount, b: Amount, scene: Scene, place: Span): Amoun
   ] as const) {
     if (number.what !== 'number') continue;
     const c = settled(number, scene, place);
-    if (other.what === 'operator') return operatorAmount(scaleOperator(other.operator, c));
+    if (other.what === 'operator') return operatorAmount(scaled(other.operator, c, scene));
     if (other.what === 'kets')
       return { what: 'kets', amplitudes: new Map([...other.amplitudes].map(([bits, x]) => [bits, x.mul(c)])) };
   }

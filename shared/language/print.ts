@@ -19,9 +19,9 @@ import type {
   Word,
 } from '../../grammar/syntax.ts';
 import { levelOf, type Level } from '../../grammar/words.ts';
-import { newBudget } from '../limits.ts';
+import { BudgetSpent, newBudget, type Budget } from '../limits.ts';
 import { parseStatement } from './parse.ts';
-import { layoutOf } from './source.ts';
+import { layoutOf, type Layout } from './source.ts';
 
 /** Syntax back to text: `parse(print(t))` is t again. Brackets that the table of precedence demands are put in. */
 
@@ -283,15 +283,34 @@ export function printStatement(node: Statement): string {
 export function formatSource(source: string): string {
   const lines = source.split(/\r\n|\n|\r/u);
   const { statements } = layoutOf(source);
-  const budget = newBudget();
+  const budget = newBudget(printSteps, 'steps of one printing');
   let next = 0;
   const out: string[] = [];
+  const asWritten = (to: number): void => {
+    for (; next < to; next++) out.push((lines[next] ?? '').trimEnd());
+  };
   for (const layout of statements) {
-    out.push(...lines.slice(next, layout.line - 1).map((l) => l.trimEnd()));
-    next = layout.line - 1 + layout.lines;
-    const parsed = layout.text.includes('#') ? undefined : parseStatement(layout, budget);
-    if (parsed && 'node' in parsed) out.push(printStatement(parsed.node));
-    else out.push(...lines.slice(layout.line - 1, next).map((l) => l.trimEnd()));
+    asWritten(layout.line - 1);
+    const node = layout.text.includes('#') ? undefined : readable(layout, budget);
+    if (node) {
+      out.push(printStatement(node));
+      next = layout.line - 1 + layout.lines;
+    } else asWritten(layout.line - 1 + layout.lines);
   }
-  return [...out, ...lines.slice(next).map((l) => l.trimEnd())].join('\n');
+  asWritten(lines.length);
+  return out.join('\n');
+}
+
+/** Steps of parsing that one printing may take; past them statements stay as they were written. */
+const printSteps = 1_000_000;
+
+function readable(layout: Layout, budget: Budget): Statement | undefined {
+  if (budget.left < 0) return undefined;
+  try {
+    const parsed = parseStatement(layout, budget);
+    return 'node' in parsed ? parsed.node : undefined;
+  } catch (error) {
+    if (error instanceof BudgetSpent) return undefined;
+    throw error;
+  }
 }

@@ -76,6 +76,17 @@ export function nearestPairs(family: LatticeFamily, k: number): readonly PairCla
       message: `pairs(k) goes up to k = ${String(pairLimit)}, got ${String(k)}`,
       which: 'pairs',
     };
+  const known = shellsOf.get(family) ?? new Map<number, readonly PairClass[]>();
+  shellsOf.set(family, known);
+  const shell = known.get(k) ?? findShell(family, k);
+  known.set(k, shell);
+  return shell;
+}
+
+/** Shells found before: setting formulas asks for the same few again and again. */
+const shellsOf = new WeakMap<LatticeFamily, Map<number, readonly PairClass[]>>();
+
+function findShell(family: LatticeFamily, k: number): readonly PairClass[] {
   let radius = Math.max(...family.vectors.map((v) => Math.sqrt(dot(v, v))));
   for (;;) {
     const groups = shells(pairsWithin(family, radius));

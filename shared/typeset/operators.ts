@@ -154,6 +154,17 @@ function shellsOf(operator: Operator, context: TypesetContext): Map<number, Plac
  * classes of cells that take part. Extended strings and constants stand by themselves, constants last.
  */
 export function gather(operator: Operator, context: TypesetContext): Gathered[] {
+  const known = gathered.get(operator);
+  if (known?.context === context) return [...known.sums];
+  const sums = gatherAnew(operator, context);
+  gathered.set(operator, { context, sums });
+  return [...sums];
+}
+
+/** Sums of an operator as last gathered: page, formula to paste and spoken form ask one after another. */
+const gathered = new WeakMap<Operator, { readonly context: TypesetContext; readonly sums: readonly Gathered[] }>();
+
+function gatherAnew(operator: Operator, context: TypesetContext): Gathered[] {
   const buckets = new Map<string, Bucket>();
   const constants: { family: Family; number: number }[] = [];
   const shells = shellsOf(operator, context);

@@ -201,6 +201,11 @@ export class Coefficient {
     return out;
   }
 
+  /** Products that it is written with, at least 1: what working with it costs. */
+  get size(): number {
+    return Math.max(1, P.sizeOf(this.numerator) + (this.denominator === P.one ? 0 : P.sizeOf(this.denominator)));
+  }
+
   /** Its number for given values of the couplings. Throws MissingValue with all names that have none; a zero denominator gives NaN or Infinity. */
   toFloat(values: ReadonlyMap<string, number> = new Map()): { re: number; im: number } {
     const missing = [...this.symbols()].filter((n) => !values.has(n)).sort();

@@ -20,6 +20,8 @@ export type Polynomial = readonly Term[];
 
 /** Largest number of terms that is carried. */
 const mostTerms = 4_096;
+/** Products that one multiplication may form. */
+const mostProducts = 200_000;
 
 export function monomial(powers: Iterable<readonly [string, number]>): Monomial {
   const sorted = [...powers].filter(([, e]) => e !== 0).sort(([a], [b]) => (a < b ? -1 : a > b ? 1 : 0));
@@ -82,10 +84,14 @@ export const isConstant = (p: Polynomial): boolean => p.length === 0 || (p.lengt
 
 function fromTerms(terms: Iterable<Term>): Polynomial {
   const byKey = new Map<string, Term>();
+  // roots count too: each monomial has a sum of them
+  let size = 0;
   for (const t of terms) {
     const old = byKey.get(t.monomial.key);
-    byKey.set(t.monomial.key, old ? { monomial: t.monomial, coefficient: S.add(old.coefficient, t.coefficient) } : t);
-    if (byKey.size > mostTerms) throw new BudgetSpent(`terms of a coefficient (${String(mostTerms)})`);
+    const next = old ? { monomial: t.monomial, coefficient: S.add(old.coefficient, t.coefficient) } : t;
+    byKey.set(t.monomial.key, next);
+    size += next.coefficient.length - (old?.coefficient.length ?? 0);
+    if (size > mostTerms) throw new BudgetSpent(`terms of a coefficient (${String(mostTerms)})`);
   }
   const kept = [...byKey.values()].filter((t) => !S.isZero(t.coefficient));
   return kept.length < 2 ? kept : kept.sort((a, b) => compareMonomials(b.monomial, a.monomial));
@@ -102,8 +108,13 @@ export const neg = (a: Polynomial): Polynomial =>
   a.map((t) => ({ monomial: t.monomial, coefficient: S.neg(t.coefficient) }));
 export const sub = (a: Polynomial, b: Polynomial): Polynomial => add(a, neg(b));
 
+/** Products that a polynomial is a sum of: one for each root of each monomial. */
+export const sizeOf = (a: Polynomial): number => a.reduce((n, t) => n + t.coefficient.length, 0);
+
 export function mul(a: Polynomial, b: Polynomial, budget?: Budget): Polynomial {
   budget?.spend(a.length * b.length);
+  if (a.length > 1 && b.length > 1 && sizeOf(a) * sizeOf(b) > mostProducts)
+    throw new BudgetSpent(`products in one coefficient (${String(mostProducts)})`);
   const [s] = a;
   const [t] = b;
   if (!s || !t) return zero;

@@ -1,3 +1,4 @@
+import { BudgetSpent } from '../../limits.ts';
 import * as Q from './rational.ts';
 import type { Rational } from './rational.ts';
 
@@ -34,11 +35,15 @@ export function sqrtOfRational(r: Rational): Surd {
   return [r.num > 0n ? { radicand: inner, re: size, im: Q.zero } : { radicand: inner, re: Q.zero, im: size }];
 }
 
+/** Independent square roots of one number. */
+const mostRoots = 512;
+
 function fromTerms(terms: Iterable<SurdTerm>): Surd {
   const byRadicand = new Map<bigint, SurdTerm>();
   for (const t of terms) {
     const old = byRadicand.get(t.radicand);
     byRadicand.set(t.radicand, old ? { radicand: t.radicand, re: Q.add(old.re, t.re), im: Q.add(old.im, t.im) } : t);
+    if (byRadicand.size > mostRoots) throw new BudgetSpent(`square roots of one number (${String(mostRoots)})`);
   }
   return [...byRadicand.values()]
     .filter((t) => !Q.isZero(t.re) || !Q.isZero(t.im))

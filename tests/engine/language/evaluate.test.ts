@@ -98,6 +98,8 @@ describe('hostile sources', () => {
     ['huge decimals', `model a = 1e999999 + ${'9'.repeat(100_000)}`],
     ['many families', `model a = ${many(25, (k) => `(s^x[vertices(${k}, 0)] + s^z[vertices(${k}, 0)]) `)}`],
     ['a power of a sum', `model a = (${many(40, (k) => `${k ? '+' : ''} s^x[vertices(${k}, 0)]`)})^64`],
+    ['a product of sums of roots', `model a = ${many(60, (k) => `(J + ${k} h + sqrt(${k + 2})) `)}s^x[vertices(0, 0)]`],
+    ['powers of sums of roots', `model a = (${many(20, (k) => `sqrt(${k + 2}) + `)}J + h)^64 s^x[vertices(0, 0)]`],
     ['a chain of or', `model a = sum(v: vertices where ${many(6000, () => 'v.x == 0 or ')} v.x == 1) 1`],
   ])('%s end in a problem', (_, text) => {
     const program = run(prelude + text);

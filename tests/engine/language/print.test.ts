@@ -148,6 +148,12 @@ describe('the formatter', () => {
       );
     expect(operators(b)).toEqual(operators(a));
   });
+  it.each([
+    ['many lines', `model a = 1\n${' +1\n'.repeat(200_000)}`],
+    ['many long statements', `model a = ${'+ s^z[v]'.repeat(2_000)}\n`.repeat(50)],
+  ])('gives %s back, past its limits as they were', (_, text) => {
+    expect(formatSource(text).replace(/\s+/gu, '')).toBe(text.replace(/\s+/gu, ''));
+  });
   it('leaves what it cannot read', () => {
     const text = 'model A = = 1\nmodel B = 1 # kept\n\n# alone\nmodel   C=1+ 2';
     expect(formatSource(text)).toBe('model A = = 1\nmodel B = 1 # kept\n\n# alone\nmodel C = 1 + 2');
