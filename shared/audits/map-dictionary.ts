@@ -1,6 +1,6 @@
 import type { Extended, LocalString } from '../algebra/pauli/types.ts';
 import type { MapValue, Values } from '../language/values.ts';
-import { newBudget } from '../limits.ts';
+import { BudgetSpent, newBudget } from '../limits.ts';
 import { isStraight, sizeKey, straight, sizeText } from '../lattice/cluster.ts';
 import type { Lattice, Size } from '../lattice/cells.ts';
 import type { Context } from '../maps/context.ts';
@@ -8,6 +8,7 @@ import { keptCommutation, type CommutationBreak, type KeptCommutation } from '..
 import { isExtended, translateExtended } from '../maps/dictionary/decompose.ts';
 import type { DictionaryDeclaration } from '../maps/dictionary/declaration.ts';
 import { localRelations, type LocalRelations } from '../maps/dictionary/local.ts';
+import { boundaries, boundaryWords } from '../maps/dictionary/boundaries.ts';
 import { onSize, type SignBreak, type SizeFindings } from '../maps/dictionary/sizes.ts';
 import { extendedPhrase, stringPhrase } from '../maps/phrases.ts';
 import { translateString } from '../algebra/pauli/string.ts';
@@ -21,6 +22,8 @@ const source =
 /** Small straight sizes on which relations are decided one by one besides the declared one. */
 const extents = [1, 2, 3, 4];
 const mostSpins = 512;
+/** Operations that all seams of one map may take. */
+const seamOperations = 4_000_000;
 
 /** The sizes of the line; without any the declared one, and small straight ones of the same dimension, each once. */
 export function sizesToDecide(lattice: Lattice, asked: readonly Size[] = []): readonly Size[] {
@@ -128,6 +131,23 @@ const dimensionWords = (found: SizeFindings): string =>
     ? `both sectors have dimension 2^${String(found.leftDimension)}`
     : `the sectors have dimensions 2^${String(found.leftDimension)} and 2^${String(found.rightDimension)}: the larger side holds spins that the map does not see`;
 
+/** Sectors of one side whose value is not the same on all sizes: "flip is +1 on 2, 4 and -1 on 3". */
+function changing(all: readonly SizeFindings[], side: 'leftSectors' | 'rightSectors'): string[] {
+  const values = new Map<string, Map<1 | -1, string[]>>();
+  for (const found of all)
+    for (const sector of found[side]) {
+      if (!/ = [+-]1$/u.test(sector.text)) continue;
+      const string = sector.text.replace(/ = [+-]1$/u, '');
+      const own = values.get(string) ?? new Map<1 | -1, string[]>();
+      own.set(sector.value, [...(own.get(sector.value) ?? []), found.size]);
+      values.set(string, own);
+    }
+  return [...values].flatMap(([string, own]) => {
+    const [plus, minus] = [own.get(1), own.get(-1)];
+    return plus && minus ? [`${string} is +1 on ${plus.join(', ')} and -1 on ${minus.join(', ')}`] : [];
+  });
+}
+
 function holdsFinding(
   name: string,
   all: readonly SizeFindings[],
@@ -141,11 +161,13 @@ function holdsFinding(
   const left = declared.leftSectors.map((sector) => sector.text);
   const right = declared.rightSectors.map((sector) => sector.text);
   const failing = bad.map((found) => found.size).join(', ');
+  const depends = [...changing(good, 'leftSectors'), ...changing(good, 'rightSectors')];
   return {
     evidence: { kind: 'exact on', sizes: good.map((found) => found.size) },
     statement: `${name} keeps every product relation with its sign on ${good.map((found) => found.size).join(', ')}; on ${declared.size} it holds in the sector ${list(left)} on the left and ${list(right)} on the right`,
-    figures,
+    figures: depends.length > 0 ? { ...figures, depends } : figures,
     cautions: [
+      ...(depends.length > 0 ? [`The sign of a relation depends on the size: ${depends.join('; ')}.`] : []),
       `Signs of global relations do not follow from commutation: they hold on the listed sizes. On ${declared.size} ${dimensionWords(declared)}.`,
       ...(bad.length === 0
         ? []
@@ -237,7 +259,43 @@ export function dictionaryFindings(
     first,
     ...localFinding(value.name, local, figures),
     { ...holds, cautions: [...(holds.cautions ?? []), ...tilted] },
+    ...boundaryFinding(value.name, declaration, context, { main, declared, figures }),
   ];
+}
+
+/** Which boundary of one side answers which sector of the other; nothing where no seam fits or a limit ends the search. */
+function boundaryFinding(
+  name: string,
+  declaration: DictionaryDeclaration,
+  context: Context,
+  {
+    main,
+    declared: found,
+    figures,
+  }: {
+    readonly main: Size;
+    readonly declared: SizeFindings;
+    readonly figures: Readonly<Record<string, unknown>>;
+  },
+): Finding[] {
+  try {
+    const all = boundaries(declaration, context, main, found, newBudget(seamOperations));
+    if (all.length === 0) return [];
+    return [
+      {
+        evidence: { kind: 'exact on', sizes: [found.size] },
+        statement: `boundaries under ${name} on ${found.size}: ${all.map(boundaryWords).join('; ')}`,
+        figures: { ...figures, boundaries: all },
+        cautions: [
+          'A seam is the antiperiodic boundary of twist(M, P, d); sectors that are not named keep their values.',
+        ],
+        sources: [source],
+      },
+    ];
+  } catch (error) {
+    if (error instanceof BudgetSpent) return [];
+    throw error;
+  }
 }
 
 /** Local relations of the lines that repeat everywhere, for every size; nothing where a limit ends the search or a line stands still. */

@@ -110,7 +110,12 @@ const product = (strings: readonly FiniteString[], members: readonly number[], n
   }, identityOn(n));
 
 /** Signed strings that products of one side's relations come to on the other side; +1 is what each has to be. */
-function forced(group: StabilizerGroup, others: readonly FiniteString[], n: number, budget: Budget): FiniteString[] {
+export function forced(
+  group: StabilizerGroup,
+  others: readonly FiniteString[],
+  n: number,
+  budget: Budget,
+): FiniteString[] {
   return group.relations().map(({ members, phase }) => {
     budget.spend(members.length * (1 + (n >>> 5)));
     return turned(product(others, members, n), -phase);

@@ -1,0 +1,106 @@
+import { describe, expect, it } from 'vitest';
+import type { Claim } from '../../../shared/contracts/report.ts';
+import { newDerivation } from '../../../shared/derivation/derive.ts';
+
+/** Claims of maps of every kind, as a source asks for them. */
+
+const head = (lattice: string): string => `lattice ${lattice}
+spins s on vertices
+spins g on links
+symmetry flip = prod(v: vertices) s^x[v]
+map minimal = gauge flip with g on links
+map fix = solve minimal.gauss for s
+map whole = minimal then fix
+map back = inverse fix
+`;
+
+function claimsOf(source: string): readonly Claim[] {
+  const report = newDerivation().derive(source);
+  expect(report.problems.filter((problem) => problem.severity === 'error')).toEqual([]);
+  return report.claims;
+}
+
+const figure = (claims: readonly Claim[], name: string): unknown =>
+  claims.find((claim) => name in claim.figures)?.figures[name];
+
+describe.each([
+  'chain torus 5',
+  'square torus 3 x 3',
+  'triangular torus 3 x 3',
+  'honeycomb torus 2 x 2',
+  'kagome torus 2 x 2',
+  'cubic torus 2 x 2 x 2',
+])('gauging, then solving its law, on %s', (lattice) => {
+  const whole = claimsOf(`${head(lattice)}audit map whole\n`);
+
+  it('is one duality, proved for every size, in the even sector without flux', () => {
+    expect(whole.some((claim) => claim.grade === 'refuted' || claim.grade === 'open')).toBe(false);
+    expect(whole[0]?.grade).toBe('proved');
+    expect(figure(whole, 'leftSectors')).toEqual(['flip = +1']);
+    expect(figure(whole, 'leftDimension')).toBe(figure(whole, 'rightDimension'));
+  });
+
+  it('joins sectors of the same dimension in each of its parts', () => {
+    for (const part of ['minimal', 'fix', 'back']) {
+      const claims = claimsOf(`${head(lattice)}audit map ${part}\n`);
+      expect(claims.every((claim) => claim.grade === 'proved' || claim.grade === 'exact')).toBe(true);
+      expect(figure(claims, 'leftDimension')).toBe(figure(claims, 'rightDimension'));
+      const sectors = JSON.stringify([figure(claims, 'leftSectors'), figure(claims, 'rightSectors')]);
+      expect(sectors).toContain('minimal.gauss = +1');
+    }
+  });
+});
+
+describe('boundaries and sectors that answer one another', () => {
+  const ring = (extent: number): string => `lattice chain torus ${String(extent)}
+spins s on vertices
+spins m on vertices
+symmetry flip = prod(v: vertices) s^x[v]
+symmetry walls = prod(v: vertices) m^z[v]
+map dual from s to m
+  s^z[v] s^z[v + (1)] => m^z[v]                for v: vertices
+  s^x[v]              => m^x[v - (1)] m^x[v]   for v: vertices
+map cluster from s to m
+  s^z[v - (1)] s^x[v] s^z[v + (1)] => m^z[v] m^z[v + (1)] for v: vertices
+`;
+
+  // the product of all bonds is 1 with periodic and -1 with antiperiodic ends, and it is the image of all walls
+  it.each([4, 5, 6])(
+    'an antiperiodic magnet of %i spins has an odd number of walls, and the other way round',
+    (extent) => {
+      const claims = claimsOf(`${ring(extent)}audit map dual\n`);
+      expect(figure(claims, 'boundaries')).toEqual([
+        { side: 'left', symmetry: 'flip', direction: 1, left: [], right: ['walls = -1'], none: false },
+        { side: 'right', symmetry: 'walls', direction: 1, left: ['flip = -1'], right: [], none: false },
+      ]);
+    },
+  );
+
+  it('says which relation of the cluster ring takes which sign on which size', () => {
+    const claims = claimsOf(`${ring(6)}audit map cluster\n`);
+    expect(figure(claims, 'depends')).toEqual(['flip is +1 on 2, 4, 6 and -1 on 1, 3']);
+    expect(claims.flatMap((claim) => claim.cautions).join(' ')).toContain('depends on the size');
+  });
+});
+
+describe('a composition with a wrong part', () => {
+  it('is refuted as a whole, with its witness', () => {
+    const claims = claimsOf(`lattice chain torus 4
+spins p on vertices
+spins q on vertices
+spins a on vertices
+spins b on vertices
+map wrong from p, q to a, b
+  p^x[v] q^x[v] => a^z[v]        for v: vertices
+  p^y[v] q^y[v] => b^z[v]        for v: vertices
+  p^z[v] q^z[v] => a^z[v] b^z[v] for v: vertices
+map turn = circuit
+  h a[v] for v: vertices
+map both = wrong then turn
+audit map both
+`);
+    const refuted = claims.find((claim) => claim.grade === 'refuted');
+    expect(refuted?.witness).toMatchObject({ left: '-1', right: '+1' });
+    expect(claims.every((claim) => claim.figures['signs'] === false)).toBe(true);
+  });
+});
