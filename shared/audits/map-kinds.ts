@@ -48,7 +48,7 @@ export function circuitFindings(value: MapValue, declaration: Declared<'circuit'
   if (!values.lattice) return [];
   return automorphismFindings(value.name, lines.rules, {
     figures: { layers: declaration.layers.length },
-    cautions: smallGateCautions(declaration, values.lattice),
+    cautions: [...smallGateCautions(declaration, values.lattice), ...edgeCautions(declaration, values.lattice)],
   });
 }
 
@@ -71,6 +71,23 @@ function smallGateCautions(declaration: Declared<'circuit'>, lattice: Lattice): 
   return largest > 0 && lattice.periodic.some((p) => p)
     ? [
         `On a torus of extent up to ${String(largest)} both targets of a gate may be one spin; the circuit as written is then none.`,
+      ]
+    : [];
+}
+
+/** What an open edge does to gates that reach from cell to cell. */
+function edgeCautions({ layers }: Declared<'circuit'>, lattice: Lattice): string[] {
+  if (lattice.periodic.every((p) => p)) return [];
+  const reaching = layers.some((layer) =>
+    layer.gates.some(({ targets }) =>
+      targets.some((a) =>
+        targets.some((b) => a.cell.offset.some((c, d) => !lattice.periodic[d] && c !== b.cell.offset[d])),
+      ),
+    ),
+  );
+  return reaching
+    ? [
+        'Images are those of the infinite lattice, cut at the open edge; where the edge cuts a gate off, the image of a term near it may be another one.',
       ]
     : [];
 }

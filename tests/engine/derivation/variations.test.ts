@@ -13,14 +13,19 @@ function numbers(of: Report): unknown {
   const round = (value: unknown): unknown =>
     typeof value === 'number' ? Math.round(value * 1e7) / 1e7 + 0 : Array.isArray(value) ? value.map(round) : value;
   // rounding and the order of terms may differ in the last digits
-  const vague = new Set(['maxDifference', 'residual', 'leftSectors', 'rightSectors', 'table', 'relationList', 'found']);
+  const vague = new Set(['maxDifference', 'residual']);
+  const plain = (value: unknown): boolean =>
+    typeof value === 'number' ||
+    typeof value === 'boolean' ||
+    value === null ||
+    (Array.isArray(value) && value.every((v) => typeof v === 'number'));
   return {
     claims: of.claims.map(({ audit, grade, figures }) => ({
       audit,
       grade,
       figures: Object.fromEntries(
         Object.entries(figures)
-          .filter(([name]) => !vague.has(name))
+          .filter(([name, value]) => !vague.has(name) && (name === 'size' || plain(value)))
           .map(([name, value]) => [name, round(value)]),
       ),
     })),
