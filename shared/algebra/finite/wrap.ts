@@ -193,7 +193,13 @@ export function anticommutesOnSite(
 }
 
 /** True if the seams give a translate the sign −1. */
-export function crosses(table: SiteTable, cluster: Cluster, string: LocalString, by: Offset, seams: readonly Seam[]): boolean {
+export function crosses(
+  table: SiteTable,
+  cluster: Cluster,
+  string: LocalString,
+  by: Offset,
+  seams: readonly Seam[],
+): boolean {
   return (
     seams.filter(({ symmetry, direction }) =>
       anticommutesOnSite(string, symmetry, (f) => {
