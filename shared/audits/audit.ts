@@ -30,6 +30,8 @@ export interface Finding {
   readonly sources?: readonly string[];
   /** Set where the line itself is in error (labels of one sector that clash, a coupling without value): a problem besides. */
   readonly problem?: string;
+  /** Set where the question was not begun because it costs more than the means allow: others may have more. */
+  readonly tooDear?: Cost;
 }
 
 /** What answering would take; symbolic questions cost next to nothing. */
@@ -45,6 +47,7 @@ export interface Progress {
   /** 0 … 1 */
   readonly done: number;
   readonly doing: string;
+  /** What a later run can go on from (`Means.from`), as plain data; to be copied before the run goes on. */
   readonly checkpoint?: unknown;
 }
 
@@ -62,6 +65,8 @@ export interface Means {
   readonly kernel: Kernel;
   /** Largest cost that is answered here and now; dearer questions stand open with their cost. */
   readonly limit: { readonly operations: number; readonly bytes: number };
+  /** The last checkpoint that this question yielded before it was broken off; plain data, and none for a fresh start. */
+  readonly from?: unknown;
 }
 
 export interface Audit {

@@ -9,6 +9,7 @@ import { groundCost, groundOf, meanTerms, measured } from './ground.ts';
 import { couplingValues, failureFinding, openFinding, sizesOf } from './numeric.ts';
 import { keyOf } from './question.ts';
 import { isLoop } from './expect.ts';
+import { asPart } from './progress.ts';
 import { overlapOf, referenceOf, type Reference } from './references.ts';
 import { finiteSubject, subjectWords, type FiniteSubject } from './sector.ts';
 import { sideNotes } from './spectrum.ts';
@@ -43,6 +44,8 @@ type Measure = (
 interface Scan {
   readonly subject: FiniteSubject;
   readonly vectors: boolean;
+  /** Whether a measure needs the ground space of the point before. */
+  readonly neighbours: boolean;
   readonly measure: Measure;
   readonly loops: boolean;
   readonly reference: Reference | undefined;
@@ -53,7 +56,7 @@ function* prepared(question: Question, size: Size, means: Means): Generator<Prog
   const [side] = statement.subjects;
   if (!side) throw new Error('a scan has a subject');
   const subject = finiteSubject(values, side, size);
-  const plain = { subject, loops: false, reference: undefined };
+  const plain = { subject, loops: false, neighbours: false, reference: undefined };
   switch (statement.quantity) {
     case 'gap':
       return { ...plain, vectors: false, measure: gapOf };
@@ -61,7 +64,12 @@ function* prepared(question: Question, size: Size, means: Means): Generator<Prog
       return { ...plain, vectors: false, measure: (ground) => ground.energies[0] ?? null };
     case 'overlap': {
       if (statement.reference === undefined)
-        return { ...plain, vectors: true, measure: (ground, _, before) => (before ? overlapOf(before, ground) : null) };
+        return {
+          ...plain,
+          vectors: true,
+          neighbours: true,
+          measure: (ground, _, before) => (before ? overlapOf(before, ground) : null),
+        };
       const at = couplingValues(values);
       const reference = yield* referenceOf(values, statement.reference, side, subject, at, means);
       return {
@@ -95,32 +103,59 @@ interface Series {
   notes: readonly string[];
 }
 
-/** Measures at the points in order; `rows`: length of a row of neighbours. */
+/** Where a scan stood when it was broken off: the points of the grid so far, then those that refine it. */
+interface Checkpoint {
+  readonly grid: Series;
+  readonly refined?: Series;
+}
+
+interface Along {
+  readonly points: readonly number[][];
+  /** Length of a row of neighbours. */
+  readonly row: number;
+  /** What an earlier run has measured already. */
+  readonly from: Series | undefined;
+  /** The checkpoint that a series makes. */
+  readonly checkpoint: (series: Series) => Checkpoint;
+}
+
+/** Measures at the points in order. */
 function* measuredAlong(
   question: Question,
   scan: Scan,
-  points: readonly number[][],
-  row: number,
+  { points, row, from, checkpoint }: Along,
   means: Means,
-  total: number,
 ): Generator<Progress, Series> {
   const { statement, values } = question;
   const base = couplingValues(values);
-  const series: Series = { points: [], values: [], largest: 0, notes: [] };
+  const series: Series = {
+    points: [...(from?.points ?? [])],
+    values: [...(from?.values ?? [])],
+    largest: from?.largest ?? 0,
+    notes: from?.notes ?? [],
+  };
+  const known = series.points.length;
+  // An overlap of neighbours needs the ground state of the point before, which no checkpoint holds.
+  const first = scan.neighbours && known % row !== 0 ? known - 1 : known;
   let before: Spectrum | undefined;
   try {
     for (const [k, point] of points.entries()) {
+      if (k < first) continue;
       const couplings = new Map(base);
       statement.over.forEach(({ coupling }, d) => couplings.set(coupling, point[d] ?? 0));
       if (k % row === 0) {
         before?.space?.free();
         before = undefined;
       }
-      yield { done: k / total, doing: `${scan.subject.name}, point ${String(k + 1)} of ${String(points.length)}` };
-      const ground = yield* groundOf(values, scan.subject, couplings, scan.vectors, means, scan.subject.name);
+      const done = k / points.length;
+      const doing = `${scan.subject.name}, point ${String(k + 1)} of ${String(points.length)}`;
+      yield { done, doing, ...(k > known ? { checkpoint: checkpoint(series) } : {}) };
+      const solving = groundOf(values, scan.subject, couplings, scan.vectors, means, doing);
+      const ground = yield* asPart(solving, done, 1 / points.length);
       const previous = before;
       before = ground;
       try {
+        if (k < known) continue;
         series.values.push(scan.measure(ground, couplings, previous));
       } finally {
         previous?.space?.free();
@@ -170,12 +205,19 @@ function* decide(question: Question, means: Means): Generator<Progress, readonly
     scan = yield* prepared(question, size, means);
     const grid = gridOf(statement);
     const row = statement.over.at(-1)?.points.length ?? 1;
-    const series = yield* measuredAlong(question, scan, grid, row, means, grid.length);
+    const from = means.from as Checkpoint | undefined;
+    const gridAlong: Along = { points: grid, row, from: from?.grid, checkpoint: (grid) => ({ grid }) };
+    const series = yield* measuredAlong(question, scan, gridAlong, means);
     const moving = statement.over.findIndex(({ points }) => points.length > 1);
     const single = statement.over.filter(({ points }) => points.length > 1).length === 1;
     const extra = quantity === 'gap' && single ? nearMinima(series.points, series.values, moving) : [];
-    const refined =
-      extra.length > 0 ? yield* measuredAlong(question, scan, extra, extra.length, means, extra.length) : undefined;
+    const near: Along = {
+      points: extra,
+      row: extra.length,
+      from: from?.refined,
+      checkpoint: (refined) => ({ grid: series, refined }),
+    };
+    const refined = extra.length > 0 ? yield* measuredAlong(question, scan, near, means) : undefined;
     return [finding(words, at, names, series, refined, scan, quantity)];
   } catch (error) {
     return [failureFinding(words, values, error)];

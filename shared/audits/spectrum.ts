@@ -6,6 +6,7 @@ import type { Audit, Finding, Means, Progress, Question } from './audit.ts';
 import { standing } from './grades.ts';
 import { differenceHint } from './level-hints.ts';
 import { failureFinding, levelsOf, sizesOf, spectrumQuestion, subjectCost } from './numeric.ts';
+import { asPart } from './progress.ts';
 import { keyOf } from './question.ts';
 import { finiteSubject, subjectWords } from './sector.ts';
 
@@ -95,8 +96,8 @@ function* decide(question: Question, means: Means): Generator<Progress, readonly
     return { spectrum, notes: sideNotes(side.name, subject.model.notes, spectrum) };
   };
   try {
-    const a = yield* solved(left);
-    const b = yield* solved(right);
+    const a = yield* asPart(solved(left), 0, 1 / 2);
+    const b = yield* asPart(solved(right), 1 / 2, 1 / 2);
     const finding = verdict(words, size, a.spectrum, b.spectrum, levels);
     return [{ ...finding, cautions: [...(finding.cautions ?? []), ...a.notes, ...b.notes] }];
   } catch (error) {

@@ -122,6 +122,8 @@ export const claimSchema = z.object({
   cautions: z.array(z.string()),
   /** What stands behind it: literature and method, in words. */
   sources: z.array(z.string()),
+  /** Set on a claim that stands open because its answer is too costly here: the name by which a server can be asked for it. */
+  question: z.string().optional(),
 });
 export type Claim = z.infer<typeof claimSchema>;
 

@@ -20,10 +20,9 @@ export const questionsOf = (statement: AuditStatement, values: Values): readonly
 function tooDear(question: Question, means: Means): Finding | undefined {
   const cost = audits.get(question.audit)?.cost(question);
   if (!cost || (cost.operations <= means.limit.operations && cost.bytes <= means.limit.bytes)) return undefined;
-  return openFinding(question.statement.text, `too large to be answered here and now: ${cost.words}`, {
-    operations: cost.operations,
-    bytes: cost.bytes,
-  });
+  const reason = `too large to be answered here and now: ${cost.words}`;
+  const { operations, bytes } = cost;
+  return { ...openFinding(question.statement.text, reason, { operations, bytes }), tooDear: cost };
 }
 
 /** Findings of a question, in slices; what goes wrong in one audit leaves its claim open and touches no other. */
@@ -31,9 +30,8 @@ export function* findingsOf(question: Question, means: Means): Generator<Progres
   const audit = audits.get(question.audit);
   if (!audit) return [openFinding(question.statement.text, `there is no audit ${question.audit}`)];
   try {
-    return tooDear(question, means)
-      ? [tooDear(question, means)].filter((found) => found !== undefined)
-      : yield* audit.decide(question, means);
+    const dear = tooDear(question, means);
+    return dear ? [dear] : yield* audit.decide(question, means);
   } catch (error) {
     if (error instanceof BudgetSpent)
       return [openFinding(question.statement.text, `a limit was reached: ${error.limit}`)];

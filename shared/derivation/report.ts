@@ -4,12 +4,13 @@ import type { Program } from '../language/evaluate.ts';
 import type { Value, Values } from '../language/values.ts';
 import type { Lattice } from '../lattice/cells.ts';
 import { sizeText } from '../lattice/cluster.ts';
+import { engineVersion } from './engine.ts';
 import { typesetContext, type TypesetOptions } from './typeset-context.ts';
 import { reportDeclaration } from './declarations.ts';
+import { reportImages } from './images.ts';
 import { reportModel } from './models.ts';
 
-/** Version of the engine, sealed into the claims of an edition: to be raised when an answer may change. */
-export const engineVersion = '1';
+export { engineVersion };
 
 const setModels = new WeakMap<Value, { readonly options: TypesetOptions; readonly model: ReportModel }>();
 const setDeclarations = new WeakMap<
@@ -76,13 +77,14 @@ const byPlace = (a: { line: number; column?: number }, b: { line: number; column
 export function reportOf(program: Program, claims: readonly Claim[], problems: readonly Problem[]): Report {
   const { values, lattice } = program;
   const all = [...program.problems, ...problems];
-  let set: Pick<Report, 'models' | 'declarations'> = { models: {}, declarations: [] };
+  let set: Pick<Report, 'models' | 'declarations' | 'images'> = { models: {}, declarations: [] };
   const options = typesetContext(values);
   if (options) {
     try {
       set = {
         models: modelsOf(values, options),
         declarations: [...latticeDeclaration(program), ...declarationsOf(values, options)],
+        images: reportImages(values, options.context),
       };
     } catch (error) {
       if (!(error instanceof BudgetSpent)) throw error;
