@@ -1,13 +1,14 @@
 import { drizzle, type NodePgDatabase } from 'drizzle-orm/node-postgres';
 import pg from 'pg';
 import type { Settings } from '../settings.ts';
+import * as jobs from './schema/jobs.ts';
 import * as notebooks from './schema/notebooks.ts';
 import * as notices from './schema/notices.ts';
 import * as people from './schema/people.ts';
 import * as reviews from './schema/reviews.ts';
 import * as work from './schema/work.ts';
 
-const schema = { ...people, ...notebooks, ...notices, ...work, ...reviews };
+const schema = { ...jobs, ...people, ...notebooks, ...notices, ...work, ...reviews };
 // Stands here and in drizzle.config.ts: with one alone, queries ask for columns that do not exist.
 const casing = 'snake_case';
 
