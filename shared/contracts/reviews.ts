@@ -103,7 +103,10 @@ const comparedSideSchema = z.object({
 export const comparisonSchema = z.object({
   left: comparedSideSchema,
   right: comparedSideSchema,
+  /** Prose, as text. */
   entries: z.array(entryDifferenceSchema),
+  /** Statements that are spelled differently, as text: to be read beside `physics`, and no difference by itself. */
+  source: z.array(entryDifferenceSchema),
   /** Null while the server evaluates a side (the event `evaluation` tells when it is done), or where it could not: see `reason`. */
   physics: physicsDifferenceSchema.nullable(),
   reason: z.string().nullable(),

@@ -36,7 +36,9 @@ export const verdictWord = pgEnum('verdict_word', verdictWords);
 
 /** What a fork began with: each entry as it was, with its id in the origin and in the fork. */
 export interface ForkBase {
+  /** The origin's title, and the one that the fork was made with. */
   readonly title: string;
+  readonly ownTitle: string;
   readonly entries: readonly {
     /** Null where the edition that was copied is older than the ids of its entries. */
     readonly origin: string | null;
