@@ -18,6 +18,26 @@ export const kinds = [
 ] as const;
 export type Kind = (typeof kinds)[number];
 
+export const orbitSchema = z.object({
+  species: z.string(),
+  /** Kind and class: "links.1", "vertices". */
+  cell: z.string(),
+  offset: z.array(z.number().int()),
+  pauli: z.enum(['x', 'y', 'z']),
+});
+
+const supportSchema = z.object({ orbit: z.array(orbitSchema), steps: z.array(z.number().int()) });
+
+export const refusalSchema = z.object({
+  reason: z.string(),
+  term: z.array(supportSchema),
+  /** Empty where no symmetry is known. */
+  symmetry: z.string(),
+  charged: z.array(supportSchema),
+  overlap: z.array(orbitSchema),
+});
+export type RefusalWitness = z.infer<typeof refusalSchema>;
+
 /** A problem in the source. Lines and columns count from 1, in characters; `length` of the offending text. */
 export const problemSchema = z.object({
   code: z.string(),
@@ -29,18 +49,12 @@ export const problemSchema = z.object({
   hint: z.string(),
   /** A replacement for the offending text, where the hint is one. */
   fix: z.string().optional(),
+  /** What a map's refusal rests on, for the plate: the term, what it is charged under, and the spins where the two anticommute. */
+  witness: refusalSchema.optional(),
   /** Cautions do not stop evaluation. */
   severity: z.enum(['error', 'caution']).default('error'),
 });
 export type Problem = z.infer<typeof problemSchema>;
-
-export const orbitSchema = z.object({
-  species: z.string(),
-  /** Kind and class: "links.1", "vertices". */
-  cell: z.string(),
-  offset: z.array(z.number().int()),
-  pauli: z.enum(['x', 'y', 'z']),
-});
 
 export const termSchema = z.object({
   coefficient: z.string(),
@@ -127,6 +141,42 @@ export const claimSchema = z.object({
 });
 export type Claim = z.infer<typeof claimSchema>;
 
+/** One row of a map's table of images: what a spin, operator, law or symmetry becomes, or why it has no image. */
+export const imageSchema = z.object({
+  map: z.string(),
+  /** Line of the map. */
+  line: z.number().int(),
+  what: z.enum(['spin', 'operator', 'law', 'symmetry']),
+  name: z.string(),
+  /** A string at one place, a product of unbounded support, a sum, ±1 where it is used up; or none. */
+  image: z.enum(['string', 'product', 'sum', 'constant', 'none']),
+  left: z.string(),
+  /** TeX of the image; empty where there is none. */
+  right: z.string(),
+  spoken: z.string(),
+  /** Why there is none, and the symmetry under which it is charged; empty else. */
+  reason: z.string(),
+  symmetry: z.string(),
+  /** Two copies, some cells apart, of what has no image alone: the string whose ends they are. */
+  pair: z.object({ left: z.string(), right: z.string() }).nullable(),
+  notes: z.array(z.string()),
+  leftSupports: z.array(supportSchema),
+  rightSupports: z.array(supportSchema),
+});
+export type ReportImage = z.infer<typeof imageSchema>;
+
+/** A step that a model offers: statements to be added to the source as they stand. */
+export const suggestionSchema = z.object({
+  /** Line of the model. */
+  line: z.number().int(),
+  model: z.string(),
+  what: z.enum(['declare', 'gauge', 'solve']),
+  /** Why it fits, in one sentence. */
+  words: z.string(),
+  statements: z.array(z.string()),
+});
+export type Suggestion = z.infer<typeof suggestionSchema>;
+
 export const reportSchema = z.object({
   format: z.literal('gaugewright-report/1'),
   engine: z.string(),
@@ -145,5 +195,8 @@ export const reportSchema = z.object({
   models: z.record(z.string(), modelSchema),
   declarations: z.array(declarationSchema),
   claims: z.array(claimSchema),
+  /** For each map, what becomes of spins, operators, laws and symmetries. */
+  images: z.array(imageSchema).optional(),
+  suggestions: z.array(suggestionSchema).optional(),
 });
 export type Report = z.infer<typeof reportSchema>;

@@ -107,7 +107,7 @@ export function dictionaryMap(declaration: DictionaryDeclaration, context: Conte
         out.push({ families: [], extended: [{ coefficient: piece.coefficient, extended: side }] });
       else
         return refused(
-          `the image of ${stringPhrase(own, context.family)} is a string of unbounded support for each cell, which a sum over cells cannot hold`,
+          `the image of ${stringPhrase(own, context.family)} is a string of unbounded support for each cell, and a sum over cells holds local terms only; take the image of the operator at one cell instead, as in operator O = ${context.name}(…)`,
           own,
         );
     }
