@@ -6,19 +6,23 @@ import passport from 'passport';
 import type { Logger } from 'pino';
 import type { Database } from './db/connection.ts';
 import type { FakeGithub } from './fakes/github.ts';
+import type { FakeMail } from './fakes/mail.ts';
 import type { Live } from './live.ts';
 import { binder } from './middleware/endpoint.ts';
 import { headers, nonceOf, ownPagesOnly, rates } from './middleware/guard.ts';
 import { health, observe } from './middleware/observe.ts';
-import { sessions, whoAsks } from './middleware/person.ts';
+import { sessions, tokens, unlessToken, whoAsks } from './middleware/person.ts';
 import { nothingHere, problems } from './middleware/problem.ts';
 import { editionRoutes } from './routes/editions.ts';
 import { entryRoutes } from './routes/entries.ts';
 import { liveRoutes } from './routes/live.ts';
 import { notebookRoutes } from './routes/notebooks.ts';
+import { openApiRoutes } from './routes/openapi.ts';
 import { peopleRoutes } from './routes/people.ts';
 import { type GithubAccess, signInRoutes } from './routes/sign-in.ts';
-import type { Context } from './services/context.ts';
+import { stopMailPages } from './routes/stop-mail.ts';
+import type { Context, House } from './services/context.ts';
+import { stopPath } from './services/post.ts';
 import type { Settings } from './settings.ts';
 
 export interface Parts {
@@ -29,24 +33,31 @@ export interface Parts {
   readonly askForClaims: Context['askForClaims'];
   /** The stand-in for GitHub, where the settings name it. */
   readonly fakeGithub: FakeGithub | null;
+  /** The same for mail. */
+  readonly fakeMail: FakeMail | null;
+  readonly house: House;
 }
 
 /** Where the stand-in's page is; under /auth, so that whatever stands in front of the server hands it on. */
 const standInPath = '/auth/stand-in/github';
+const mailboxPath = '/auth/stand-in/mail';
 /** An imported source in UTF-8, as JSON. */
 const bodyLimit = '5mb';
 
 /** The whole of the web server but its port: guard, person, routes, pages. */
 export function makeApp(parts: Parts): Express {
-  const { settings, log, database, fakeGithub } = parts;
+  const { settings, log, database, fakeGithub, fakeMail } = parts;
   const app = express();
   app.disable('x-powered-by');
   app.set('trust proxy', settings.trustProxy);
   app.use(observe(log));
   app.get('/healthz', health(database));
   app.use(headers(settings));
+  // A mail program that stops mail has neither cookie nor page of ours.
+  app.use(stopPath, rates(settings).all, stopMailPages({ database }, settings.sessionSecret, nonceOf));
   app.use(answers(parts));
   if (fakeGithub !== null) app.use(standInPath, fakeGithub.pages);
+  if (fakeMail !== null) app.use(mailboxPath, fakeMail.pages);
   app.use(['/api', '/auth', '/healthz'], nothingHere);
   app.use(pages());
   app.use(problems);
@@ -54,22 +65,24 @@ export function makeApp(parts: Parts): Express {
 }
 
 /** Everything that knows who asks: the rows of the table, and the sign-in. */
-function answers({ settings, database, live, askForClaims, fakeGithub }: Parts): RequestHandler {
+function answers({ settings, database, live, askForClaims, fakeGithub, house }: Parts): RequestHandler {
   const context: Context = { database, askForClaims };
   const auth = new passport.Passport();
   const rate = rates(settings);
   const router = Router();
   const bind = binder(router, database);
-  const signIn = signInRoutes(bind, context, auth, githubAccess(settings, fakeGithub), settings.publicUrl);
-  peopleRoutes(bind, context);
+  const signIn = signInRoutes(bind, context, house, auth, githubAccess(settings, fakeGithub), settings.publicUrl);
+  peopleRoutes(bind, context, house);
   notebookRoutes(bind, context);
   entryRoutes(bind, context);
   editionRoutes(bind, context);
   liveRoutes(bind, live);
+  openApiRoutes(bind);
 
   const chain = Router();
-  chain.use(rate.all, ownPagesOnly(settings), sessions(database, settings), whoAsks(database, auth), rate.writing);
-  chain.use('/auth/github', rate.signingIn);
+  const fromPages = [ownPagesOnly(settings), sessions(database, settings), ...whoAsks(database, auth)];
+  chain.use(rate.all, tokens(database), ...fromPages.map(unlessToken), rate.writing);
+  chain.use(['/auth/github', '/api/sign-in/mail', '/api/sign-in/link', '/api/invitations/look'], rate.signingIn);
   chain.use(express.json({ limit: bodyLimit }), signIn, router);
   // Not mounted: the rows of the table are whole paths.
   return (request, response, next) => {

@@ -6,10 +6,13 @@ import { openDatabase } from './db/connection.ts';
 import { openPool } from './evaluation/pool.ts';
 import { openQueue } from './evaluation/queue.ts';
 import { openFakeGithub } from './fakes/github.ts';
+import { openFakeMail } from './fakes/mail.ts';
 import { openLive } from './live.ts';
+import { noRoad, openRoad, type Road } from './mail/road.ts';
 import { nonceOf } from './middleware/guard.ts';
 import { openLog } from './middleware/observe.ts';
 import { runProgram, type Undo } from './program.ts';
+import { openPost } from './services/post.ts';
 import { sealEditionJob } from './services/sealing.ts';
 import type { Settings } from './settings.ts';
 
@@ -39,9 +42,15 @@ export async function startWeb(settings: Settings, log: Logger = openLog(setting
       undo.push(fakeGithub.close);
       log.warn('a stand-in for GitHub signs people in: anyone can be anyone here');
     }
-    const app = makeApp({ settings, log, database, live, askForClaims: queue.ask, fakeGithub });
+    const fakeMail = settings.mail === null && settings.fakes.includes('mail') ? await openFakeMail(nonceOf) : null;
+    if (fakeMail !== null) undo.push(fakeMail.close);
+    const road = mailRoad(settings, fakeMail?.url ?? null);
+    const house = { mail: road.kind, stewards: settings.stewards };
+    const app = makeApp({ settings, log, database, live, askForClaims: queue.ask, fakeGithub, fakeMail, house });
     const server = createServer(app);
     await listening(server, settings);
+    const base = settings.publicUrl ?? `http://${settings.host}:${String((server.address() as AddressInfo).port)}`;
+    undo.push(openPost(database, road, { base, secret: settings.sessionSecret }, trouble).close);
     undo.push(() => closed(server));
     // Ends the streams first: a server waits for its open answers.
     undo.push(live.close);
@@ -52,6 +61,11 @@ export async function startWeb(settings: Settings, log: Logger = openLog(setting
     await undoAll(undo);
     throw error;
   }
+}
+
+function mailRoad({ mail, mailFrom }: Settings, standIn: string | null): Road {
+  if (mail !== null) return openRoad(mail.url, mailFrom, 'smtp');
+  return standIn === null ? noRoad : openRoad(standIn, mailFrom, 'stand-in');
 }
 
 async function undoAll(undo: Undo): Promise<void> {

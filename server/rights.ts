@@ -1,4 +1,4 @@
-import { actions, type Action, type Role, type Scope, type Visibility } from '../shared/contracts/rights.ts';
+import { actions, type Action, type Role, type Scope, scopes, type Visibility } from '../shared/contracts/rights.ts';
 
 /** Where a person stands: on the installation, and on one notebook or one linked edition if the question is about one. */
 export interface Standing {
@@ -58,11 +58,13 @@ const table: Readonly<Record<Action, readonly Hat[]>> = {
 /** What a link opens is one edition, to be looked at. */
 const byLink: ReadonlySet<Action> = new Set<Action>(['read', 'export']);
 
+const readable: readonly Action[] = ['visit', 'keep', 'read', 'export'];
+
 /** What an access token of each scope opens, of what its person may. A token manages neither accounts nor rights. */
 const scopeTable: Readonly<Record<Scope, readonly Action[]>> = {
-  read: ['visit', 'keep', 'read', 'export'],
-  write: ['make', 'fork', 'remark', 'judge', 'rerun', 'edit'],
-  publish: ['publish', 'adopt'],
+  read: readable,
+  write: [...readable, 'make', 'fork', 'remark', 'judge', 'rerun', 'edit'],
+  publish: [...readable, 'publish', 'adopt'],
 };
 
 function hats(standing: Standing): readonly Hat[] {
@@ -87,3 +89,6 @@ export function may(standing: Standing, action: Action): boolean {
 export function actionsOf(standing: Standing): Action[] {
   return actions.filter((action) => may(standing, action));
 }
+
+/** The scopes of access tokens that open an action, to those who may do it at all; none: no token does. */
+export const scopesOf = (action: Action): Scope[] => scopes.filter((scope) => scopeTable[scope].includes(action));

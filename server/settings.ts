@@ -28,6 +28,16 @@ const shape = z.object({
     .default('')
     .transform((text) => text.split(/[\s,]+/).filter((name) => name !== ''))
     .pipe(z.array(z.enum(fakes, `knows ${fakes.join(', ')}`))),
+  /** Who is a steward from the start: addresses, and github:LOGIN, with commas between them. */
+  STEWARDS: z
+    .string()
+    .default('')
+    .transform((text) =>
+      text
+        .toLowerCase()
+        .split(/[\s,]+/)
+        .filter((name) => name !== ''),
+    ),
   LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'silent']).default('info'),
   /** Where claims are computed: by worker processes only, or by the web server's own threads as well. */
   EVALUATION: z.enum(['workers', 'here']).default('workers'),
@@ -56,8 +66,11 @@ export interface Settings {
   readonly trustProxy: number;
   /** Null when no credentials were given (a fake may stand in). */
   readonly github: { readonly id: string; readonly secret: string; readonly web: string; readonly api: string } | null;
-  readonly mail: { readonly url: string; readonly from: string } | null;
+  readonly mail: { readonly url: string } | null;
+  readonly mailFrom: string;
   readonly fakes: readonly FakeName[];
+  /** Addresses, and `github:login`, in lower case. */
+  readonly stewards: readonly string[];
   readonly logLevel: Parsed['LOG_LEVEL'];
   readonly evaluation: {
     readonly here: boolean;
@@ -115,9 +128,11 @@ function arrange(env: Parsed): Settings {
       id === undefined || secret === undefined
         ? null
         : { id, secret, web: env.GITHUB_WEB_URL, api: env.GITHUB_API_URL },
-    mail: env.SMTP_URL === undefined ? null : { url: env.SMTP_URL, from: env.MAIL_FROM },
+    mail: env.SMTP_URL === undefined ? null : { url: env.SMTP_URL },
+    mailFrom: env.MAIL_FROM,
     // Real credentials win over a stand-in of the same name.
     fakes: env.FAKES.filter((name) => (name === 'github' ? id : env.SMTP_URL) === undefined),
+    stewards: env.STEWARDS,
     logLevel: env.LOG_LEVEL,
     evaluation: {
       here: env.EVALUATION === 'here',

@@ -9,7 +9,7 @@ import { publish } from '../services/editions.ts';
 import { insertEntry } from '../services/entries.ts';
 import { addMember } from '../services/members.ts';
 import { changeNotebook, forkNotebook, importNotebook } from '../services/notebooks.ts';
-import { signIn, standInProvider } from '../services/people.ts';
+import { signIn, standInProvider } from '../services/sign-in.ts';
 import { runOnce } from '../program.ts';
 import type { Settings } from '../settings.ts';
 
@@ -45,7 +45,7 @@ async function write(context: Context): Promise<void> {
   const ids = new Map<string, string>();
   for (const { id, login, name, email } of inventedPeople) {
     const identity = { provider: standInProvider, subject: String(id), handle: login, name, email };
-    ids.set(login, await signIn(context.database, identity));
+    ids.set(login, await signIn(context.database, { stewards: [] }, identity));
   }
   const personOf = (login: string): string => {
     const id = ids.get(login);

@@ -1,13 +1,13 @@
 import { and, eq, isNull, sql, type SQL } from 'drizzle-orm';
 import type { Scope } from '../../shared/contracts/rights.ts';
-import { actionsOf, may, type Standing } from '../rights.ts';
+import { actionsOf, may, scopesOf, type Standing } from '../rights.ts';
 import type { Asking } from './connection.ts';
 import { notFound } from './refusal.ts';
 import { memberships, notebooks } from './schema/notebooks.ts';
 import { people } from './schema/people.ts';
 import { editions, links } from './schema/work.ts';
 
-export { actionsOf, may, type Standing };
+export { actionsOf, may, scopesOf, type Standing };
 
 /** A standing on a notebook. Queries that touch a notebook take one of these, so that a bare id reaches none of them. */
 export interface NotebookStanding extends Standing {

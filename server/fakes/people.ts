@@ -35,4 +35,11 @@ export const inventedPeople: readonly [InventedPerson, ...InventedPerson[]] = [
     part: 'leads the reading group',
   },
   { id: 9005, login: 'dquell', name: 'D. Quell', email: 'd.quell@marrowfield.example', part: 'reads along' },
+  {
+    id: 9006,
+    login: 'ysandoval',
+    name: 'Y. Sandoval',
+    email: 'y.sandoval@marrowfield.example',
+    part: 'steward of this installation',
+  },
 ];

@@ -20,6 +20,8 @@ import {
 } from '../db/standing.ts';
 import { askerOf } from './person.ts';
 
+export { scopesOf } from '../db/standing.ts';
+
 type StandingOf<N extends EndpointName> = (typeof endpoints)[N]['of'] extends 'installation'
   ? Standing
   : NotebookStanding;
@@ -77,6 +79,8 @@ async function standingFor(
   if (standing === null || (of !== 'installation' && !may(standing, 'read'))) throw notFound();
   if (may(standing, action)) return standing;
   if (asker.person === null) throw new Refusal('sign-in-needed', 'Sign in to do this.');
+  if (asker.scopes !== undefined)
+    throw new Refusal('not-allowed', 'This access token, or your role, does not allow this.');
   throw new Refusal('not-allowed', 'Your role does not allow this.');
 }
 

@@ -39,6 +39,9 @@ function sendProblem(response: Response, { code, message, members }: Refusal): v
     .send(JSON.stringify(problem));
 }
 
+/** Whether this is a request that was understood and not granted, and no failure. */
+export const isRefusal = (error: unknown): error is Refusal => error instanceof Refusal;
+
 /** What Express, its body parser and PostgreSQL throw, in our words; null for what nobody expected. */
 function known(error: unknown): Refusal | null {
   if (error instanceof Refusal) return error;

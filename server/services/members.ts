@@ -1,12 +1,13 @@
 import type { Member } from '../../shared/contracts/people.ts';
 import type { GrantedRole } from '../../shared/contracts/rights.ts';
-import { announce } from '../db/announce.ts';
+import { announce, tell } from '../db/announce.ts';
 import type { Transaction } from '../db/connection.ts';
-import { deleteMember, listMembers, setMember } from '../db/queries/notebooks.ts';
-import { findByHandle } from '../db/queries/people.ts';
+import { deleteMember, getNotebook, listMembers, setMember } from '../db/queries/notebooks.ts';
+import { findAccount, findByHandle } from '../db/queries/people.ts';
 import { notFound, Refusal } from '../db/refusal.ts';
 import { lockNotebook, type NotebookStanding } from '../db/standing.ts';
 import { type Context, personOf } from './context.ts';
+import { notify } from './notices.ts';
 
 export async function membersOf({ database }: Context, standing: NotebookStanding): Promise<{ items: Member[] }> {
   return { items: await listMembers(database, standing) };
@@ -24,7 +25,15 @@ export function addMember(
     const person = await findByHandle(tx, handle);
     if (person === null)
       throw new Refusal('conflict', `Nobody here is called ${handle}. They have to sign in once first.`);
-    return giveRole(tx, standing, person.id, role);
+    const member = await giveRole(tx, standing, person.id, role);
+    const { title } = await getNotebook(tx, standing);
+    const by = personOf(standing);
+    const { name } = (await findAccount(tx, by)) ?? { name: 'The owner' };
+    const { notebook } = standing.on;
+    const text = `${name} lets you in on “${title}”, as ${role}.`;
+    const path = `/notebooks/${notebook}`;
+    await notify(tx, { to: [person.id], kind: 'invitation', text, by, notebook, path });
+    return member;
   });
 }
 
@@ -62,6 +71,7 @@ export function removeMember({ database }: Context, standing: NotebookStanding, 
   return database.transaction(async (tx) => {
     await lockNotebook(tx, standing);
     if (!(await deleteMember(tx, standing, person))) throw notFound();
+    await tell(tx, person, 'account', {});
     await announce(tx, standing.on.notebook, 'notebook', {});
   });
 }

@@ -7,6 +7,7 @@ import { insertMail } from '../db/queries/mails.ts';
 import * as queries from '../db/queries/notices.ts';
 import type { NotebookStanding, Standing } from '../db/standing.ts';
 import { noticeLetter } from '../mail/letters.ts';
+import { readStopToken } from '../mail/stops.ts';
 import { type Context, personOf } from './context.ts';
 
 /** What happened, and whom it concerns. */
@@ -20,29 +21,31 @@ export interface News {
   readonly notebook: string | null;
   /** A page of ours to read on, `/notebooks/…`. */
   readonly path: string;
+  /** False: in the product only, where a mail of its own is sent. */
+  readonly mail?: boolean;
 }
 
 /**
  * Tells people in the product, on their open pages at once, and by mail as each of them wants it. Runs in the transaction of
  * what happened, so that nobody is told of what did not.
  */
-export async function notify(tx: Asking, { to, kind, text, by, notebook, path }: News): Promise<void> {
+export async function notify(tx: Asking, { to, kind, text, by, notebook, path, mail = true }: News): Promise<void> {
   const persons = [...new Set(to)].filter((person) => person !== by);
-  const told = await queries.listTold(tx, persons, notebook);
+  const told = (await queries.listTold(tx, persons, notebook)).map((one) => (mail ? one : { ...one, email: null }));
   await queries.insertNotices(
     tx,
-    told.map(({ person, email, mail }) => ({
+    told.map(({ person, email, mail: how }) => ({
       person,
       kind,
       text,
       actor: by,
       notebook,
       to: path,
-      digest: mail === 'daily' && email !== null,
+      digest: how === 'daily' && email !== null,
     })),
   );
-  for (const { person, email, mail } of told) {
-    if (mail === 'immediate' && email !== null) {
+  for (const { person, email, mail: how } of told) {
+    if (how === 'immediate' && email !== null) {
       await insertMail(tx, { ...noticeLetter(text, path), to: email, stops: { person, notebook } });
     }
     await tell(tx, person, 'notices', { unread: await queries.countUnread(tx, person) });
@@ -96,6 +99,9 @@ export async function followNotebook(
   await queries.setNotebookMail(database, personOf(standing), standing.on.notebook, mail);
   return queries.getNoticeSettings(database, personOf(standing));
 }
+
+/** What a mail's link stops; null where it is not one of ours. */
+export const readStop = readStopToken;
 
 /** What one click in a mail does: no more mail about this notebook, or (null) no more about anything. */
 export async function stopMail(

@@ -1,4 +1,4 @@
-import { and, asc, desc, eq, isNotNull, lt, sql } from 'drizzle-orm';
+import { and, asc, count, desc, eq, gt, isNotNull, lt, sql } from 'drizzle-orm';
 import type { QueuedMail } from '../../../shared/contracts/steward.ts';
 import type { Asking } from '../connection.ts';
 import { type Page, type PageAsked, pageFrom, readCursor } from '../page.ts';
@@ -32,6 +32,15 @@ export interface DueMail {
 export async function insertMail({ db }: Asking, { minutes, ...mail }: NewMail): Promise<void> {
   const uselessAt = minutes === undefined ? null : sql`now() + make_interval(mins => ${minutes})`;
   await db.insert(mails).values({ ...mail, uselessAt });
+}
+
+/** How many mails went, or are to go, to an address lately. */
+export async function countMailsTo({ db }: Asking, to: string, minutes: number): Promise<number> {
+  const [row] = await db
+    .select({ sent: count() })
+    .from(mails)
+    .where(and(eq(mails.to, to), gt(mails.createdAt, sql`now() - make_interval(mins => ${minutes})`)));
+  return row?.sent ?? 0;
 }
 
 /**

@@ -191,15 +191,25 @@ export async function listMembers({ db }: Asking, standing: NotebookStanding): P
 }
 
 /** Gives a person a role; an owner keeps theirs, and false is returned. */
-export async function setMember(
+export function setMember(
   { db }: Asking,
   standing: NotebookStanding,
   person: string,
   role: GrantedRole,
 ): Promise<boolean> {
+  return setMemberOf({ db }, standing.on.notebook, person, role);
+}
+
+/** The same for whoever was invited, before they stand anywhere on the notebook. */
+export async function setMemberOf(
+  { db }: Asking,
+  notebook: string,
+  person: string,
+  role: GrantedRole,
+): Promise<boolean> {
   const { rowCount } = await db
     .insert(memberships)
-    .values({ notebook: standing.on.notebook, person, role })
+    .values({ notebook, person, role })
     .onConflictDoUpdate({
       target: [memberships.notebook, memberships.person],
       set: { role },

@@ -1,4 +1,4 @@
-import { and, eq, sql } from 'drizzle-orm';
+import { and, eq, isNull, sql } from 'drizzle-orm';
 import type { Person } from '../../../shared/contracts/people.ts';
 import type { Asking } from '../connection.ts';
 import { identities, people } from '../schema/people.ts';
@@ -24,9 +24,12 @@ export async function findByHandle({ db }: Asking, handle: string): Promise<Pers
   const [row] = await db
     .select(personColumns)
     .from(people)
-    .where(eq(sql`lower(${people.handle})`, handle.toLowerCase()));
+    .where(and(eq(sql`lower(${people.handle})`, handle.toLowerCase()), isNull(people.deletedAt)));
   return row ?? null;
 }
+
+/** Provider of the identities that are addresses shown to be the person's; their subject is the address. */
+export const emailProvider = 'email';
 
 /** An account elsewhere, as its provider describes it. */
 export interface Identity {
@@ -35,21 +38,58 @@ export interface Identity {
   readonly subject: string;
   readonly handle: string;
   readonly name: string;
+  /** An address that the provider has found to be this person's; null if there is none. */
   readonly email: string | null;
 }
 
+/** Held to the end of the transaction, so that the same account does not become two people's. */
+async function lockIdentity({ db }: Asking, provider: string, subject: string): Promise<void> {
+  await db.execute(sql`select pg_advisory_xact_lock(hashtext(${`${provider} ${subject}`}))`);
+}
+
+/** Whose way in this is; null if nobody's. In a transaction the answer stays true to its end. */
+export async function findByIdentity(asking: Asking, provider: string, subject: string): Promise<string | null> {
+  await lockIdentity(asking, provider, subject);
+  const [row] = await asking.db
+    .select({ person: identities.person })
+    .from(identities)
+    .where(and(eq(identities.provider, provider), eq(identities.subject, subject)));
+  return row?.person ?? null;
+}
+
+/** Makes an account elsewhere, or an address, a way in; false if it is one already. */
+export async function insertIdentity(
+  { db }: Asking,
+  person: string,
+  { provider, subject, label }: { readonly provider: string; readonly subject: string; readonly label: string },
+): Promise<boolean> {
+  const { rowCount } = await db.insert(identities).values({ provider, subject, person, label }).onConflictDoNothing();
+  return (rowCount ?? 0) > 0;
+}
+
 /**
- * The person who signs in with this account; made at the first time. A handle that someone else has already gets a number.
- * Two first sign-ins at once make one person.
+ * The person who signs in with this account; null if it is nobody's yet. Whoever has the account's address as a way in has the
+ * account too, from now on.
  */
-export async function personOfIdentity({ db }: Asking, identity: Identity): Promise<string> {
-  const which = and(eq(identities.provider, identity.provider), eq(identities.subject, identity.subject));
-  // Held to the end of the transaction, so that the same account does not sign in for the first time twice.
-  await db.execute(sql`select pg_advisory_xact_lock(hashtext(${`${identity.provider} ${identity.subject}`}))`);
-  const [known] = await db.select({ person: identities.person }).from(identities).where(which);
-  if (known !== undefined) return known.person;
-  const person = await insertPerson({ db }, identity);
-  await db.insert(identities).values({ provider: identity.provider, subject: identity.subject, person });
+export async function findOrLinkIdentity(asking: Asking, identity: Identity): Promise<string | null> {
+  const { provider, subject, handle, email } = identity;
+  const known = await findByIdentity(asking, provider, subject);
+  if (known !== null) {
+    const which = and(eq(identities.provider, provider), eq(identities.subject, subject));
+    await asking.db.update(identities).set({ label: handle }).where(which);
+    return known;
+  }
+  const person = email === null ? null : await findByIdentity(asking, emailProvider, email);
+  if (person !== null) await insertIdentity(asking, person, { provider, subject, label: handle });
+  return person;
+}
+
+/** A new person with this account, and its address, as ways in. A handle that someone else has already gets a number. */
+export async function insertPersonOf(asking: Asking, identity: Identity): Promise<string> {
+  const { provider, subject, handle, email } = identity;
+  const person = await insertPerson(asking, identity);
+  await insertIdentity(asking, person, { provider, subject, label: handle });
+  if (email !== null) await insertIdentity(asking, person, { provider: emailProvider, subject: email, label: email });
   return person;
 }
 
@@ -63,4 +103,8 @@ async function insertPerson({ db }: Asking, { handle, name, email }: Identity): 
       .returning({ id: people.id });
     if (row !== undefined) return row.id;
   }
+}
+
+export async function setSteward({ db }: Asking, person: string, steward: boolean): Promise<void> {
+  await db.update(people).set({ steward }).where(eq(people.id, person));
 }

@@ -1,4 +1,4 @@
-import { and, desc, eq, sql } from 'drizzle-orm';
+import { and, desc, eq, ne, sql } from 'drizzle-orm';
 import type { Asking } from '../connection.ts';
 import { sessions } from '../schema/people.ts';
 
@@ -34,4 +34,9 @@ export async function listSessions({ db }: Asking, person: string, current: stri
 export async function endSession({ db }: Asking, person: string, id: string): Promise<boolean> {
   const { rowCount } = await db.delete(sessions).where(and(ofPerson(person), eq(publicId, id)));
   return (rowCount ?? 0) > 0;
+}
+
+/** Ends all of a person's sessions, but the one of this id if one is given. */
+export async function endSessions({ db }: Asking, person: string, but?: string): Promise<void> {
+  await db.delete(sessions).where(and(ofPerson(person), but === undefined ? undefined : ne(sessions.sid, but)));
 }
