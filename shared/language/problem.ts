@@ -76,6 +76,11 @@ export const say = {
       'A sign stands at the start of an expression, after a bracket, "=", "," or a comparison, and after "*" or "/"; use brackets.',
     ),
   chained: () => plain('chain', 'Comparisons are not chained.', 'Join two comparisons by "and".'),
+  notWrittenOut: (name: string) => ({
+    code: 'written-out',
+    message: name === '' ? 'No model stands here.' : `"${name}" cannot be written out here.`,
+    hint: 'Put the caret on the name of a model, where it is declared and evaluated.',
+  }),
   equality: () => ({ code: 'equality', message: 'A condition compares with "==".', hint: 'Write "==".', fix: '==' }),
   decimal: () => plain('decimal', 'A decimal has digits on both sides of its dot.', 'Write 0.5, not .5 or 5.'),
   emptySum: (which: string) =>

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { completions, declaration, hover, rename, type Edit, type Position } from '../../../shared/language/assist.ts';
+import type { Completion, Edit, TextPosition as Position } from '../../../shared/contracts/assist.ts';
+import { completions, declaration, hover, rename, writeOut } from '../../../shared/language/assist.ts';
 import { linesOf, run } from './support.ts';
 
 const source = `lattice square torus 4 x 4
@@ -56,11 +57,12 @@ describe('hover', () => {
 });
 
 describe('completion', () => {
-  const labels = (text: string): string[] => {
+  const options = (text: string): readonly Completion[] => {
     const whole = source + text;
-    const line = whole.split('\n').length;
-    return completions(run(whole), { line, column: text.length + 1 }).options.map((o) => o.label);
+    const lines = whole.split('\n');
+    return completions(run(whole), { line: lines.length, column: (lines.at(-1) ?? '').length + 1 }).options;
   };
+  const labels = (text: string): string[] => options(text).map((o) => o.label);
   it('knows where it is', () => {
     expect(labels('mo')).toEqual(['model']);
     expect(labels('audit sp')).toEqual(['spectrum']);
@@ -69,6 +71,27 @@ describe('completion', () => {
     expect(labels('model a = sum(v: ver')).toEqual(['vertices']);
     expect(labels('model a = sum(vert: vertices) s^x[ve')).toEqual(['vert', 'vertices']);
     expect(labels('audit commute ga')).toEqual(['gauge']);
+  });
+  it('knows what an argument may be', () => {
+    expect(labels('model a = sum(l: links) s^z[l')).toEqual(['l.a', 'l.b']);
+    expect(labels('model a = sum(l: links) σ^z[l')).toEqual(['l', 'links.1']);
+    expect(labels('model a = sum(p: plaquettes) prod(l: rim(')).toEqual(['p', 'plaquettes']);
+    expect(labels('model a =\n  sum(v: vertices)\n  star(')).toEqual(['v', 'vertices']);
+    expect(labels('model a = sum(p: plaquettes) σ^z[p.')).toEqual(['1', '2', '3', '4', 'x', 'y']);
+    expect(labels('spins t on links.')).toEqual(['1', '2']);
+  });
+  it('writes functions and families with their argument', () => {
+    const template = (text: string, label: string) => options(text).find((o) => o.label === label)?.template;
+    expect(template('model a = sum(u: vertices) prod(l: st', 'star')).toBe('star(${u})');
+    expect(template('model a = sum(u: vertices) st', 'star')).toBe('star(${u})');
+    expect(template('model a = sum(l: links) ', 's')).toBe('s^${x}[${l.a}]');
+    expect(template('model a = 2 su', 'sum')).toBe('sum(${v}: ${vertices}) ');
+  });
+  it('knows the parts of an audit', () => {
+    expect(labels('audit commute gauge with ')).toEqual(['star', 'gauge', 'with']);
+    expect(labels('audit spectrum gauge [')).toEqual(['star', 'map']);
+    expect(labels('audit scan gap of gauge over ')).toEqual(['h']);
+    expect(labels('audit scan ga')).toEqual(['gauge', 'gap']);
   });
 });
 
@@ -102,5 +125,19 @@ describe('rename', () => {
     expect(rename(program, at(4, 'h'), 'sum')).toMatchObject({ code: 'reserved' });
     expect(rename(program, at(4, 'h'), 'v')).toMatchObject({ code: 'hides' });
     expect(rename(program, at(4, 'h'), '2x')).toMatchObject({ code: 'character' });
+  });
+});
+
+describe('writing out', () => {
+  it('puts the terms of a model in place of its statement', () => {
+    const [edit] = writeOut(program, at(6, 'gauge')) as readonly Edit[];
+    expect(edit?.place).toEqual({ line: 6, column: 1, length: `${lines[5] ?? ''}\n${lines[6] ?? ''}`.length });
+    const next = run([...lines.slice(0, 5), edit?.text, ...lines.slice(7)].join('\n'));
+    expect(next.problems).toEqual([]);
+    expect(linesOf(next, 'gauge')).toEqual(linesOf(program, 'gauge'));
+  });
+  it('is refused elsewhere', () => {
+    expect(writeOut(program, at(10, 'gauge'))).toMatchObject({ code: 'written-out' });
+    expect(writeOut(program, at(4, 'h'))).toMatchObject({ code: 'written-out' });
   });
 });
