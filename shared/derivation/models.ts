@@ -5,7 +5,8 @@ import type { Extended, Factor, Family, Operator, Steps } from '../algebra/pauli
 import type { Kind, ReportModel, ReportTerm } from '../contracts/report.ts';
 import { newBudget } from '../limits.ts';
 import type { LawFamily, ModelValue, Values } from '../language/values.ts';
-import { classLabel, type TypesetContext } from '../typeset/context.ts';
+import { cellWord } from '../lattice/cells.ts';
+import type { TypesetContext } from '../typeset/context.ts';
 import {
   gather,
   gatheredSpoken,
@@ -21,16 +22,10 @@ import { rolesOf } from '../typeset/roles.ts';
 
 export type Orbit = ReportTerm['orbit'];
 
-/** "links.1", or the bare kind where it has one class. */
-export function cellWord(context: TypesetContext, factor: Factor): string {
-  const label = classLabel(context.family, factor.cell.kind, factor.cell.index);
-  return label === '' ? factor.cell.kind : `${factor.cell.kind}.${label}`;
-}
-
 export const orbitOf = (factors: readonly Factor[], context: TypesetContext): Orbit =>
   factors.map((factor) => ({
     species: factor.species,
-    cell: cellWord(context, factor),
+    cell: cellWord(context.family, factor.cell),
     offset: [...factor.cell.offset],
     pauli: factor.pauli,
   }));

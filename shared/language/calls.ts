@@ -6,6 +6,7 @@ import type { Extended, Family, Operator, Steps } from '../algebra/pauli/types.t
 import { shifted, type Cell, type Offset } from '../lattice/cells.ts';
 import { asOperator, total } from './arithmetic.ts';
 import { fail, say, whatIsIt } from './problem.ts';
+import { witnessOf } from './refusal-witness.ts';
 import { cellArgument, cellWords, integerArgument } from './sets.ts';
 import {
   Aperiodic,
@@ -19,7 +20,7 @@ import {
   type NumberAmount,
   type Scene,
 } from './scene.ts';
-import type { CouplingValue, LawValue, MapValue, OperatorValue, Value } from './values.ts';
+import type { CouplingValue, LawValue, MapValue, OperatorValue, Refusal, Value } from './values.ts';
 
 /** Something pinned that stands at each cell of a parameter's domain: one for each class and residue. */
 export interface Standing<T> {
@@ -186,14 +187,20 @@ function mapped(value: MapValue, node: CallNode, scene: Scene): Operator {
       if (step % m !== 0) throw new Refine(d, (step / gcd(step, m)) * m);
     });
   const operator = asOperator(scene.amount(argument, scene), scene, argument);
-  const refuse = (reason: string, symmetry: string | undefined): never =>
-    fail(say.mapRefuses(value.name, reason, symmetry), argument);
+  const refuse = (refusal: Refusal): never =>
+    fail(
+      {
+        ...say.mapRefuses(value.name, refusal.reason, refusal.symmetry?.text),
+        witness: witnessOf(refusal, scene.lattice.family),
+      },
+      argument,
+    );
   const local = value.map.image({ families: operator.families, extended: [] }, scene.budget);
-  if (!local.ok) return refuse(local.refusal.reason, local.refusal.symmetry?.text);
+  if (!local.ok) return refuse(local.refusal);
   const parts: Operator[] = [local.value];
   for (const { coefficient, extended } of operator.extended) {
     const image = value.map.imageExtended(extended, scene.budget);
-    if (!image.ok) return refuse(image.refusal.reason, image.refusal.symmetry?.text);
+    if (!image.ok) return refuse(image.refusal);
     parts.push({ families: [], extended: [{ coefficient, extended: image.value }] });
   }
   return total(parts, scene);

@@ -1,5 +1,5 @@
 import type { Span } from '../../grammar/syntax.ts';
-import type { Problem } from '../contracts/report.ts';
+import type { Problem, RefusalWitness } from '../contracts/report.ts';
 
 /** What is wrong, in words and as data; where it is is added by a `Fault`. */
 export interface Saying {
@@ -9,6 +9,8 @@ export interface Saying {
   /** A replacement for the offending text, where the hint is one. */
   readonly fix?: string;
   readonly severity?: 'error' | 'caution';
+  /** What a map's refusal rests on. */
+  readonly witness?: RefusalWitness;
 }
 
 /** A saying with its place: offsets in the text of its statement. */
@@ -74,6 +76,7 @@ export function problemAt(fault: Fault, text: string, line: number): Problem {
     length: Math.max(fault.end - fault.start, 1),
     hint: fault.hint,
     ...(fault.fix === undefined ? {} : { fix: fault.fix }),
+    ...(fault.witness === undefined ? {} : { witness: fault.witness }),
     severity: fault.severity ?? 'error',
   };
 }

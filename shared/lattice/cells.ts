@@ -113,3 +113,17 @@ export const classesLabelled = (family: LatticeFamily, kind: CellKind, label: st
 export const labelsOf = (family: LatticeFamily, kind: CellKind): readonly string[] => [
   ...new Set(family[kind].flatMap((c) => c.labels)),
 ];
+
+/** The shortest label that tells a class from the others of its kind; its number where none does; empty for a single class. */
+export function classLabel(family: LatticeFamily, kind: CellKind, index: number): string {
+  const classes = family[kind];
+  if (classes.length <= 1) return '';
+  const own = classes[index]?.labels.find((label) => classes.filter((c) => c.labels.includes(label)).length === 1);
+  return own ?? String(index + 1);
+}
+
+/** "links.1", or the bare kind where it has one class. */
+export function cellWord(family: LatticeFamily, { kind, index }: Pick<Cell, 'kind' | 'index'>): string {
+  const label = classLabel(family, kind, index);
+  return label === '' ? kind : `${kind}.${label}`;
+}

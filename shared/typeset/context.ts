@@ -1,5 +1,5 @@
 import type { LocalString, Steps } from '../algebra/pauli/types.ts';
-import type { CellKind, LatticeFamily } from '../lattice/cells.ts';
+import { classLabel, type CellKind, type LatticeFamily } from '../lattice/cells.ts';
 
 /** A declared law or operator whose name may stand for its string: `A_{v}` for the star product of a law A(v). */
 export interface NamedShape {
@@ -32,14 +32,6 @@ export const singular: Readonly<Record<CellKind, string>> = {
   cubes: 'cube',
 };
 export const rank: Readonly<Record<CellKind, number>> = { vertices: 0, links: 1, plaquettes: 2, cubes: 3 };
-
-/** The shortest label that tells a class from the others of its kind; its number where none does; empty for a single class. */
-export function classLabel(family: LatticeFamily, kind: CellKind, index: number): string {
-  const classes = family[kind];
-  if (classes.length <= 1) return '';
-  const own = classes[index]?.labels.find((label) => classes.filter((c) => c.labels.includes(label)).length === 1);
-  return own ?? String(index + 1);
-}
 
 /** A label that exactly these classes carry; else their own labels. */
 export function labelsOf(family: LatticeFamily, kind: CellKind, indices: readonly number[]): readonly string[] {

@@ -1,8 +1,8 @@
 import { compareOffsets } from '../algebra/pauli/string.ts';
 import type { Extended, Pauli, ProductPart, Steps } from '../algebra/pauli/types.ts';
-import type { CellKind, Offset } from '../lattice/cells.ts';
+import { classLabel, type CellKind, type Offset } from '../lattice/cells.ts';
 import { coloopLinks, loopLinks, membraneLinks, type SteppedCell } from '../lattice/windings.ts';
-import { classLabel, labelsOf, letters, type Style, type TypesetContext } from './context.ts';
+import { labelsOf, letters, type Style, type TypesetContext } from './context.ts';
 import { nameSpoken } from './names.ts';
 import { classesTex, conditionsSpoken, conditionsTex, labelTex, residueOf } from './ranges.ts';
 import { placed } from './shapes.ts';

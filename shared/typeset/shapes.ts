@@ -3,6 +3,7 @@ import type { Factor, LocalString, Pauli, Steps } from '../algebra/pauli/types.t
 import {
   cellKey,
   cellKinds,
+  classLabel,
   isLatticeProblem,
   type Cell,
   type CellKind,
@@ -11,7 +12,7 @@ import {
 } from '../lattice/cells.ts';
 import { boundary, coboundary } from '../lattice/incidence.ts';
 import { nearestPairs } from '../lattice/pairs.ts';
-import { classLabel, rank, type TypesetContext } from './context.ts';
+import { rank, type TypesetContext } from './context.ts';
 
 export interface ShiftedCell {
   readonly kind: CellKind;
