@@ -15,6 +15,7 @@ import { sessions, tokens, unlessToken, whoAsks } from './middleware/person.ts';
 import { nothingHere, problems } from './middleware/problem.ts';
 import { editionRoutes } from './routes/editions.ts';
 import { entryRoutes } from './routes/entries.ts';
+import { jobRoutes } from './routes/jobs.ts';
 import { liveRoutes } from './routes/live.ts';
 import { notebookRoutes } from './routes/notebooks.ts';
 import { openApiRoutes } from './routes/openapi.ts';
@@ -31,6 +32,7 @@ export interface Parts {
   readonly database: Database;
   readonly live: Live;
   readonly askForClaims: Context['askForClaims'];
+  readonly questions: Context['questions'];
   /** The stand-in for GitHub, where the settings name it. */
   readonly fakeGithub: FakeGithub | null;
   /** The same for mail. */
@@ -41,6 +43,15 @@ export interface Parts {
 /** Where the stand-in's page is; under /auth, so that whatever stands in front of the server hands it on. */
 const standInPath = '/auth/stand-in/github';
 const mailboxPath = '/auth/stand-in/mail';
+/** What signs in, or has mail sent to whoever is named. */
+const guessable = [
+  '/auth/github',
+  '/api/sign-in/mail',
+  '/api/sign-in/link',
+  '/api/account/addresses',
+  '/api/invitations/look',
+  '/api/invitations/accept',
+];
 /** An imported source in UTF-8, as JSON. */
 const bodyLimit = '5mb';
 
@@ -65,8 +76,8 @@ export function makeApp(parts: Parts): Express {
 }
 
 /** Everything that knows who asks: the rows of the table, and the sign-in. */
-function answers({ settings, database, live, askForClaims, fakeGithub, house }: Parts): RequestHandler {
-  const context: Context = { database, askForClaims };
+function answers({ settings, database, live, askForClaims, questions, fakeGithub, house }: Parts): RequestHandler {
+  const context: Context = { database, askForClaims, questions };
   const auth = new passport.Passport();
   const rate = rates(settings);
   const router = Router();
@@ -76,13 +87,14 @@ function answers({ settings, database, live, askForClaims, fakeGithub, house }: 
   notebookRoutes(bind, context);
   entryRoutes(bind, context);
   editionRoutes(bind, context);
+  jobRoutes(bind, context);
   liveRoutes(bind, live);
   openApiRoutes(bind);
 
   const chain = Router();
   const fromPages = [ownPagesOnly(settings), sessions(database, settings), ...whoAsks(database, auth)];
   chain.use(rate.all, tokens(database), ...fromPages.map(unlessToken), rate.writing);
-  chain.use(['/auth/github', '/api/sign-in/mail', '/api/sign-in/link', '/api/invitations/look'], rate.signingIn);
+  chain.use(guessable, rate.signingIn);
   chain.use(express.json({ limit: bodyLimit }), signIn, router);
   // Not mounted: the rows of the table are whole paths.
   return (request, response, next) => {

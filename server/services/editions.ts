@@ -3,13 +3,15 @@ import { canonical } from '../../shared/contracts/canonical.ts';
 import type { Edition, EditionContent, EditionSummary, Link } from '../../shared/contracts/editions.ts';
 import { notebookToText } from '../../shared/notebook/text.ts';
 import { announce } from '../db/announce.ts';
+import type { Transaction } from '../db/connection.ts';
 import * as queries from '../db/queries/editions.ts';
+import { countComputing, readLimits } from '../db/queries/limits.ts';
 import { listEntries } from '../db/queries/entries.ts';
 import { getNotebook } from '../db/queries/notebooks.ts';
 import type { Page, PageAsked } from '../db/page.ts';
 import { notFound, Refusal } from '../db/refusal.ts';
 import { lockNotebook, type NotebookStanding } from '../db/standing.ts';
-import type { Context } from './context.ts';
+import { type Context, personOf } from './context.ts';
 
 /** SHA-256 of the canonical JSON (RFC 8785) of an edition's content, as 64 hex digits. */
 export const hashOf = (content: EditionContent): string =>
@@ -19,6 +21,7 @@ export const hashOf = (content: EditionContent): string =>
 export function publish(context: Context, standing: NotebookStanding, summary: string): Promise<EditionSummary> {
   return context.database.transaction(async (tx) => {
     await lockNotebook(tx, standing);
+    await refuseTooMany(tx, standing);
     const { title, authors } = await getNotebook(tx, standing);
     const entries = await listEntries(tx, standing);
     if (entries.length === 0)
@@ -41,6 +44,16 @@ export function publish(context: Context, standing: NotebookStanding, summary: s
     await announce(tx, standing.on.notebook, 'edition', { number, status: 'computing' });
     return queries.getEditionSummary(tx, standing, number);
   });
+}
+
+/** One person's editions do not keep those of all others waiting. */
+async function refuseTooMany(tx: Transaction, standing: NotebookStanding): Promise<void> {
+  const { jobsPerPerson: most } = await readLimits(tx);
+  if ((await countComputing(tx, personOf(standing))) < most) return;
+  throw new Refusal(
+    'conflict',
+    `The claims of ${String(most)} editions of yours are being computed. Let some end first.`,
+  );
 }
 
 /** Asks again for the claims of an edition that failed. Throws `conflict` for any other. */

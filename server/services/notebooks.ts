@@ -8,6 +8,7 @@ import type { Asking, Transaction } from '../db/connection.ts';
 import type { Page } from '../db/page.ts';
 import { getContent } from '../db/queries/editions.ts';
 import { insertEntries, listEntries } from '../db/queries/entries.ts';
+import { countOwned, readLimits } from '../db/queries/limits.ts';
 import * as queries from '../db/queries/notebooks.ts';
 import { findAccount } from '../db/queries/people.ts';
 import { Refusal } from '../db/refusal.ts';
@@ -140,6 +141,10 @@ interface Making {
 
 async function make(tx: Transaction, standing: Standing, { title, authors, entries, origin }: Making) {
   const person = personOf(standing);
+  const { notebooksPerPerson: most } = await readLimits(tx);
+  if ((await countOwned(tx, person)) >= most) {
+    throw new Refusal('conflict', `A person has at most ${String(most)} notebooks here.`);
+  }
   checkSize(
     entries.length,
     entries.reduce((sum, entry) => sum + entry.text.length, 0),

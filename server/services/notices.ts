@@ -52,6 +52,23 @@ export async function notify(tx: Asking, { to, kind, text, by, notebook, path, m
   }
 }
 
+/** Tells whoever published an edition what became of its claims: `outcome` ends the sentence. */
+export async function notifyPublisher(
+  tx: Asking,
+  edition: { readonly id: string; readonly notebook: string; readonly number: number; readonly title: string },
+  outcome: string,
+): Promise<void> {
+  const person = await queries.publisherOf(tx, edition.id);
+  await notify(tx, {
+    to: person === null ? [] : [person],
+    kind: 'job',
+    text: `The claims of edition ${String(edition.number)} of “${edition.title}” ${outcome}`,
+    by: null,
+    notebook: edition.notebook,
+    path: `/notebooks/${edition.notebook}/editions/${String(edition.number)}`,
+  });
+}
+
 /** The people who have one of these roles on a notebook, to be told something. */
 export const peopleWithRole = queries.peopleWithRole;
 

@@ -1,11 +1,13 @@
 import type { SealedClaim } from '../../shared/contracts/editions.ts';
-import type { Report } from '../../shared/contracts/report.ts';
+import { grades, type Report } from '../../shared/contracts/report.ts';
 import { joinEntries, type Lines, placeOfLine } from '../../shared/notebook/text.ts';
 import { announce } from '../db/announce.ts';
 import type { Database } from '../db/connection.ts';
 import { countAttempt, failEdition, findUnsealed, sealEdition, type Unsealed } from '../db/queries/editions.ts';
 import { EvaluationFailed, type Pool } from '../evaluation/pool.ts';
 import { whileLocked } from '../evaluation/queue.ts';
+import { deriveWithAnswers } from './answers.ts';
+import { notifyPublisher } from './notices.ts';
 
 /** An edition whose computation took the whole process down this often is not tried again by itself. */
 const mostAttempts = 3;
@@ -22,7 +24,7 @@ export function sealEditionJob(database: Database, pool: Pool, edition: string):
     if (attempts > mostAttempts) return fail(database, edition, waiting, 'The engine ended each time it was tried.');
     const { text, lines } = joinEntries(waiting.content.entries);
     try {
-      await seal(database, edition, waiting, lines, await pool.derive(text));
+      await seal(database, edition, waiting, lines, await deriveWithAnswers(database, pool, text));
     } catch (error) {
       if (!(error instanceof EvaluationFailed)) throw error;
       if (error.why !== 'stopped') return fail(database, edition, waiting, error.message);
@@ -36,7 +38,7 @@ export function sealEditionJob(database: Database, pool: Pool, edition: string):
 function seal(
   database: Database,
   edition: string,
-  { notebook, number, entryIds }: Unsealed,
+  { notebook, number, entryIds, content: { title } }: Unsealed,
   lines: readonly Lines[],
   report: Report,
 ): Promise<void> {
@@ -47,12 +49,28 @@ function seal(
   return database.transaction(async (tx) => {
     if (!(await sealEdition(tx, edition, report, claims))) return;
     await announce(tx, notebook, 'edition', { number, status: 'sealed' });
+    await notifyPublisher(tx, { id: edition, notebook, number, title }, `are sealed: ${counted(report)}.`);
   });
 }
 
-function fail(database: Database, edition: string, { notebook, number }: Unsealed, reason: string): Promise<void> {
+/** How many claims have each grade, as words: `5 proved, 1 refuted`. */
+function counted({ claims }: Report): string {
+  const words = grades.flatMap((grade) => {
+    const number = claims.filter((claim) => claim.grade === grade).length;
+    return number === 0 ? [] : [`${String(number)} ${grade}`];
+  });
+  return words.length === 0 ? 'there are none' : words.join(', ');
+}
+
+function fail(
+  database: Database,
+  edition: string,
+  { notebook, number, content: { title } }: Unsealed,
+  reason: string,
+): Promise<void> {
   return database.transaction(async (tx) => {
     if (!(await failEdition(tx, edition, reason))) return;
     await announce(tx, notebook, 'edition', { number, status: 'failed' });
+    await notifyPublisher(tx, { id: edition, notebook, number, title }, `could not be computed: ${reason}`);
   });
 }

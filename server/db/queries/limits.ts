@@ -1,7 +1,9 @@
-import { sql } from 'drizzle-orm';
+import { and, count, eq, sql } from 'drizzle-orm';
 import { type Limits, limitsSchema } from '../../../shared/contracts/steward.ts';
 import type { Asking } from '../connection.ts';
+import { memberships } from '../schema/notebooks.ts';
 import { limits } from '../schema/notices.ts';
+import { editions } from '../schema/work.ts';
 
 /** What holds until a steward sets something else. */
 const standard: Limits = {
@@ -27,4 +29,22 @@ export async function writeLimits({ db }: Asking, wanted: Limits): Promise<void>
     .insert(limits)
     .values(rows)
     .onConflictDoUpdate({ target: limits.name, set: { value: sql`excluded.value` } });
+}
+
+/** How many editions a person published whose claims are still to be computed. */
+export async function countComputing({ db }: Asking, person: string): Promise<number> {
+  const [row] = await db
+    .select({ computing: count() })
+    .from(editions)
+    .where(and(eq(editions.publishedBy, person), eq(editions.status, 'computing')));
+  return row?.computing ?? 0;
+}
+
+/** How many notebooks a person owns. */
+export async function countOwned({ db }: Asking, person: string): Promise<number> {
+  const [row] = await db
+    .select({ owned: count() })
+    .from(memberships)
+    .where(and(eq(memberships.person, person), eq(memberships.role, 'owner')));
+  return row?.owned ?? 0;
 }

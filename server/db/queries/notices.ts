@@ -7,6 +7,7 @@ import { type Page, type PageAsked, pageFrom, readCursor } from '../page.ts';
 import { memberships, notebooks } from '../schema/notebooks.ts';
 import { notices, noticeSettings } from '../schema/notices.ts';
 import { people } from '../schema/people.ts';
+import { editions } from '../schema/work.ts';
 import { personColumns } from './people.ts';
 
 /** Someone who is to be told, and how mail about this notebook comes to them. */
@@ -144,4 +145,10 @@ export async function peopleWithRole({ db }: Asking, notebook: string, roles: re
     .from(memberships)
     .where(and(eq(memberships.notebook, notebook), inArray(memberships.role, [...roles])));
   return rows.map((row) => row.person);
+}
+
+/** Who published an edition, and so hears what became of its claims; null where the account is gone. */
+export async function publisherOf({ db }: Asking, edition: string): Promise<string | null> {
+  const [row] = await db.select({ person: editions.publishedBy }).from(editions).where(eq(editions.id, edition));
+  return row?.person ?? null;
 }
