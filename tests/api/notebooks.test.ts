@@ -34,7 +34,15 @@ describe('notebooks', () => {
     await owner.ask('setVisibility', { params, body: { visibility: 'public' } });
     const seen = await visitor(here).ask('getNotebook', { params });
     expect(seen).toMatchObject({ title: 'Bonds of a ring', role: null, may: ['visit', 'read', 'export'], links: 0 });
-    expect((await other.ask('getNotebook', { params })).may).toEqual(['visit', 'keep', 'make', 'account', 'read', 'export', 'fork']);
+    expect((await other.ask('getNotebook', { params })).may).toEqual([
+      'visit',
+      'keep',
+      'make',
+      'account',
+      'read',
+      'export',
+      'fork',
+    ]);
     expect(await visitor(here).refused('forkNotebook', { params, body: {} })).toMatchObject({ status: 401 });
     expect(await other.refused('deleteNotebook', { params })).toMatchObject({ status: 403 });
     expect((await visitor(here).ask('listPublic')).items.map((item) => item.id)).toContain(id);
