@@ -15,7 +15,6 @@ import { sessions, tokens, unlessToken, whoAsks } from './middleware/person.ts';
 import { nothingHere, problems } from './middleware/problem.ts';
 import { editionRoutes } from './routes/editions.ts';
 import { entryRoutes } from './routes/entries.ts';
-import { jobRoutes } from './routes/jobs.ts';
 import { liveRoutes } from './routes/live.ts';
 import { notebookRoutes } from './routes/notebooks.ts';
 import { openApiRoutes } from './routes/openapi.ts';
@@ -32,7 +31,6 @@ export interface Parts {
   readonly database: Database;
   readonly live: Live;
   readonly askForClaims: Context['askForClaims'];
-  readonly questions: Context['questions'];
   /** The stand-in for GitHub, where the settings name it. */
   readonly fakeGithub: FakeGithub | null;
   /** The same for mail. */
@@ -76,8 +74,8 @@ export function makeApp(parts: Parts): Express {
 }
 
 /** Everything that knows who asks: the rows of the table, and the sign-in. */
-function answers({ settings, database, live, askForClaims, questions, fakeGithub, house }: Parts): RequestHandler {
-  const context: Context = { database, askForClaims, questions };
+function answers({ settings, database, live, askForClaims, fakeGithub, house }: Parts): RequestHandler {
+  const context: Context = { database, askForClaims };
   const auth = new passport.Passport();
   const rate = rates(settings);
   const router = Router();
@@ -87,7 +85,6 @@ function answers({ settings, database, live, askForClaims, questions, fakeGithub
   notebookRoutes(bind, context);
   entryRoutes(bind, context);
   editionRoutes(bind, context);
-  jobRoutes(bind, context);
   liveRoutes(bind, live);
   openApiRoutes(bind);
 
