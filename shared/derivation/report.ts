@@ -9,6 +9,7 @@ import { typesetContext, type TypesetOptions } from './typeset-context.ts';
 import { reportDeclaration } from './declarations.ts';
 import { reportImages } from './images.ts';
 import { reportModel } from './models.ts';
+import { suggestionsOf } from './suggest.ts';
 
 export { engineVersion };
 
@@ -106,5 +107,6 @@ export function reportOf(program: Program, claims: readonly Claim[], problems: r
     lattice: lattice ? latticeOf(lattice, values) : null,
     ...set,
     claims: [...claims],
+    suggestions: suggestionsOf(program, claims),
   };
 }
