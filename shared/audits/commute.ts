@@ -19,6 +19,10 @@ interface Mark {
   readonly term: number;
   readonly law: string;
   readonly holds: boolean;
+  /** True where it holds at the declared size by the parity of that size, not at every size. */
+  readonly atSize?: true;
+  /** Where it fails: the two strings that anticommute and the spins where they differ. */
+  readonly witness?: Record<string, unknown>;
 }
 
 interface Failure {
@@ -76,21 +80,31 @@ function commutesHere(on: readonly SizeParity[], values: Values): boolean {
   );
 }
 
-function compare(terms: readonly Piece[], laws: ReadonlyMap<string, readonly Piece[]>, values: Values): Comparison {
+function compare(
+  terms: readonly Piece[],
+  laws: ReadonlyMap<string, readonly Piece[]>,
+  values: Values,
+  family: LatticeFamily,
+): Comparison {
   const budget = newBudget();
   const all: Comparison = { proofs: [], failures: [], table: [], byParity: false };
   terms.forEach((term, k) => {
     for (const [name, pieces] of laws) {
       const before = all.failures.length;
+      let atSize = false;
       for (const law of pieces) {
         const verdict = commutePieces(term, law, budget);
         if (verdict.commutes === true) all.proofs.push(verdict.evidence);
         else if (verdict.commutes === false)
           all.failures.push({ term: k, law, witness: verdict.witnesses[0], depends: undefined });
-        else if (commutesHere(verdict.on, values)) all.byParity = true;
+        else if (commutesHere(verdict.on, values)) atSize = true;
         else all.failures.push({ term: k, law, witness: undefined, depends: verdict.on });
       }
-      all.table.push({ term: k, law: name, holds: all.failures.length === before });
+      const failure = all.failures[before];
+      const mark = { term: k, law: name, holds: failure === undefined };
+      all.byParity ||= atSize;
+      if (failure) all.table.push({ ...mark, witness: witnessOf(failure, family) });
+      else all.table.push(atSize ? { ...mark, atSize } : mark);
     }
   });
   return all;
@@ -127,7 +141,7 @@ function commutation(
   values: Values,
   family: LatticeFamily,
 ): Finding {
-  const { proofs, failures, table, byParity } = compare(terms, laws, values);
+  const { proofs, failures, table, byParity } = compare(terms, laws, values, family);
   const failing = new Set(failures.map((failure) => failure.term));
   const figures = { terms: terms.length, commuting: terms.length - failing.size, table };
   const list = [...laws.keys()].join(', ');

@@ -8,6 +8,16 @@ export type Ref = string;
 export const groupRef = (model: string, group: number): Ref => `${model}/${String(group)}`;
 export const ruleRef = (map: string, rule: number, side: 'left' | 'right'): Ref => `${map}:${String(rule)}:${side}`;
 export const nameRef = (name: string): Ref => name;
+/** A term of a model laid over a law: one mark of a commutation table. `term` is the number that the table knows it by. */
+export const overRef = (model: string, term: number, law: string): Ref => `${model}#${String(term)}#${law}`;
+
+/** The mark of a commutation table that a reference names; null for other references. */
+export function overOf(
+  ref: Ref | null,
+): { readonly model: string; readonly term: number; readonly law: string } | null {
+  const [model, term, law] = ref?.split('#') ?? [];
+  return model === undefined || term === undefined || law === undefined ? null : { model, term: Number(term), law };
+}
 
 /** The two halves of what is in hand; either may be missing. */
 export interface Held {

@@ -1,17 +1,15 @@
 import { type ReactNode, useState } from 'react';
-import type { Claim } from '../../shared/contracts/report.ts';
 import { Guard } from '../components/faces.tsx';
-import { Claims } from '../features/claims/claims.tsx';
-import { levelsOf } from '../features/claims/evidence.ts';
 import { Key } from '../features/margin/key.tsx';
 import { Plate } from '../features/plate/plate.tsx';
-import { Levels } from '../features/plots/levels.tsx';
 import { Contents } from '../features/spread/contents.tsx';
-import type { ClaimsRow, EntryText } from '../features/spread/entry.tsx';
+import type { EntryText } from '../features/spread/entry.tsx';
 import type { EntryRows } from '../features/spread/row.ts';
 import { type Edits, Spread } from '../features/spread/spread.tsx';
 import { HandContext, type HandStore, newHandStore } from '../hand/useHand.ts';
+import { ReadingContext } from '../reading/inView.ts';
 import type { Reading } from '../reading/state.ts';
+import { claimsOf } from './audit-figures.tsx';
 
 const nobody: ReadonlyMap<string, string> = new Map();
 
@@ -49,16 +47,18 @@ export function Facing(props: Props) {
               {reading.failed}
             </p>
           )}
-          <Spread
-            entries={entries}
-            reading={reading}
-            rows={rows}
-            writing={props.writing ?? null}
-            source={props.source ?? noSource}
-            claims={claimsOf}
-            edits={edits}
-            heldBy={props.heldBy ?? nobody}
-          />
+          <ReadingContext value={reading}>
+            <Spread
+              entries={entries}
+              reading={reading}
+              rows={rows}
+              writing={props.writing ?? null}
+              source={props.source ?? noSource}
+              claims={claimsOf}
+              edits={edits}
+              heldBy={props.heldBy ?? nobody}
+            />
+          </ReadingContext>
           {foot}
         </div>
         <aside className="strip-right" aria-label="Margin">
@@ -81,25 +81,4 @@ export function Facing(props: Props) {
       </Guard>
     </HandContext>
   );
-}
-
-/** The claims of an audit line; a spectrum's levels are drawn beside them. */
-function claimsOf(row: ClaimsRow): ReactNode {
-  const drawn = largest(row.claims);
-  const list = <Claims claims={row.claims} audit={row.audit} />;
-  if (!drawn) return list;
-  return (
-    <div className="audit-with-plot">
-      {list}
-      <Levels left={drawn.left} right={drawn.right} label={`Levels of ${drawn.of}`} />
-    </div>
-  );
-}
-
-function largest(claims: readonly Claim[]) {
-  const found = claims.flatMap((claim) => {
-    const levels = levelsOf(claim);
-    return levels ? [{ ...levels, of: claim.statement }] : [];
-  });
-  return found.at(-1);
 }
