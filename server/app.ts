@@ -15,13 +15,14 @@ import { sessions, tokens, unlessToken, whoAsks } from './middleware/person.ts';
 import { nothingHere, problems } from './middleware/problem.ts';
 import { editionRoutes } from './routes/editions.ts';
 import { entryRoutes } from './routes/entries.ts';
+import { jobRoutes } from './routes/jobs.ts';
 import { liveRoutes } from './routes/live.ts';
 import { notebookRoutes } from './routes/notebooks.ts';
 import { openApiRoutes } from './routes/openapi.ts';
 import { peopleRoutes } from './routes/people.ts';
 import { type GithubAccess, signInRoutes } from './routes/sign-in.ts';
 import { stopMailPages } from './routes/stop-mail.ts';
-import type { Context, House } from './services/context.ts';
+import type { Context, House, Questions } from './services/context.ts';
 import { stopPath } from './services/post.ts';
 import type { Settings } from './settings.ts';
 
@@ -31,6 +32,7 @@ export interface Parts {
   readonly database: Database;
   readonly live: Live;
   readonly askForClaims: Context['askForClaims'];
+  readonly questions: Questions;
   /** The stand-in for GitHub, where the settings name it. */
   readonly fakeGithub: FakeGithub | null;
   /** The same for mail. */
@@ -74,7 +76,7 @@ export function makeApp(parts: Parts): Express {
 }
 
 /** Everything that knows who asks: the rows of the table, and the sign-in. */
-function answers({ settings, database, live, askForClaims, fakeGithub, house }: Parts): RequestHandler {
+function answers({ settings, database, live, askForClaims, questions, fakeGithub, house }: Parts): RequestHandler {
   const context: Context = { database, askForClaims };
   const auth = new passport.Passport();
   const rate = rates(settings);
@@ -85,6 +87,7 @@ function answers({ settings, database, live, askForClaims, fakeGithub, house }: 
   notebookRoutes(bind, context);
   entryRoutes(bind, context);
   editionRoutes(bind, context);
+  jobRoutes(bind, { ...context, questions });
   liveRoutes(bind, live);
   openApiRoutes(bind);
 

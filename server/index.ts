@@ -3,8 +3,9 @@ import type { AddressInfo } from 'node:net';
 import type { Logger } from 'pino';
 import { makeApp } from './app.ts';
 import { openDatabase } from './db/connection.ts';
-import { openPool } from './evaluation/pool.ts';
-import { openQueue } from './evaluation/queue.ts';
+import { openPool, type Pool } from './evaluation/pool.ts';
+import { openQueue, type Queue, queueOptions } from './evaluation/queue.ts';
+import { speed } from './evaluation/task.ts';
 import { openFakeGithub } from './fakes/github.ts';
 import { openFakeMail } from './fakes/mail.ts';
 import { openLive } from './live.ts';
@@ -12,8 +13,9 @@ import { noRoad, openRoad, type Road } from './mail/road.ts';
 import { nonceOf } from './middleware/guard.ts';
 import { openLog } from './middleware/observe.ts';
 import { runProgram, type Undo } from './program.ts';
+import type { Questions } from './services/context.ts';
 import { openPost } from './services/post.ts';
-import { sealEditionJob } from './services/sealing.ts';
+import { takeWork } from './services/work.ts';
 import type { Settings } from './settings.ts';
 
 export interface Running {
@@ -29,13 +31,12 @@ export async function startWeb(settings: Settings, log: Logger = openLog(setting
   try {
     const database = openDatabase(settings, trouble);
     undo.push(database.close);
-    const queue = await openQueue(database, { ...settings.evaluation, supervise: settings.evaluation.here }, trouble);
+    const { here } = settings.evaluation;
+    const queue = await openQueue(database, queueOptions(settings, here), trouble);
     undo.push(queue.close);
-    if (settings.evaluation.here) {
-      const pool = openPool(settings.evaluation);
-      undo.push(pool.close);
-      await queue.work(settings.evaluation.threads, (edition) => sealEditionJob(database, pool, edition));
-    }
+    if (here) undo.push((await takeWork(settings, database, queue)).close);
+    const estimating = openPool(estimatingLimits);
+    undo.push(estimating.close);
     const live = openLive(database, trouble);
     const fakeGithub = settings.fakes.includes('github') ? await openFakeGithub(nonceOf) : null;
     if (fakeGithub !== null) {
@@ -46,7 +47,9 @@ export async function startWeb(settings: Settings, log: Logger = openLog(setting
     if (fakeMail !== null) undo.push(fakeMail.close);
     const road = mailRoad(settings, fakeMail?.url ?? null);
     const house = { mail: road.kind, stewards: settings.stewards };
-    const app = makeApp({ settings, log, database, live, askForClaims: queue.ask, fakeGithub, fakeMail, house });
+    const questions = questionsOf(settings, queue, estimating);
+    const parts = { settings, log, database, live, askForClaims: queue.ask, questions, fakeGithub, fakeMail, house };
+    const app = makeApp(parts);
     const server = createServer(app);
     await listening(server, settings);
     const base = settings.publicUrl ?? `http://${settings.host}:${String((server.address() as AddressInfo).port)}`;
@@ -61,6 +64,18 @@ export async function startWeb(settings: Settings, log: Logger = openLog(setting
     await undoAll(undo);
     throw error;
   }
+}
+
+/** What a question would cost is told at once, on a thread of its own that is there when it is asked. */
+const estimatingLimits = { threads: 1, seconds: 20, memoryMb: 512 };
+
+function questionsOf({ questions }: Settings, queue: Queue, estimating: Pool): Questions {
+  return {
+    find: async (source, name) =>
+      (await estimating.do({ kind: 'list', source })).asked.find(({ question }) => question === name),
+    ask: queue.questions.ask,
+    limit: { operations: questions.seconds * speed, bytes: questions.memoryMb * 2 ** 20 },
+  };
 }
 
 function mailRoad({ mail, mailFrom }: Settings, standIn: string | null): Road {

@@ -44,6 +44,10 @@ const shape = z.object({
   EVALUATION_THREADS: atLeast(1, 1),
   EVALUATION_SECONDS: atLeast(1, 120),
   EVALUATION_MEMORY_MB: atLeast(64, 1024),
+  /** Single questions that people hand over: how many at a time, and how long and how large one may be. */
+  QUESTION_THREADS: atLeast(1, 1),
+  QUESTION_SECONDS: atLeast(1, 3600),
+  QUESTION_MEMORY_MB: atLeast(64, 1024),
   DATABASE_CONNECTIONS: atLeast(2, 10),
   /** Requests a minute that change something, for one person or address; and those that sign in, for one address. */
   WRITES_PER_MINUTE: atLeast(1, 240),
@@ -78,6 +82,7 @@ export interface Settings {
     readonly seconds: number;
     readonly memoryMb: number;
   };
+  readonly questions: { readonly threads: number; readonly seconds: number; readonly memoryMb: number };
   readonly rates: { readonly writes: number; readonly signIns: number; readonly requests: number };
 }
 
@@ -140,6 +145,7 @@ function arrange(env: Parsed): Settings {
       seconds: env.EVALUATION_SECONDS,
       memoryMb: env.EVALUATION_MEMORY_MB,
     },
+    questions: { threads: env.QUESTION_THREADS, seconds: env.QUESTION_SECONDS, memoryMb: env.QUESTION_MEMORY_MB },
     rates: { writes: env.WRITES_PER_MINUTE, signIns: env.SIGN_INS_PER_MINUTE, requests: env.REQUESTS_PER_MINUTE },
   };
 }

@@ -1,10 +1,9 @@
 import type { Logger } from 'pino';
 import { openDatabase } from './db/connection.ts';
-import { openPool } from './evaluation/pool.ts';
-import { openQueue } from './evaluation/queue.ts';
+import { openQueue, queueOptions } from './evaluation/queue.ts';
 import { openLog } from './middleware/observe.ts';
 import { runProgram } from './program.ts';
-import { sealEditionJob } from './services/sealing.ts';
+import { takeWork } from './services/work.ts';
 import type { Settings } from './settings.ts';
 
 /**
@@ -17,21 +16,19 @@ export async function startWorker(
 ): Promise<{ readonly stop: () => Promise<void> }> {
   const trouble = (error: unknown): void => log.warn({ err: error }, 'trouble in the background');
   const database = openDatabase(settings, trouble);
-  const pool = openPool(settings.evaluation);
   try {
-    const queue = await openQueue(database, { ...settings.evaluation, supervise: true }, trouble);
-    await queue.work(settings.evaluation.threads, (edition) => sealEditionJob(database, pool, edition));
+    const queue = await openQueue(database, queueOptions(settings, true), trouble);
+    const work = await takeWork(settings, database, queue);
     log.info('taking jobs');
     return {
       stop: async () => {
         // What runs is given back to the queue first, so that closing it waits for nothing long.
-        await pool.close();
+        await work.close();
         await queue.close();
         await database.close();
       },
     };
   } catch (error) {
-    await pool.close();
     await database.close();
     throw error;
   }

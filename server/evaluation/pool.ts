@@ -2,7 +2,7 @@ import { existsSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
 import { Worker } from 'node:worker_threads';
 import type { Report } from '../../shared/contracts/report.ts';
-import type { Settings } from '../settings.ts';
+import type { Results, Said, Task, ThreadProgress } from './task.ts';
 
 /** Thrown where a source could not be evaluated; the message is for people. */
 export class EvaluationFailed extends Error {
@@ -15,23 +15,38 @@ export class EvaluationFailed extends Error {
   }
 }
 
-/** Threads that run the engine. A thread that takes too long is killed, whatever it is doing. */
+/** What a pool may use. */
+export interface PoolLimits {
+  readonly threads: number;
+  /** Longest time of one task. */
+  readonly seconds: number;
+  /** Largest heap of one thread; the kernel's own memory comes to it. */
+  readonly memoryMb: number;
+}
+
+export interface Watching {
+  readonly onProgress?: (progress: ThreadProgress) => void;
+  /** Ends the task at once, and the thread with it; it fails as stopped. */
+  readonly signal?: AbortSignal;
+}
+
+/** Threads that run the engine. A thread that takes too long is killed, whatever it is doing. Tasks wait while all are at work. */
 export interface Pool {
-  /** The report of one source; throws EvaluationFailed. Waits while all threads are at work. */
+  /** The report of one source; throws EvaluationFailed. */
   readonly derive: (source: string) => Promise<Report>;
+  /** What a task comes to; throws EvaluationFailed. */
+  readonly do: <K extends Task['kind']>(
+    task: Extract<Task, { readonly kind: K }>,
+    watching?: Watching,
+  ) => Promise<Results[K]>;
   /** Kills all threads; what they were at fails, and `why` is stopped. */
   readonly close: () => Promise<void>;
 }
 
-/** What a thread is asked and what it answers. */
-export interface ThreadAnswer {
-  readonly report?: Report;
-  readonly failure?: string;
-}
-
 interface Waiting {
-  readonly source: string;
-  readonly resolve: (report: Report) => void;
+  readonly task: Task;
+  readonly watching: Watching;
+  readonly resolve: (said: Said) => void;
   readonly reject: (error: EvaluationFailed) => void;
 }
 
@@ -46,7 +61,7 @@ function threadFile(): URL {
   return found;
 }
 
-export function openPool(limits: Settings['evaluation'], program: URL = threadFile()): Pool {
+export function openPool(limits: PoolLimits, program: URL = threadFile()): Pool {
   const idle: Worker[] = [];
   const stops = new Set<() => void>();
   const queue: Waiting[] = [];
@@ -69,11 +84,12 @@ export function openPool(limits: Settings['evaluation'], program: URL = threadFi
   };
 
   /** One question to one thread; the thread is kept if it answered, else killed. Never rejects. */
-  const run = (worker: Worker, { source, resolve, reject }: Waiting): Promise<void> =>
+  const run = (worker: Worker, { task, watching, resolve, reject }: Waiting): Promise<void> =>
     new Promise((done) => {
       const finish = (keep: boolean, tell: () => void): void => {
         clearTimeout(timer);
         stops.delete(stop);
+        watching.signal?.removeEventListener('abort', stop);
         worker.removeAllListeners();
         if (keep && !closed) {
           // An idle thread does not keep the process alive.
@@ -90,17 +106,20 @@ export function openPool(limits: Settings['evaluation'], program: URL = threadFi
       };
       const fail = (why: EvaluationFailed['why'], message: string): void =>
         finish(false, () => reject(new EvaluationFailed(why, message)));
-      const stop = (): void => fail('stopped', 'The server was stopped meanwhile.');
+      const stop = (): void => fail('stopped', 'The evaluation was stopped.');
       const timer = setTimeout(
         () => fail('limit', `The evaluation took longer than ${String(limits.seconds)} seconds.`),
         limits.seconds * 1000,
       );
       stops.add(stop);
+      if (watching.signal?.aborted === true) return stop();
+      watching.signal?.addEventListener('abort', stop);
       worker.ref();
       worker.removeAllListeners();
-      worker.once('message', ({ report, failure }: ThreadAnswer) => {
-        if (report !== undefined) finish(true, () => resolve(report));
-        else fail('broken', failure ?? 'The engine gave no answer.');
+      worker.on('message', (said: Said) => {
+        if ('progress' in said) watching.onProgress?.(said.progress);
+        else if ('failure' in said) fail('broken', said.failure);
+        else finish(true, () => resolve(said));
       });
       worker.once('error', (error) => {
         const code = (error as NodeJS.ErrnoException).code;
@@ -109,7 +128,8 @@ export function openPool(limits: Settings['evaluation'], program: URL = threadFi
         } else fail('broken', `The engine broke down: ${error instanceof Error ? error.message : String(error)}`);
       });
       worker.once('exit', () => fail('broken', 'The engine ended without an answer.'));
-      worker.postMessage(source);
+      // A report that would take too long is cut short in good order, before its thread is killed.
+      worker.postMessage(task.kind === 'derive' ? { ...task, seconds: limits.seconds } : task);
     });
 
   const forget = (worker: Worker): void => {
@@ -117,15 +137,20 @@ export function openPool(limits: Settings['evaluation'], program: URL = threadFi
     if (at !== -1) idle.splice(at, 1);
   };
 
+  const ask = (task: Task, watching: Watching): Promise<Said> =>
+    new Promise((resolve, reject) => {
+      if (closed) reject(new EvaluationFailed('stopped', 'The server was stopped meanwhile.'));
+      else {
+        queue.push({ task, watching, resolve, reject });
+        next();
+      }
+    });
+  // The kind of a task decides what is said to it.
+  const perform: Pool['do'] = async (task, watching = {}) => (await ask(task, watching)) as never;
+
   return {
-    derive: (source) =>
-      new Promise((resolve, reject) => {
-        if (closed) reject(new EvaluationFailed('stopped', 'The server was stopped meanwhile.'));
-        else {
-          queue.push({ source, resolve, reject });
-          next();
-        }
-      }),
+    do: perform,
+    derive: async (source) => (await perform({ kind: 'derive', source })).report,
     close: async () => {
       closed = true;
       for (const { reject } of queue.splice(0)) reject(new EvaluationFailed('stopped', 'The server was stopped.'));

@@ -6,6 +6,7 @@ import type { Database } from '../db/connection.ts';
 import { countAttempt, failEdition, findUnsealed, sealEdition, type Unsealed } from '../db/queries/editions.ts';
 import { EvaluationFailed, type Pool } from '../evaluation/pool.ts';
 import { whileLocked } from '../evaluation/queue.ts';
+import { deriveWithAnswers } from './answers.ts';
 import { notifyPublisher } from './notices.ts';
 
 /** An edition whose computation took the whole process down this often is not tried again by itself. */
@@ -23,7 +24,7 @@ export function sealEditionJob(database: Database, pool: Pool, edition: string):
     if (attempts > mostAttempts) return fail(database, edition, waiting, 'The engine ended each time it was tried.');
     const { text, lines } = joinEntries(waiting.content.entries);
     try {
-      await seal(database, edition, waiting, lines, await pool.derive(text));
+      await seal(database, edition, waiting, lines, await deriveWithAnswers(database, pool, text));
     } catch (error) {
       if (!(error instanceof EvaluationFailed)) throw error;
       if (error.why !== 'stopped') return fail(database, edition, waiting, error.message);

@@ -5,7 +5,7 @@ import { BudgetSpent } from '../limits.ts';
 import { sizeText } from '../lattice/cluster.ts';
 import type { Size } from '../lattice/cells.ts';
 import { NotHermitian } from '../spectra/hamiltonian.ts';
-import { costOf, solve, type SolveFault, type Spectrum, type SpectrumQuestion } from '../spectra/solve.ts';
+import { costOf, solve, solveLimits, type SolveFault, type Spectrum, type SpectrumQuestion } from '../spectra/solve.ts';
 import { stringPhrase } from '../maps/phrases.ts';
 import type { Cost, Finding, Means, Progress } from './audit.ts';
 import { finiteSubject, subjectWords, type FiniteSubject } from './sector.ts';
@@ -203,7 +203,12 @@ export function* levelsOf(
   means: Means,
   doing: string,
 ): Generator<Progress, Spectrum> {
-  const run = solve(question, { kernel: means.kernel });
+  const { kernel, limit } = means;
+  const limits = {
+    operations: Math.max(limit.operations, solveLimits.operations),
+    bytes: Math.max(limit.bytes, solveLimits.bytes),
+  };
+  const run = solve(question, { kernel, limits });
   try {
     for (;;) {
       const step = run.next();

@@ -14,6 +14,7 @@ import {
   notebookSummarySchema,
   titleSchema,
 } from './notebooks.ts';
+import { jobRows } from './job-rows.ts';
 import { addMemberSchema, memberSchema } from './people.ts';
 import { reviewRows } from './review-rows.ts';
 import { filters, uploadSchema } from './reviews.ts';
@@ -26,6 +27,7 @@ export { type Endpoint, type Method, writeHeader } from './row.ts';
 export const endpoints = {
   ...accountRows,
   ...reviewRows,
+  ...jobRows,
 
   // shelf and public notebooks, newest change first
   listShelf: row('GET /api/shelf', {

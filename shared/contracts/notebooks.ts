@@ -96,6 +96,8 @@ export const liveEvents = {
   variants: z.object({ sending: idSchema }),
   /** The server evaluated a text that someone waits for here: a comparison, a collation or a rerun. */
   evaluation: z.object({ status: z.enum(['done', 'failed']) }),
+  /** A numerical question that someone handed to the server from here has its answer, or failed. */
+  answer: z.object({ question: z.string() }),
   /** The people of the notebook who have it open now. */
   present: z.object({ people: z.array(personSchema) }),
 } as const;

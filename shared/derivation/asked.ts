@@ -101,11 +101,13 @@ export function* answerAsked(
   return question ? yield* findingsOf(question, means) : null;
 }
 
-/**
- * Whether findings may be kept as plain data and given to others: proofs for all sizes are made where they are needed, and what
- * stands open may be decided elsewhere.
- */
-export const isPortable = (findings: readonly Finding[]): boolean =>
-  findings.length > 0 && findings.every(({ evidence }) => evidence.kind !== 'all sizes' && evidence.kind !== 'reason');
+/** Why findings leave something open; undefined if they decide all. What stands open here may be decided elsewhere. */
+export function openReason(findings: readonly Finding[]): string | undefined {
+  if (findings.length === 0) return 'there is nothing to decide';
+  return findings.flatMap(({ evidence }) => (evidence.kind === 'reason' ? [evidence.reason] : []))[0];
+}
+
+/** Whether findings may be kept as plain data and given to others. */
+export const isPortable = (findings: readonly Finding[]): boolean => openReason(findings) === undefined;
 
 export type { Finding };

@@ -137,7 +137,7 @@ describe('every row of the table of endpoints', () => {
   });
 
   const nobody = '00000000-0000-4000-8000-000000000000';
-  const unknown = { way: nobody, key: nobody, invitation: nobody, mail: nobody };
+  const unknown = { way: nobody, key: nobody, invitation: nobody, mail: nobody, job: nobody };
   const bodies: Partial<Record<EndpointName, object>> = {
     changeNotebook: { title: 'Other' },
     setVisibility: { visibility: 'private' },
@@ -165,6 +165,7 @@ describe('every row of the table of endpoints', () => {
     readNotices: { notices: 'all' },
     setNoticeMail: { mail: 'immediate' },
     followNotebook: { mail: null },
+    askQuestion: { source: 'audit x', question: '0'.repeat(64) },
     setLimits: {
       jobsPerPerson: 100,
       notebooksPerPerson: 10_000,
@@ -215,6 +216,10 @@ describe('every row of the table of endpoints', () => {
     acceptInvitation: 404,
     declineInvitation: 404,
     retryMail: 409,
+    askQuestion: 404,
+    getJob: 404,
+    cancelJob: 404,
+    getAnswers: 400,
     endSession: 404,
     evaluateEdition: 409,
     publishEdition: 409,

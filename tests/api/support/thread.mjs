@@ -2,7 +2,7 @@
 import { parentPort, threadId } from 'node:worker_threads';
 
 const hold = [];
-parentPort.on('message', (source) => {
+parentPort.on('message', ({ source }) => {
   if (source === 'for ever') for (;;);
   if (source === 'much') for (;;) hold.push(Array.from({ length: 100_000 }, (_, n) => ({ n })));
   if (source === 'throw') throw new Error('thrown on purpose');
