@@ -1,11 +1,19 @@
 import type { Database } from '../db/connection.ts';
-import { forgetMails, insertMail, markSent, markUnsent, takeDigest, takeMail } from '../db/queries/mails.ts';
+import {
+  forgetMails,
+  giveUpLate,
+  insertMail,
+  markSent,
+  markUnsent,
+  takeDigest,
+  takeMail,
+} from '../db/queries/mails.ts';
 import { baseMark, digestLetter } from '../mail/letters.ts';
 import { type Road, Unsendable } from '../mail/road.ts';
 import { stopToken } from '../mail/stops.ts';
 
 /** How often the queue is looked at, and how often daily mails and old ones are. */
-const lookMs = 1_000;
+const lookMs = 300;
 const roundMs = 60_000;
 /** A sender that took a mail and died leaves it to others after this. */
 const leaseSeconds = 90;
@@ -36,6 +44,7 @@ export function openPost(
     if (Date.now() - lastRound > roundMs) {
       lastRound = Date.now();
       await writeDigests(database, new Date());
+      await giveUpLate(database);
       await forgetMails(database);
     }
     while (!closed && (await sendNext(database, road, settings)));

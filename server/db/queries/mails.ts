@@ -48,13 +48,9 @@ export async function countMailsTo({ db }: Asking, to: string, minutes: number):
  * Counts the attempt, so that a mail that ends its sender is not tried for ever.
  */
 export async function takeMail({ db }: Asking, leaseSeconds: number): Promise<DueMail | null> {
-  await db
-    .update(mails)
-    .set({ state: 'failed', text: null, error: 'It was not sent in time.' })
-    .where(and(eq(mails.state, 'waiting'), lt(mails.uselessAt, sql`now()`)));
   const { rows } = await db.execute<DueMail & Record<string, unknown>>(sql`
     update ${mails} set attempts = attempts + 1, due_at = now() + make_interval(secs => ${leaseSeconds})
-    where id = (select id from ${mails} where state = 'waiting' and due_at <= now() and text is not null
+    where id = (select id from ${mails} where state = 'waiting' and due_at <= now() and text is not null and (useless_at is null or useless_at > now())
       order by due_at, created_at, id limit 1 for update skip locked)
     returning id, "to", subject, text, stops, attempts`);
   return rows[0] ?? null;
@@ -85,6 +81,14 @@ export async function markUnsent(
         : { dueAt: sql`now() + make_interval(secs => ${pause})` }),
     })
     .where(eq(mails.id, id));
+}
+
+/** Gives up what would be of no use any more. */
+export async function giveUpLate({ db }: Asking): Promise<void> {
+  await db
+    .update(mails)
+    .set({ state: 'failed', text: null, error: 'It was not sent in time.' })
+    .where(and(eq(mails.state, 'waiting'), lt(mails.uselessAt, sql`now()`)));
 }
 
 /** Mail of long ago is forgotten. */

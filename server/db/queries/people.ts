@@ -67,28 +67,34 @@ export async function insertIdentity(
   return (rowCount ?? 0) > 0;
 }
 
+/** What the person knows the account by. */
+const labelOf = ({ provider, subject, handle }: Identity): string => (provider === emailProvider ? subject : handle);
+
 /**
  * The person who signs in with this account; null if it is nobody's yet. Whoever has the account's address as a way in has the
  * account too, from now on.
  */
 export async function findOrLinkIdentity(asking: Asking, identity: Identity): Promise<string | null> {
-  const { provider, subject, handle, email } = identity;
+  const { provider, subject, email } = identity;
   const known = await findByIdentity(asking, provider, subject);
   if (known !== null) {
     const which = and(eq(identities.provider, provider), eq(identities.subject, subject));
-    await asking.db.update(identities).set({ label: handle }).where(which);
+    await asking.db
+      .update(identities)
+      .set({ label: labelOf(identity) })
+      .where(which);
     return known;
   }
   const person = email === null ? null : await findByIdentity(asking, emailProvider, email);
-  if (person !== null) await insertIdentity(asking, person, { provider, subject, label: handle });
+  if (person !== null) await insertIdentity(asking, person, { provider, subject, label: labelOf(identity) });
   return person;
 }
 
 /** A new person with this account, and its address, as ways in. A handle that someone else has already gets a number. */
 export async function insertPersonOf(asking: Asking, identity: Identity): Promise<string> {
-  const { provider, subject, handle, email } = identity;
+  const { provider, subject, email } = identity;
   const person = await insertPerson(asking, identity);
-  await insertIdentity(asking, person, { provider, subject, label: handle });
+  await insertIdentity(asking, person, { provider, subject, label: labelOf(identity) });
   if (email !== null) await insertIdentity(asking, person, { provider: emailProvider, subject: email, label: email });
   return person;
 }
