@@ -133,7 +133,7 @@ export function hover(program: Program, at: TextPosition): Hover | undefined {
   const bound = one && boundAt(one, name, at);
   if (bound && layout) {
     const { domain } = bound.binder;
-    return { place, title: name, text: `A cell of ${layout.text.slice(domain.start, domain.end)}.` };
+    return { place, title: name, text: `A cell of ${layout.text.slice(domain.start, domain.end)}.`, name };
   }
   const line = lineAt(program.source, at.line);
   const suffix = line[place.column - 2] === '^' ? helpOn(`^${text}`, 'operator') : undefined;

@@ -29,12 +29,35 @@ function kindOfSet(set: string): BoundCell['kind'] {
   return isKind(word) ? word : geometryFunction(word)?.gives;
 }
 
-const boundIn = (text: string): BoundCell[] =>
-  [...text.matchAll(/([A-Za-z_]\w*)\s*:\s*([A-Za-z]+(?:\.\w+)?(?:\s*\([^()]*\))?)/gu)].map((m) => ({
-    name: m[1] ?? '',
-    kind: kindOfSet(m[2] ?? ''),
-    domain: m[2] ?? '',
-  }));
+const binderAt = /([A-Za-z_]\w*)\s*:\s*([A-Za-z]+(?:\.\w+)?(?:\s*\([^()]*\))?)/uy;
+
+const boundCell = (name = '', domain = ''): BoundCell => ({ name, kind: kindOfSet(domain), domain });
+
+/**
+ * Variables that are known at the end of a text: those of heads, and of sums and products whose body has not ended there
+ * (it runs to the next sign at its depth). `after` is the rest of the line, where a rule of a map binds its cells.
+ */
+function boundIn(text: string, after: string): BoundCell[] {
+  let known: { readonly cell: BoundCell; readonly depth: number }[] = [];
+  const open: boolean[] = [];
+  for (let k = 0; k < text.length; k++) {
+    const c = text[k] ?? '';
+    if (c === '(' || c === '[') open.push(/\b(?:sum|prod)\s*$/u.test(text.slice(Math.max(0, k - 12), k)));
+    else if (c === ')' || c === ']') {
+      open.pop();
+      known = known.filter((one) => one.depth <= open.length);
+    } else if ((c === '+' || c === '-') && text[k - 1] !== '^') known = known.filter((one) => one.depth < open.length);
+    else if (/[A-Za-z_]/u.test(c) && !/\w/u.test(text[k - 1] ?? '')) {
+      binderAt.lastIndex = k;
+      const m = binderAt.exec(text);
+      // a head's variable is known in the whole statement
+      if (m) known.push({ cell: boundCell(m[1], m[2]), depth: open.at(-1) === true ? open.length - 1 : -1 });
+    }
+  }
+  const later = /\bfor\s.*/u.exec(after)?.[0] ?? '';
+  const binders = [...later.matchAll(new RegExp(binderAt.source, 'gu'))];
+  return [...known.map((one) => one.cell).reverse(), ...binders.map((m) => boundCell(m[1], m[2]))];
+}
 
 /** The innermost bracket that is open at the end of a text, with what stands before it. */
 function openBracket(text: string): { readonly mark: '(' | '['; readonly before: string } | undefined {
@@ -179,7 +202,7 @@ function optionsAt(program: Program, at: TextPosition, before: string): Completi
       help: helpOn('lattice')?.help ?? '',
     }));
   if (text.startsWith('audit')) return inAudit(program, at.line, text);
-  const bound = boundIn(layout?.text ?? before);
+  const bound = boundIn(text, lineAt(program.source, at.line).slice(before.length));
   const part = /([A-Za-z_]\w*)\s*\.$/u.exec(before)?.[1];
   if (part !== undefined) return partsOf(part, bound, program);
   const sets = [...ofTopic('cells'), ...geometry(bound)];

@@ -1,4 +1,5 @@
 import type { Report } from '../../shared/contracts/report.ts';
+import type { Helper } from './help.ts';
 import type { Answer } from '../worker/messages.ts';
 import { protocol } from '../worker/messages.ts';
 import { type Placed, type Slice, slicesOf } from './slices.ts';
@@ -18,6 +19,8 @@ export interface Reading {
   readonly engine: string;
   /** Why the engine gave no report for the version answered, in words. */
   readonly failed: string | undefined;
+  /** Answers what an editor asks; absent where nothing is written. */
+  readonly helper?: Helper;
 }
 
 export const unread: Reading = {

@@ -1,6 +1,7 @@
 import { useEffect, useMemo, useRef, useState } from 'react';
 import { joinEntries } from '../../shared/notebook/text.ts';
-import { ask, type Answer, protocol } from '../worker/messages.ts';
+import { ask, type Answer, type AskHelp, type HelpAnswer, protocol } from '../worker/messages.ts';
+import { newHelper, type Helper, type PlacedWith } from './help.ts';
 import type { Placed } from './slices.ts';
 import { answering, asking, type Reading, unread } from './state.ts';
 
@@ -25,6 +26,45 @@ export function placed(entries: readonly EntryText[]): { readonly text: string; 
   };
 }
 
+/** Questions of an editor on their way to the engine and back. */
+function newHelpLine() {
+  const open = new Map<number, (answer: HelpAnswer['answer']) => void>();
+  let entries: readonly EntryText[] = [];
+  let post: ((help: AskHelp) => void) | undefined;
+  let last = 0;
+  const placedWith: PlacedWith = ({ entry, text }) =>
+    placed(entries.map((one) => (one.id === entry ? { ...one, text } : one)));
+  const helper: Helper = newHelper(
+    placedWith,
+    (text, question) =>
+      new Promise((resolve) => {
+        if (!post) return resolve(null);
+        last += 1;
+        open.set(last, resolve);
+        post({ kind: 'help', protocol, id: last, text, question });
+      }),
+  );
+  return {
+    helper,
+    reads(now: readonly EntryText[]) {
+      entries = now;
+    },
+    opensTo(to: (help: AskHelp) => void) {
+      post = to;
+    },
+    answered({ id, answer }: HelpAnswer) {
+      open.get(id)?.(answer);
+      open.delete(id);
+    },
+    /** The engine is gone: nothing asked of it will be answered. */
+    hangUp() {
+      post = undefined;
+      for (const resolve of open.values()) resolve(null);
+      open.clear();
+    },
+  };
+}
+
 /**
  * The reading of a text that changes: each new text is asked of the engine in its worker, and the newest answer is shown.
  * A worker that dies is told of in `failed`, and the next text starts a new one.
@@ -35,6 +75,8 @@ export function useReading(entries: readonly EntryText[]): Reading {
   const version = useRef(0);
   const asked = useRef(new Map<number, readonly Placed[]>());
   const source = useMemo(() => placed(entries), [entries]);
+  const [line] = useState(newHelpLine);
+  useEffect(() => line.reads(entries), [line, entries]);
 
   useEffect(() => {
     const worker = engine.current ?? startEngine();
@@ -49,26 +91,32 @@ export function useReading(entries: readonly EntryText[]): Reading {
       for (const old of asked.current.keys()) if (old < answer.version) asked.current.delete(old);
       setReading((before) => answering(before, answer, about));
     };
-    worker.onmessage = (event: MessageEvent<Answer>) => take(event.data);
+    worker.onmessage = ({ data }: MessageEvent<Answer | HelpAnswer>) => {
+      if (data.kind !== 'help') return take(data);
+      line.answered(data);
+    };
     worker.onerror = (event) => {
+      line.hangUp();
       event.preventDefault();
       worker.terminate();
       if (engine.current === worker) engine.current = null;
       const message = 'The engine stopped. It starts again with the next change.';
       take({ protocol, version: version.current, part: Number.MAX_SAFE_INTEGER, kind: 'failed', message });
     };
+    line.opensTo((help) => worker.postMessage(help));
     setReading((before) => asking(before, mine));
     worker.postMessage(ask(mine, source.text));
-  }, [source]);
+  }, [source, line]);
 
   useEffect(
     () => () => {
       engine.current?.terminate();
       engine.current = null;
+      line.hangUp();
     },
-    [],
+    [line],
   );
-  return reading;
+  return useMemo(() => ({ ...reading, helper: line.helper }), [reading, line]);
 }
 
 function startEngine(): Worker {

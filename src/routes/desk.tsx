@@ -1,9 +1,12 @@
 import { lazy, type ReactNode, Suspense, useCallback, useEffect, useMemo, useRef, useState } from 'react';
+import type { Hover } from '../../shared/contracts/assist.ts';
+import { explained } from '../features/writing/explained.ts';
 import type { EntryRows, Spot } from '../features/spread/row.ts';
 import { heldAt } from '../features/spread/rows.ts';
 import type { EntryText } from '../features/spread/entry.tsx';
 import { letGo, take } from '../hand/hand.ts';
 import { newHandStore } from '../hand/useHand.ts';
+import { edited } from '../reading/help.ts';
 import type { Reading } from '../reading/state.ts';
 
 /** Where the source is open, and how it opens and closes: the caret enters a formula, and it is type again when it leaves. */
@@ -42,6 +45,8 @@ export function useDesk(given: Given): Desk {
     latest.current = rows;
   });
 
+  const { slices } = reading;
+  const explain = useCallback((hover: Hover) => explained(hover, slices), [slices]);
   const open = useCallback((spot: Spot) => setAt({ ...spot }), []);
   const close = useCallback(() => {
     setAt(null);
@@ -70,7 +75,20 @@ export function useDesk(given: Given): Desk {
               label={`Source of entry ${String(numbers.get(entry.id) ?? '')}`}
               kind={entry.kind}
               text={entry.text}
+              entry={entry.id}
               spot={at}
+              helper={reading.helper}
+              explained={explain}
+              onGo={(id, line, column) => {
+                if (id !== entry.id) leave(entry.id);
+                open({ entry: id, line, column });
+              }}
+              onElsewhere={(edits) => {
+                for (const other of entries) {
+                  const own = edits.filter((edit) => edit.entry === other.id);
+                  if (own.length > 0) onType(other.id, edited(other.text, own));
+                }
+              }}
               problems={notes}
               onChange={(text) => onType(entry.id, text)}
               onCaret={(line, column) => {

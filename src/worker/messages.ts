@@ -1,13 +1,24 @@
+import type { AssistAnswer, AssistQuestion } from '../../shared/contracts/assist.ts';
 import type { Report } from '../../shared/contracts/report.ts';
 
 /** What page and worker say to each other. Both come from one build; the number guards a page kept open over an update. */
-export const protocol = 2;
+export const protocol = 3;
 
 /** `version` counts the texts of one page from 1. */
 export interface Ask {
+  readonly kind: 'report';
   readonly protocol: typeof protocol;
   readonly version: number;
   readonly text: string;
+}
+
+/** What an editor asks about a place in a text; answered at once, between two slices of whatever is under way. */
+export interface AskHelp {
+  readonly kind: 'help';
+  readonly protocol: typeof protocol;
+  readonly id: number;
+  readonly text: string;
+  readonly question: AssistQuestion;
 }
 
 /**
@@ -19,4 +30,11 @@ export type Answer = { readonly protocol: number; readonly version: number; read
   | { readonly kind: 'failed'; readonly message: string }
 );
 
-export const ask = (version: number, text: string): Ask => ({ protocol, version, text });
+/** The answer to AskHelp of the same id; null when the engine could not read the text. */
+export interface HelpAnswer {
+  readonly kind: 'help';
+  readonly id: number;
+  readonly answer: AssistAnswer | null;
+}
+
+export const ask = (version: number, text: string): Ask => ({ kind: 'report', protocol, version, text });

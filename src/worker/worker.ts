@@ -1,8 +1,9 @@
+import { newAssistant } from '../../shared/derivation/assist.ts';
 import { type Derivation, newDerivation, type Step } from '../../shared/derivation/derive.ts';
 import kernelAddress from '../../shared/spectra/kernel/kernel.wasm?url';
 import { wasmKernel } from '../../shared/spectra/kernel/wasm.ts';
 import type { Report } from '../../shared/contracts/report.ts';
-import { type Answer, type Ask, protocol } from './messages.ts';
+import { type Answer, type Ask, type AskHelp, type HelpAnswer, protocol } from './messages.ts';
 
 /**
  * The engine's home in the browser. A text is answered in slices: at once with all that is symbolic or known from before;
@@ -17,8 +18,8 @@ const pause = 300;
 const slice = 12;
 
 const scope = self as unknown as {
-  onmessage: ((event: MessageEvent<Ask>) => void) | null;
-  postMessage: (answer: Answer) => void;
+  onmessage: ((event: MessageEvent<Ask | AskHelp>) => void) | null;
+  postMessage: (answer: Answer | HelpAnswer) => void;
 };
 
 let newest: Ask | undefined;
@@ -44,7 +45,22 @@ async function engine(): Promise<Derivation> {
 }
 const ready = engine();
 
+const assistant = newAssistant();
+
+/** What an editor asks comes in between the slices of a run, and needs no kernel. */
+function help({ id, text, question }: AskHelp): HelpAnswer {
+  try {
+    return { kind: 'help', id, answer: assistant.answer(text, question) };
+  } catch {
+    return { kind: 'help', id, answer: null };
+  }
+}
+
 scope.onmessage = ({ data }) => {
+  if (data.kind === 'help') {
+    scope.postMessage(help(data));
+    return;
+  }
   newest = data;
   if (!working) void work();
 };

@@ -78,6 +78,15 @@ describe('completion', () => {
     expect(labels('model a = sum(p: plaquettes) prod(l: rim(')).toEqual(['p', 'plaquettes']);
     expect(labels('model a =\n  sum(v: vertices)\n  star(')).toEqual(['v', 'vertices']);
     expect(labels('model a = sum(p: plaquettes) σ^z[p.')).toEqual(['1', '2', '3', '4', 'x', 'y']);
+    expect(labels('model a = sum(v: vertices) s^x[v] + sum(u: vertices where u.x + 1 == 2) s^z[')).toEqual([
+      'u',
+      'vertices',
+    ]);
+    expect(labels('law K(q: plaquettes) = (prod(l: rim(q)) σ^z[l]) prod(v: corners(')).toEqual([
+      'q',
+      'plaquettes',
+      'cubes',
+    ]);
     expect(labels('spins t on links.')).toEqual(['1', '2']);
   });
   it('writes functions and families with their argument', () => {
