@@ -1,37 +1,37 @@
 import { lazy, type ReactNode, Suspense } from 'react';
+import type { Claim } from '../../shared/contracts/report.ts';
 import { Guard } from '../components/faces.tsx';
 import { Sentence } from '../components/formula.tsx';
 import { Claims } from '../features/claims/claims.tsx';
-import { levelsOf } from '../features/claims/evidence.ts';
 import { printed } from '../features/claims/typography.ts';
-import { Levels } from '../features/plots/levels.tsx';
 import type { ClaimsRow } from '../features/spread/entry.tsx';
 
-/** What is drawn under the claims of an audit line comes when it is needed: a first page without tables does not load them. */
+/** What is drawn under the claims of an audit line comes when it is needed: a first page without it does not load it. */
 const CommutationTable = lazy(() =>
   import('../features/table/table.tsx').then(({ CommutationTable }) => ({ default: CommutationTable })),
 );
+const Plots = lazy(() => import('../features/plots/plots.tsx').then(({ Plots }) => ({ default: Plots })));
 
 const say = (sentence: string): ReactNode => <Sentence text={printed(sentence)} />;
 
-/** The claims of an audit line, with what is drawn of them: the table of a commutation, the levels of a spectrum. */
+/** Whether a claim holds numbers that are drawn. */
+const isDrawn = ({ audit, figures }: Claim): boolean =>
+  (audit === 'spectrum' && Array.isArray(figures['left'])) ||
+  (audit === 'scan' && Array.isArray(figures['values'])) ||
+  (audit === 'degeneracy' && typeof figures['degeneracy'] === 'number');
+
+/** The claims of an audit line, with what is drawn of them: the table of a commutation, the plot of what was computed. */
 export function claimsOf(row: ClaimsRow): ReactNode {
   const tables = row.claims.filter((claim) => claim.audit === 'commute' && Array.isArray(claim.figures['table']));
-  const drawn = row.claims.flatMap((claim) => {
-    const levels = levelsOf(claim);
-    return levels ? [{ ...levels, of: claim.statement }] : [];
-  });
-  const last = drawn.at(-1);
-  const list = <Claims claims={row.claims} audit={row.audit} />;
   return (
     <>
-      {last ? (
-        <div className="audit-with-plot">
-          {list}
-          <Levels left={last.left} right={last.right} label={`Levels of ${last.of}`} />
-        </div>
-      ) : (
-        list
+      <Claims claims={row.claims} audit={row.audit} />
+      {row.claims.some(isDrawn) && (
+        <Guard what="The plot could not be drawn." until={row.claims}>
+          <Suspense fallback={<div className="plot-to-come" />}>
+            <Plots claims={row.claims} say={say} />
+          </Suspense>
+        </Guard>
       )}
       {tables.map((claim, k) => (
         <Guard key={k} what="The table could not be shown." until={claim}>

@@ -44,11 +44,3 @@ export function witnessSentence(claim: Claim): string | null {
     words.charAt(0) === words.charAt(0).toLowerCase() ? words : words.charAt(0).toUpperCase() + words.slice(1);
   return /[.!?]$/.test(capital) ? capital : `${capital}.`;
 }
-
-/** Levels of both sides of a spectrum claim, lowest first; null for other claims. */
-export function levelsOf(claim: Claim): { readonly left: readonly number[]; readonly right: readonly number[] } | null {
-  const { left, right } = claim.figures;
-  const numbers = (value: unknown): value is number[] =>
-    Array.isArray(value) && value.length > 0 && value.every((one) => typeof one === 'number');
-  return numbers(left) && numbers(right) ? { left, right } : null;
-}
