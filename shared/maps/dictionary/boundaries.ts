@@ -11,7 +11,7 @@ import { speciesOf, type Context } from '../context.ts';
 import { extendedPhrase } from '../phrases.ts';
 import type { DictionaryDeclaration } from './declaration.ts';
 import { isExtended } from './decompose.ts';
-import { nameSectors } from './sectors.ts';
+import type { Sector } from './sectors.ts';
 import { forced, instances, tableOf, type Instance, type SizeFindings } from './sizes.ts';
 
 /** What a seam on one side of a map asks of the sectors. */
@@ -88,6 +88,19 @@ function seamed(
   });
 }
 
+/** Sectors that take the other value in a group of the same strings with other signs; undefined where one is turned in part only. */
+function turnedSectors(group: StabilizerGroup, sectors: readonly Sector[]): string[] | undefined {
+  const out: string[] = [];
+  for (const { words, value, strings } of sectors) {
+    // phase 0: the string itself is +1; 2: it is −1
+    const values = strings.map((string) => (group.membership(string)?.phase === 2 ? -1 : 1));
+    const turns = values.filter((own) => own !== value).length;
+    if (turns > 0 && turns < strings.length) return undefined;
+    if (turns > 0) out.push(`${words} = ${value === 1 ? '-1' : '+1'}`);
+  }
+  return out;
+}
+
 /**
  * Boundary conditions and sectors that answer one another (E. Cobanera, G. Ortiz, Z. Nussinov, Adv. Phys. 60, 679 (2011), section 3.11): a
  * seam changes the signs of relations that close around the lattice on its side, hence the values that these force on the other. Exact, on one size.
@@ -108,7 +121,6 @@ export function boundaries(
   const items = instances(declaration, tables.left, tables.right, cluster, budget);
   const [n, m] = [tables.left.sites.length, tables.right.sites.length];
   const plain = { left: items.map((i) => i.left), right: items.map((i) => i.right) };
-  const before = new Set([...found.leftSectors, ...found.rightSectors].map((sector) => sector.text));
   const out: Boundary[] = [];
   for (const side of ['left', 'right'] as const) {
     const species = side === 'left' ? declaration.from : declaration.to;
@@ -121,23 +133,15 @@ export function boundaries(
         const onRight = new StabilizerGroup(m, forced(new StabilizerGroup(n, left, budget), right, m, budget), budget);
         const onLeft = new StabilizerGroup(n, forced(new StabilizerGroup(m, right, budget), left, n, budget), budget);
         const none = onRight.containsMinusOne || onLeft.containsMinusOne;
-        const fresh = (words: readonly { readonly text: string }[]): string[] =>
-          words.map((sector) => sector.text).filter((word) => !before.has(word));
-        const boundary: Boundary = {
-          side,
-          symmetry: text,
-          direction,
-          left: none ? [] : fresh(nameSectors(onLeft, tables.left, cluster, declaration.from, context, budget)),
-          right: none ? [] : fresh(nameSectors(onRight, tables.right, cluster, declaration.to, context, budget)),
-          none,
-        };
-        const changed = [...boundary.left, ...boundary.right];
+        const changes = [turnedSectors(onLeft, found.leftSectors), turnedSectors(onRight, found.rightSectors)];
         // a seam that turns laws at some cells only puts charges there; it is no mere boundary
-        if (changed.some((word) => / on \d+ of \d+ cells$/u.test(word))) continue;
+        if (!none && changes.includes(undefined)) continue;
+        const [turnedLeft = [], turnedRight = []] = none ? [] : changes;
+        const boundary: Boundary = { side, symmetry: text, direction, left: turnedLeft, right: turnedRight, none };
         const effect = (b: Boundary): string =>
           JSON.stringify([b.side, b.direction, b.left, b.right, b.none ? b.symmetry : '']);
         const told = out.some((other) => effect(other) === effect(boundary));
-        if (none || (changed.length > 0 && !told)) out.push(boundary);
+        if (none || (turnedLeft.length + turnedRight.length > 0 && !told)) out.push(boundary);
       }
   }
   return out;

@@ -1,6 +1,6 @@
 import { StabilizerGroup } from '../../algebra/finite/group.ts';
 import { toDense, type SparseString } from '../../algebra/finite/sparse.ts';
-import { bodyKey, toPauli } from '../../algebra/finite/string.ts';
+import { bodyKey, toPauli, turned } from '../../algebra/finite/string.ts';
 import type { FiniteString, SiteTable } from '../../algebra/finite/types.ts';
 import { wrapExtended, wrapOrbit } from '../../algebra/finite/wrap.ts';
 import type { Extended, LocalString, Pauli, ProductPart, Steps } from '../../algebra/pauli/types.ts';
@@ -18,6 +18,8 @@ import { points } from '../steps.ts';
 export interface Sector {
   /** Name of the declared law or symmetry, where it is one. */
   readonly name: string | undefined;
+  /** `flat`, `prod(l: loop(1)) g^z[l]`. */
+  readonly words: string;
   /** `flat = +1`, `prod(l: loop(1)) g^z[l] = -1`. */
   readonly text: string;
   readonly value: 1 | -1;
@@ -26,6 +28,8 @@ export interface Sector {
   readonly independent: number;
   /** One of them, on the infinite lattice where it has a form there. */
   readonly example: LocalString | Extended | undefined;
+  /** All of them, on the cluster. */
+  readonly strings: readonly (FiniteString | SparseString)[];
 }
 
 /** Strings that a name stands for on a cluster. */
@@ -77,23 +81,41 @@ function declared(
   return out;
 }
 
+/** For each species whether strings of a group hold X and Z of it (Y is both). */
+function matricesOf(group: StabilizerGroup, table: SiteTable): ReadonlyMap<string, ReadonlySet<'x' | 'z'>> {
+  const held = new Map<string, Set<'x' | 'z'>>();
+  for (const g of group.generators)
+    for (const { spin, pauli } of toPauli(toDense(g)).factors) {
+      const species = table.sites[spin]?.species ?? '';
+      const own = held.get(species) ?? new Set<'x' | 'z'>();
+      held.set(species, own);
+      if (pauli !== 'z') own.add('x');
+      if (pauli !== 'x') own.add('z');
+    }
+  return held;
+}
+
 /** Products that every lattice has: rims, stars and their like, cycles around it, the whole lattice; in each Pauli matrix. */
-function familiar(
+function* familiar(
+  forced: StabilizerGroup,
   table: SiteTable,
   cluster: Cluster,
   species: readonly string[],
   context: Context,
   budget: Budget,
-): Candidate[] {
+): Generator<Candidate> {
   const { family } = context;
   const zero = Array<number>(family.dimension).fill(0);
   const all: Steps = zero.map(() => 1);
-  const out: Candidate[] = [];
+  const held = matricesOf(forced, table);
   for (const name of species) {
     const value = speciesOf(context, name);
     if (!value) continue;
     const carries = (c: Cell) => c.kind === value.kind && value.classes.includes(c.index);
+    const own = held.get(name);
     for (const pauli of paulis) {
+      // a product of strings of Z's is never an X
+      if ((pauli !== 'z' && !own?.has('x')) || (pauli !== 'x' && !own?.has('z'))) continue;
       for (const f of geometryTable) {
         if (!f.dimensions.includes(family.dimension) || f.form === 'pairs' || f.gives !== value.kind) continue;
         if (f.form === 'around')
@@ -109,14 +131,14 @@ function familiar(
             );
             const [example] = strings;
             if (!example || strings.some((s) => s.factors.length < 2)) continue;
-            out.push({
+            yield {
               name: undefined,
               text: `prod(${letters[value.kind]}: ${f.name}(${letters[kind]})) ${name}^${pauli}[${letters[value.kind]}]`,
               strings: strings.flatMap((string) =>
                 wrapOrbit(table, cluster, { string, steps: all, needs: [] }, budget),
               ),
               example,
-            });
+            };
           }
         else
           for (let d = 1; d <= family.dimension; d++) {
@@ -132,12 +154,12 @@ function familiar(
                   needs: [],
                 })),
             };
-            out.push({
+            yield {
               name: undefined,
               text: `prod(l: ${f.name}(${String(d)})) ${name}^${pauli}[l]`,
               strings: [wrapExtended(table, cluster, extended, budget)],
               example: extended,
-            });
+            };
           }
       }
       for (const steps of sublattices(family.dimension)) {
@@ -153,16 +175,15 @@ function familiar(
         const starts = startsOf(steps, cluster);
         const strings = starts.map((offset) => wrapExtended(table, cluster, start(offset), budget));
         const distinct = [...new Map(strings.map((s) => [bodyKey(s), s])).values()];
-        out.push({
+        yield {
           name: undefined,
           text: extendedPhrase(start(zero), family),
           strings: distinct,
           example: start(zero),
-        });
+        };
       }
     }
   }
-  return out;
 }
 
 /** The whole lattice, then lines and planes of it, then its sublattices of period 2, as steps. */
@@ -222,17 +243,22 @@ export function nameSectors(
         strings.length === c.strings.length ? '' : ` on ${String(strings.length)} of ${String(c.strings.length)} cells`;
       sectors.push({
         name: c.name,
+        words: `${c.text}${part}`,
         text: `${c.text} = ${value === 1 ? '+1' : '-1'}${part}`,
         value,
         count: strings.length,
         independent: grown,
         example: c.example,
+        strings,
       });
     }
   };
   for (const c of declared(table, cluster, species, context, budget)) take(c, true);
   if (rank < forced.rank)
-    for (const c of familiar(table, cluster, species, context, budget)) if (rank < forced.rank) take(c, true);
+    for (const c of familiar(forced, table, cluster, species, context, budget)) {
+      take(c, true);
+      if (rank === forced.rank) break;
+    }
   if (rank === forced.rank) return sectors;
   const rest = [...new Map(forced.generators.map((g) => [bodyKey(toDense(g)), g])).values()].sort(
     (a, b) => a.spins.length - b.spins.length,
@@ -253,11 +279,13 @@ export function nameSectors(
     const value = phase === 0 ? 1 : -1;
     sectors.push({
       name: undefined,
+      words: stringPhrase(string, context.family),
       text: `${stringPhrase(string, context.family)} = ${value === 1 ? '+1' : '-1'}`,
       value,
       count: 1,
       independent: 1,
       example: string,
+      strings: [turned(toDense(g), -phase)],
     });
   }
   return sectors;
