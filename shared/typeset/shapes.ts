@@ -260,8 +260,20 @@ function named(string: LocalString, steps: Steps, context: TypesetContext): Plac
  * faces, edges, neighbours of one cell), else its factors one by one.
  */
 export function placed(string: LocalString, steps: Steps, context: TypesetContext): Placed {
-  return named(string, steps, context) ?? structured(string, context.family) ?? explicit(string, context.family);
+  const known = placedBefore.get(context) ?? new Map<string, Placed>();
+  placedBefore.set(context, known);
+  const key = `${String(string.phase)} ${bodyKey(string)} ${steps.join(',')}`;
+  const before = known.get(key);
+  if (before) return before;
+  const now = named(string, steps, context) ?? structured(string, context.family) ?? explicit(string, context.family);
+  if (known.size >= mostPlaced) known.clear();
+  known.set(key, now);
+  return now;
 }
+
+/** Strings placed before: the same few stand in model after model, and each is asked for in its sum and by itself. */
+const placedBefore = new WeakMap<TypesetContext, Map<string, Placed>>();
+const mostPlaced = 20_000;
 
 /** Farthest shell of vertex pairs that is looked for. */
 const mostShells = 4;

@@ -1,3 +1,4 @@
+import { measureEngine } from './engine.ts';
 import { measureMaps } from './maps.ts';
 import { measureTyping } from './typing.ts';
 
@@ -8,6 +9,14 @@ process.stdout.write(
   [
     `typing, ${String(typing.lines)} lines, ${String(typing.keys)} keys, key to painted answer`,
     `  median ${figure(typing.median)}   95th percentile ${figure(typing.p95)} (goal 100)   worst ${figure(typing.worst)}`,
+    '',
+  ].join('\n'),
+);
+const engine = measureEngine();
+process.stdout.write(
+  [
+    `the engine, ${String(engine.lines)} lines, from text to first report`,
+    `  one key later, median ${figure(engine.changed)} (goal 50)   read for the first time, median ${figure(engine.whole)}`,
     '',
   ].join('\n'),
 );

@@ -38,6 +38,7 @@ export class Coefficient {
   private readonly numerator: Polynomial;
   private readonly denominator: Polynomial;
   #cachedKey: string | undefined;
+  #cachedParts: { readonly numerator: readonly TermParts[]; readonly denominator: readonly TermParts[] } | undefined;
 
   private constructor(numerator: Polynomial, denominator: Polynomial) {
     this.numerator = numerator;
@@ -220,7 +221,8 @@ export class Coefficient {
 
   /** Numerator and denominator as sums of products, for typesetting; the denominator is [1] when there is none. */
   parts(): { readonly numerator: readonly TermParts[]; readonly denominator: readonly TermParts[] } {
-    return { numerator: termParts(this.numerator), denominator: termParts(this.denominator) };
+    this.#cachedParts ??= { numerator: termParts(this.numerator), denominator: termParts(this.denominator) };
+    return this.#cachedParts;
   }
   /** Plain data, whole in itself: what JSON.stringify writes and `fromData` reads. Equal coefficients give equal data. */
   toJSON(): CoefficientData {
