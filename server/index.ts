@@ -34,7 +34,7 @@ export async function startWeb(settings: Settings, log: Logger = openLog(setting
     const { here } = settings.evaluation;
     const queue = await openQueue(database, queueOptions(settings, here), trouble);
     undo.push(queue.close);
-    if (here) undo.push((await takeWork(settings, database, queue)).close);
+    if (here) undo.push((await takeWork(settings, database, queue, trouble)).close);
     const estimating = openPool(estimatingLimits);
     undo.push(estimating.close);
     const live = openLive(database, trouble);
@@ -48,11 +48,22 @@ export async function startWeb(settings: Settings, log: Logger = openLog(setting
     const road = mailRoad(settings, fakeMail?.url ?? null);
     const house = { mail: road.kind, stewards: settings.stewards };
     const questions = questionsOf(settings, queue, estimating);
-    const parts = { settings, log, database, live, askForClaims: queue.ask, questions, fakeGithub, fakeMail, house };
+    const parts = {
+      settings,
+      log,
+      database,
+      live,
+      askForClaims: queue.ask,
+      questions,
+      quick: estimating,
+      fakeGithub,
+      fakeMail,
+      house,
+    };
     const app = makeApp(parts);
     const server = createServer(app);
     await listening(server, settings);
-    const base = settings.publicUrl ?? `http://${settings.host}:${String((server.address() as AddressInfo).port)}`;
+    const base = settings.publicUrl ?? addressOf(settings.host, (server.address() as AddressInfo).port);
     undo.push(openPost(database, road, { base, secret: settings.sessionSecret }, trouble).close);
     undo.push(() => closed(server));
     // Ends the streams first: a server waits for its open answers.
@@ -76,6 +87,12 @@ function questionsOf({ questions }: Settings, queue: Queue, estimating: Pool): Q
     ask: queue.questions.ask,
     limit: { operations: questions.seconds * speed, bytes: questions.memoryMb * 2 ** 20 },
   };
+}
+
+/** Where browsers on this machine find the server; one that listens everywhere is found at localhost too. */
+function addressOf(host: string, port: number): string {
+  const name = ['0.0.0.0', '::', ''].includes(host) ? 'localhost' : host.includes(':') ? `[${host}]` : host;
+  return `http://${name}:${String(port)}`;
 }
 
 function mailRoad({ mail, mailFrom }: Settings, standIn: string | null): Road {

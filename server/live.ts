@@ -2,12 +2,15 @@ import { randomUUID } from 'node:crypto';
 import pg from 'pg';
 import { type Announcement, announce, channel, type Word } from './db/announce.ts';
 import type { Database } from './db/connection.ts';
+import { membersOf } from './db/queries/notices.ts';
 import { clearStale, listPresent, sayGone, sayPresent } from './db/queries/presences.ts';
 import { askerFor, may, type NotebookStanding, standingOnNotebook } from './db/standing.ts';
 
 /** How often an open connection says that it is there, and whether it may still listen is asked again. */
 const renewMs = 25_000;
 const longestPauseMs = 10_000;
+/** Changes of a notebook within this time are one change of a shelf. */
+const shelfMs = 1_000;
 
 /** Where a listener's events go; `end` is called when it may not listen any more, or the server stops. */
 export interface Listener {
@@ -37,6 +40,7 @@ const isMember = ({ person, on }: NotebookStanding): boolean => person !== null 
 export function openLive(database: Database, onTrouble: (error: unknown) => void): Live {
   const ears = new Map<string, Set<Ear>>();
   const persons = new Map<string, Set<Listener>>();
+  const shelves = new Map<string, NodeJS.Timeout>();
   const quietly = (work: Promise<unknown>): void => void work.catch(onTrouble);
   const all = (): Ear[] => [...ears.values()].flatMap((set) => [...set]);
 
@@ -56,8 +60,24 @@ export function openLive(database: Database, onTrouble: (error: unknown) => void
     return true;
   };
 
+  /** Tells the members of a notebook, wherever they are, that it looks different on their shelves. */
+  const tellShelves = async (notebook: string): Promise<void> => {
+    for (const person of await membersOf(database, notebook)) {
+      for (const listener of persons.get(person) ?? []) listener.send('shelf', { notebook });
+    }
+  };
+  const noteForShelves = (notebook: string): void => {
+    if (persons.size === 0 || shelves.has(notebook)) return;
+    const later = (): void => {
+      shelves.delete(notebook);
+      quietly(tellShelves(notebook));
+    };
+    shelves.set(notebook, setTimeout(later, shelfMs));
+  };
+
   const pass = async ({ notebook, event, data }: Announcement): Promise<void> => {
     if (event === 'present') return tellPresent(notebook);
+    if (event !== 'hold') noteForShelves(notebook);
     for (const ear of [...(ears.get(notebook) ?? [])]) {
       // Rights may be what changed, so they are asked before anything is said.
       if (event !== 'notebook' || (await ask(ear))) ear.listener.send(event, data);
@@ -132,6 +152,7 @@ export function openLive(database: Database, onTrouble: (error: unknown) => void
     },
     close: async () => {
       clearInterval(renew);
+      for (const timer of shelves.values()) clearTimeout(timer);
       for (const listener of [...persons.values()].flatMap((set) => [...set])) listener.end();
       // Those who listen leave while the database still answers.
       await Promise.allSettled(all().map(endAndLeave));

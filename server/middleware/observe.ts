@@ -20,7 +20,7 @@ export function withoutValues(error: Error): Error {
 
 /** What opens something must not stand in a log: tokens of share links, codes and states of a sign-in. */
 export const withoutSecrets = (url: string): string =>
-  url.replace(/(\/linked\/|\/shared\/)[^/?]+/, '$1…').replace(/([?&](?:code|state|token)=)[^&]*/g, '$1…');
+  url.replace(/(\/linked\/|\/shared\/|\/stop-mail\/)[^/?]+/, '$1…').replace(/([?&](?:code|state|token)=)[^&]*/g, '$1…');
 
 /** Gives each request an id (its answer's X-Request-Id), and writes a line when it is answered. */
 export function observe(log: Logger): RequestHandler[] {

@@ -75,7 +75,7 @@ async function noteFor(
     by: given.by,
     // Not of the notebook: it may not be read before the invitation is accepted.
     notebook: null,
-    path: '/invitations',
+    path: '/shelf',
     mail: false,
   });
 }

@@ -62,6 +62,7 @@ async function giveRole(
     throw new Refusal('conflict', 'The owner of a notebook has no other role on it.');
   }
   await announce(tx, standing.on.notebook, 'notebook', {});
+  await tell(tx, person, 'account', {});
   const member = (await listMembers(tx, standing)).find((one) => one.person.id === person);
   if (member === undefined) throw notFound();
   return member;

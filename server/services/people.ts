@@ -1,4 +1,5 @@
 import type { Me, Session } from '../../shared/contracts/people.ts';
+import { tell } from '../db/announce.ts';
 import { countUnread } from '../db/queries/notices.ts';
 import { findAccount } from '../db/queries/people.ts';
 import { endSession, endSessions, listSessions } from '../db/queries/sessions.ts';
@@ -25,9 +26,11 @@ export async function sessionsOf(
 
 export async function endSessionOf({ database }: Context, standing: Standing, session: string): Promise<void> {
   if (!(await endSession(database, personOf(standing), session))) throw notFound();
+  await tell(database, personOf(standing), 'account', {});
 }
 
 /** Ends all of a person's sessions but the asking one. */
-export function endOtherSessions({ database }: Context, standing: Standing, current: string): Promise<void> {
-  return endSessions(database, personOf(standing), current);
+export async function endOtherSessions({ database }: Context, standing: Standing, current: string): Promise<void> {
+  await endSessions(database, personOf(standing), current);
+  await tell(database, personOf(standing), 'account', {});
 }

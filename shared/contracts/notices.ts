@@ -35,7 +35,9 @@ export const personEvents = {
   notices: z.object({ unread: z.number().int() }),
   /** A job of one's own went on: read it, or all of them for null. */
   job: z.object({ job: idSchema.nullable() }),
-  /** Shelf, rights or account changed: read `getMe` and the shelf again. */
+  /** A notebook on one's shelf changed: read the shelf again. */
+  shelf: z.object({ notebook: idSchema }),
+  /** Rights or account changed: read `getMe` and the shelf again. */
   account: z.object({}),
 } as const;
 export type PersonEvent = keyof typeof personEvents;

@@ -66,7 +66,7 @@ describe('an invitation by mail', () => {
     await invite('known@away.example', 'reader');
     const { items } = await known.ask('listInvited');
     expect(items).toMatchObject([{ role: 'reader', notebook: { title: 'Bonds' } }]);
-    expect((await known.ask('listNotices')).items[0]).toMatchObject({ kind: 'invitation', to: '/invitations' });
+    expect((await known.ask('listNotices')).items[0]).toMatchObject({ kind: 'invitation', to: '/shelf' });
     const invitation = items[0]?.id ?? '';
     const stranger = await person(here, 'dquell');
     expect(await stranger.refused('acceptInvitation', { body: { invitation } })).toMatchObject({ status: 404 });

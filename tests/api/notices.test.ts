@@ -192,4 +192,26 @@ describe('events for one person', () => {
     expect(silence).toBe('nothing');
     stop.abort();
   });
+
+  it('when a notebook on one’s shelf changes, then one hears it once for many changes at a time', async () => {
+    const stop = new AbortController();
+    const answer = await reader.fetch('/api/me/live', { signal: stop.signal });
+    const stream = answer.body?.pipeThrough(new TextDecoderStream()).getReader();
+    let heard = '';
+    const listening = (async () => {
+      for (;;) heard += (await stream?.read())?.value ?? '';
+    })().catch(() => undefined);
+    const owner = await person(here, 'rokafor');
+    for (const title of ['One', 'Two', 'Three']) {
+      await owner.ask('changeNotebook', { params: { notebook }, body: { title } });
+    }
+    for (let look = 0; look < 50 && !heard.includes('event: shelf'); look += 1) {
+      await new Promise((resolve) => setTimeout(resolve, 100));
+    }
+    await new Promise((resolve) => setTimeout(resolve, 1_500));
+    expect(heard.split('event: shelf')).toHaveLength(2);
+    expect(heard).toContain(`data: {"notebook":"${notebook}"}`);
+    stop.abort();
+    await listening;
+  });
 });

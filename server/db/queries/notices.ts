@@ -1,7 +1,7 @@
 import { and, count, desc, eq, inArray, isNull, sql } from 'drizzle-orm';
 import type { Notice, NoticeKind, NoticeSettings } from '../../../shared/contracts/notices.ts';
 import type { MailMode } from '../../../shared/contracts/people.ts';
-import type { Role } from '../../../shared/contracts/rights.ts';
+import { type Role, roles } from '../../../shared/contracts/rights.ts';
 import type { Asking } from '../connection.ts';
 import { type Page, type PageAsked, pageFrom, readCursor } from '../page.ts';
 import { memberships, notebooks } from '../schema/notebooks.ts';
@@ -137,6 +137,10 @@ export async function setNotebookMail(
     where ${people.id} = ${person} and ${notebooks.id} = ${notebook}
     on conflict (person, notebook) do update set mail = excluded.mail`);
 }
+
+/** All who have a role on a notebook. */
+export const membersOf = (asking: Asking, notebook: string): Promise<string[]> =>
+  peopleWithRole(asking, notebook, roles);
 
 /** The people who have one of these roles on a notebook. */
 export async function peopleWithRole({ db }: Asking, notebook: string, roles: readonly Role[]): Promise<string[]> {
