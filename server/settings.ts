@@ -6,7 +6,10 @@ const fakes = ['github', 'mail'] as const;
 
 const port = z.coerce.number().int().min(0).max(65535);
 const httpUrl = z.url({ protocol: /^https?$/ }).transform((text) => text.replace(/\/+$/, ''));
+/** As long as a timer of Node lasts, less a little. */
+const longestSeconds = 2_000_000;
 const atLeast = (least: number, standard: number) => z.coerce.number().int().min(least).default(standard);
+const seconds = (standard: number) => z.coerce.number().int().min(1).max(longestSeconds).default(standard);
 
 const shape = z.object({
   NODE_ENV: z.enum(['production', 'development', 'test']).default('production'),
@@ -42,11 +45,11 @@ const shape = z.object({
   /** Where claims are computed: by worker processes only, or by the web server's own threads as well. */
   EVALUATION: z.enum(['workers', 'here']).default('workers'),
   EVALUATION_THREADS: atLeast(1, 1),
-  EVALUATION_SECONDS: atLeast(1, 120),
+  EVALUATION_SECONDS: seconds(120),
   EVALUATION_MEMORY_MB: atLeast(64, 1024),
   /** Single questions that people hand over: how many at a time, and how long and how large one may be. */
   QUESTION_THREADS: atLeast(1, 1),
-  QUESTION_SECONDS: atLeast(1, 3600),
+  QUESTION_SECONDS: seconds(3600),
   QUESTION_MEMORY_MB: atLeast(64, 1024),
   DATABASE_CONNECTIONS: atLeast(2, 10),
   /** Requests a minute that change something, for one person or address; and those that sign in, for one address. */

@@ -1,12 +1,14 @@
 /**
  * Runs a TypeScript command in this process, straight from a checkout: `node server/commands/quick.mjs FILE.ts [ARGUMENTS]`.
- * The grammar is compiled first where it is missing or stale; nothing is printed, so standard output is the command's own.
+ * The grammar and the kernel are compiled first where they are missing or stale; nothing is printed, so standard output is the
+ * command's own.
  * Arguments that name a file are read from where `npm run` was called, which npm hides by going to the checkout.
  */
 import { existsSync } from 'node:fs';
 import { isAbsolute, join, resolve } from 'node:path';
 import { pathToFileURL } from 'node:url';
 import { compileGrammar } from './grammar.mjs';
+import { compileKernel } from './kernel.mjs';
 import { root } from './root.mjs';
 
 const [command, ...given] = process.argv.slice(2);
@@ -20,6 +22,8 @@ if (!existsSync(join(root, 'node_modules', 'tsx'))) {
   process.exit(2);
 }
 compileGrammar();
+// Without the compiled kernel the plain one does the same, more slowly.
+await compileKernel().catch(() => undefined);
 const { register } = await import('tsx/esm/api');
 register();
 const file = join(root, command);

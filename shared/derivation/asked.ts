@@ -15,6 +15,9 @@ export const numerical: ReadonlySet<string> = new Set([
   ...['spectrum', 'degeneracy', 'expect', 'scan', 'count', 'effective', 'symmetries'],
 ]);
 
+/** Names of all audits, in the order of the language's help. */
+export const auditNames: readonly string[] = [...audits.keys()];
+
 /** What of a source is asked: all of it, or some audits only; on the sizes that it names, or on others. */
 export interface Choice {
   /** Names of audits. */

@@ -10,7 +10,7 @@ import { answerOf, findingsOf } from './questions.ts';
 import { reportOf } from './report.ts';
 
 /** Largest cost of one question that is answered at once: about a minute of one core, and half of a small machine's memory. */
-const defaultLimit: Means['limit'] = { operations: 5e11, bytes: 2 ** 30 };
+export const standardLimit: Means['limit'] = { operations: 5e11, bytes: 2 ** 30 };
 
 export interface DerivationOptions {
   readonly kernel?: Kernel;
@@ -57,7 +57,7 @@ function keep(answers: Map<string, readonly Finding[]>, key: string, findings: r
 
 /** A road from source to report that keeps what did not change between one text and the next. */
 export function newDerivation(options: DerivationOptions = {}): Derivation {
-  const means: Means = { kernel: options.kernel ?? plainKernel, limit: options.limit ?? defaultLimit };
+  const means: Means = { kernel: options.kernel ?? plainKernel, limit: options.limit ?? standardLimit };
   const choice = options.choice ?? {};
   const answers = new Map<string, readonly Finding[]>();
   const learned = new Map<string, readonly Finding[]>();
