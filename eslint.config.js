@@ -73,13 +73,14 @@ export const table = {
   'server/live': { may: ['server/settings', 'server/db'], packages: nodePackages },
   'server/page': {},
   'server/fakes': { may: ['server/settings', 'server/page'], packages: nodePackages },
-  'server/catalogue': { may: ['server/settings', 'shared/notebook'], packages: nodePackages },
+  'server/catalogue': { may: ['server/settings', 'shared/notebook', 'shared/contracts'], packages: nodePackages },
   'server/services': {
     may: [
       'server/db',
       'server/evaluation',
       'server/mail',
       'server/live',
+      'server/catalogue',
       'shared/notebook',
       'shared/exports',
       'shared/contracts',

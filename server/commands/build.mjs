@@ -91,6 +91,10 @@ async function buildServer(outdir) {
   });
   const kernel = join(root, 'shared', 'spectra', 'kernel', 'kernel.wasm');
   if (existsSync(kernel)) copyFileSync(kernel, join(outdir, 'kernel.wasm'));
+  const catalogue = join(root, 'server', 'catalogue');
+  mkdirSync(join(outdir, 'catalogue'), { recursive: true });
+  for (const name of readdirSync(catalogue).filter((one) => one.endsWith('.gw')))
+    copyFileSync(join(catalogue, name), join(outdir, 'catalogue', name));
 }
 
 async function buildClient(outDir) {

@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { accountRows } from './account-rows.ts';
+import { catalogueRows } from './catalogue.ts';
 import { idSchema, pageOf, pageQuery } from './common.ts';
 import { editionSchema, editionSummarySchema, linkSchema, publishSchema } from './editions.ts';
 import {
@@ -28,6 +29,7 @@ export const endpoints = {
   ...accountRows,
   ...reviewRows,
   ...jobRows,
+  ...catalogueRows,
 
   // shelf and public notebooks, newest change first
   listShelf: row('GET /api/shelf', {

@@ -137,7 +137,7 @@ describe('every row of the table of endpoints', () => {
   });
 
   const nobody = '00000000-0000-4000-8000-000000000000';
-  const unknown = { way: nobody, key: nobody, invitation: nobody, mail: nobody, job: nobody };
+  const unknown = { way: nobody, key: nobody, invitation: nobody, mail: nobody, job: nobody, worked: 'ising-ring' };
   const bodies: Partial<Record<EndpointName, object>> = {
     changeNotebook: { title: 'Other' },
     setVisibility: { visibility: 'private' },
