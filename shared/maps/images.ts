@@ -22,8 +22,8 @@ export interface ImageRow {
   readonly notes: readonly string[];
 }
 
-/** Operations for one row; a row that takes more says so. */
-const operationsPerRow = 300_000;
+/** Operations for one row: a row that takes more says so. What was declared by name may take longer than what every map is asked. */
+const operationsPerRow = { spin: 20_000, operator: 100_000, law: 100_000, symmetry: 100_000 } as const;
 /** Distance in unit cells of the two copies of a charged operator. */
 const apart = 3;
 
@@ -125,7 +125,7 @@ function knownAs(image: Operator, values: Values): string | undefined {
 }
 
 function rowOf(value: MapValue, subject: Subject, values: Values, dimension: number): ImageRow {
-  const budget = newBudget(operationsPerRow, 'operations of one image');
+  const budget = newBudget(operationsPerRow[subject.what], 'operations of one image');
   const none = { right: undefined, known: undefined, pair: undefined, notes: [] };
   try {
     const image = imageOf(value, subject.left, budget);
@@ -146,7 +146,8 @@ function rowOf(value: MapValue, subject: Subject, values: Values, dimension: num
     };
   } catch (error) {
     if (!(error instanceof BudgetSpent)) throw error;
-    const refusal = { reason: `not decided: ${error.limit}`, term: undefined, symmetry: undefined };
+    const way = subject.what === 'spin' ? '; declare an operator for it to have more spent on it' : '';
+    const refusal = { reason: `not decided: ${error.limit}${way}`, term: undefined, symmetry: undefined };
     return { ...subject, ...none, refusal };
   }
 }
@@ -167,7 +168,14 @@ export function imagesOf(value: MapValue, values: Values): readonly ImageRow[] {
     const before = rows.get(key);
     if (before) return before;
     const made = subjects()
-      .filter(({ left }) => [...speciesOfOperator(left)].some((name) => names.includes(name)))
+      .filter(({ left }) => {
+        const own = [...speciesOfOperator(left)];
+        // what already holds the other side's species is none of its operators
+        return (
+          own.some((name) => names.includes(name)) &&
+          own.every((name) => names.includes(name) || !value.map.to.includes(name))
+        );
+      })
       .map((subject) => rowOf(value, subject, values, dimension));
     rows.set(key, made);
     return made;
