@@ -3,7 +3,7 @@ import { findByHandle } from '../db/queries/people.ts';
 import { type NotebookStanding, onInstallation, standingFor } from '../db/standing.ts';
 import { openQueue } from '../evaluation/queue.ts';
 import { type InventedNotebook, inventedNotebooks } from '../fakes/notebooks.ts';
-import { inventedPeople } from '../fakes/people.ts';
+import { inventedPeople, inventedSteward } from '../fakes/people.ts';
 import type { Context } from '../services/context.ts';
 import { publish } from '../services/editions.ts';
 import { insertEntry } from '../services/entries.ts';
@@ -45,7 +45,7 @@ async function write(context: Context): Promise<void> {
   const ids = new Map<string, string>();
   for (const { id, login, name, email } of inventedPeople) {
     const identity = { provider: standInProvider, subject: String(id), handle: login, name, email };
-    ids.set(login, await signIn(context.database, { stewards: [] }, identity));
+    ids.set(login, await signIn(context.database, { stewards: [inventedSteward] }, identity));
   }
   const personOf = (login: string): string => {
     const id = ids.get(login);
@@ -66,7 +66,7 @@ async function writeNotebook(context: Context, notebook: InventedNotebook, owner
   const asker = onInstallation({ person: owner, steward: false });
   const { id } = await importNotebook(context, asker, { source: notebook.source });
   const standing = await standingFor(context.database, owner, id);
-  await publish(context, standing, notebook.summary);
+  if (notebook.summary !== null) await publish(context, standing, notebook.summary);
   if (notebook.then !== undefined) {
     for (const entry of notebook.then.add) await insertEntry(context, standing, { ...entry, before: null });
     await publish(context, standing, notebook.then.summary);

@@ -1,3 +1,5 @@
+import { ledger, loops, unrolled } from './drafts.ts';
+
 /**
  * The notebooks of the demonstration, as `.gw` texts, by the invented people of `people.ts`. `then` is what a notebook becomes
  * after its first edition, published as the second.
@@ -6,7 +8,8 @@ export interface InventedNotebook {
   readonly owner: string;
   readonly people: readonly { readonly handle: string; readonly role: 'coauthor' | 'referee' | 'reader' }[];
   readonly visibility: 'private' | 'public';
-  readonly summary: string;
+  /** Of its first edition; null: nothing was published. */
+  readonly summary: string | null;
   readonly source: string;
   readonly then?: {
     readonly summary: string;
@@ -130,5 +133,26 @@ export const inventedNotebooks: readonly InventedNotebook[] = [
     visibility: 'private',
     summary: 'The wrong step kept beside the right one',
     source: ring,
+  },
+  {
+    owner: 'tvasara',
+    people: [{ handle: 'dquell', role: 'reader' }],
+    visibility: 'public',
+    summary: 'One layer of gates, printed for the reading group',
+    source: unrolled,
+  },
+  {
+    owner: 'lbrandt',
+    people: [{ handle: 'rokafor', role: 'coauthor' }],
+    visibility: 'private',
+    summary: null,
+    source: ledger,
+  },
+  {
+    owner: 'mitsuno',
+    people: [],
+    visibility: 'public',
+    summary: 'Laws, and how many states they leave',
+    source: loops,
   },
 ];

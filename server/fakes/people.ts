@@ -43,3 +43,6 @@ export const inventedPeople: readonly [InventedPerson, ...InventedPerson[]] = [
     part: 'steward of this installation',
   },
 ];
+
+/** The address of the one who runs the invented institute's installation. */
+export const inventedSteward = 'y.sandoval@marrowfield.example';

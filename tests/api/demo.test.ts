@@ -24,7 +24,13 @@ describe('the demonstration', () => {
         [ring, 'referee'],
       ]),
     );
-    expect(await titles('mitsuno')).toEqual([[magnet, 'referee']]);
+    expect(await titles('mitsuno')).toEqual(expect.arrayContaining([[magnet, 'referee']]));
+    expect((await (await person(here, 'ysandoval')).ask('getMe')).may).toContain('steward');
+    const written = await here.database.pool.query<{ notebooks: number; drafts: number }>(
+      `select count(*)::int as notebooks, (count(*) filter (where not exists
+        (select 1 from editions where notebook = notebooks.id)))::int as drafts from notebooks`,
+    );
+    expect(written.rows).toEqual([{ notebooks: 6, drafts: 2 }]);
     expect(await titles('tvasara')).toEqual(
       expect.arrayContaining([
         [copy, 'owner'],
@@ -32,12 +38,13 @@ describe('the demonstration', () => {
       ]),
     );
     const { items } = await visitor(here).ask('listPublic');
-    expect(items.map((item) => [item.title, item.edition])).toEqual([[magnet, 2]]);
+    expect(items.map((item) => [item.title, item.edition])).toContainEqual([magnet, 2]);
+    const shown = items.find((item) => item.title === magnet);
 
     const owner = await person(here, 'rokafor');
-    await owner.ask('deleteNotebook', { params: { notebook: items[0]?.id ?? '' } });
+    await owner.ask('deleteNotebook', { params: { notebook: shown?.id ?? '' } });
     await writeDemo(settings);
-    expect((await visitor(here).ask('listPublic')).items).toEqual([]);
+    expect((await visitor(here).ask('listPublic')).items.map((item) => item.title)).not.toContain(magnet);
   });
 
   it('when no stand-in is on, then nothing is written', async () => {
@@ -47,13 +54,14 @@ describe('the demonstration', () => {
     expect(rows).toEqual([]);
   });
 
-  it.each(inventedNotebooks.map((notebook) => [notebook.summary, notebook] as const))(
+  it.each(inventedNotebooks.map((notebook) => [notebook.source.split('\n')[0], notebook] as const))(
     'when the engine reads “%s”, then it finds no problem, and refutes what the text calls wrong and nothing else',
     (_, { source, then }) => {
       const entries = [...notebookFromText(source).entries, ...(then?.add ?? [])];
       const report = newDerivation().derive(joinEntries(entries).text);
       expect(report.problems).toEqual([]);
-      expect(report.claims.length).toBeGreaterThan(4);
+      expect(report.claims.length).toBeGreaterThan(2);
+      expect(report.claims.filter((claim) => claim.grade === 'open')).toEqual([]);
       const refuted = report.claims.filter((claim) => claim.grade === 'refuted').map((claim) => claim.subject);
       expect(refuted).toEqual(source.includes('hasty') ? ['hasty'] : []);
     },
