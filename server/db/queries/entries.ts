@@ -95,7 +95,9 @@ export async function insertEntries(
   if (fields.length === 0) return;
   await db
     .insert(entries)
-    .values(fields.map(({ kind, text }, at) => ({ kind, text, notebook, changedBy: person, position: (at + 1) * gap })));
+    .values(
+      fields.map(({ kind, text }, at) => ({ kind, text, notebook, changedBy: person, position: (at + 1) * gap })),
+    );
 }
 
 /** One entry at a position that positionBefore gave. An id that is taken inserts nothing. Returns the id. */
