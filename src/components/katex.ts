@@ -1,4 +1,5 @@
 import katex from 'katex/dist/katex.mjs';
+import { counted } from './turns.ts';
 import type { KatexOptions, TrustContext } from 'katex';
 
 /**
@@ -17,20 +18,28 @@ const trust = (context: TrustContext): boolean =>
 const kept = new Map<string, string>();
 const most = 4000;
 
+const keyOf = (tex: string, options: KatexOptions): string =>
+  `${options.displayMode ? 'd' : 'i'}${options.throwOnError ? 't' : 'f'}${tex}`;
+
+/** Whether a formula in a line of text is known already, so that setting it costs nothing. */
+export const isSet = (tex: string): boolean => kept.has(keyOf(tex, { throwOnError: true }));
+
 /** HTML with MathML beside it. Throws KaTeX's ParseError when `throwOnError` and the TeX is not well formed. */
 export function renderToString(tex: string, options: KatexOptions = {}): string {
-  const key = `${options.displayMode ? 'd' : 'i'}${options.throwOnError ? 't' : 'f'}${tex}`;
+  const key = keyOf(tex, options);
   const known = kept.get(key);
   if (known !== undefined) return known;
   // A copy of the macros: \gdef in one formula must not reach the next.
-  const html = katex.renderToString(tex, {
-    ...options,
-    macros: { ...macros },
-    trust,
-    strict: 'ignore',
-    maxSize: 20,
-    maxExpand: 500,
-  });
+  const html = counted(() =>
+    katex.renderToString(tex, {
+      ...options,
+      macros: { ...macros },
+      trust,
+      strict: 'ignore',
+      maxSize: 20,
+      maxExpand: 500,
+    }),
+  );
   if (kept.size >= most) kept.clear();
   kept.set(key, html);
   return html;
