@@ -25,6 +25,8 @@ interface Props {
   /** Above the key in the right margin. */
   readonly margin?: ReactNode;
   readonly foot: ReactNode;
+  /** Adds statements to the notebook, from the plate. */
+  readonly write?: ((text: string) => void) | undefined;
   readonly hand?: HandStore;
 }
 
@@ -77,7 +79,7 @@ export function Facing(props: Props) {
         </aside>
       </main>
       <Guard what="The plate could not be drawn." until={reading.answered}>
-        <Plate reading={reading} />
+        <Plate reading={reading} write={props.write} />
       </Guard>
     </HandContext>
   );

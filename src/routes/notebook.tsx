@@ -91,6 +91,7 @@ function Opened({ notebook, me }: { notebook: Notebook; me: string | null }) {
     const made = await changes.insert(kind, before);
     if (made !== null) desk.open({ entry: made, line: 0, column: 1 });
   };
+  const write = useWriting(notebook, (before) => changes.insert('statements', before), type);
   const { drafts } = saving;
   const settled = useSettled(drafts.size, flush);
   const remove = async (id: string) => {
@@ -144,6 +145,7 @@ function Opened({ notebook, me }: { notebook: Notebook; me: string | null }) {
       writing={desk.writing}
       source={desk.source}
       edits={edits}
+      write={may ? write : undefined}
       heldBy={heldBy}
       head={<Head notebook={notebook} saving={may ? savingInWords(saving.drafts) : null} />}
       margin={
@@ -184,6 +186,26 @@ function Opened({ notebook, me }: { notebook: Notebook; me: string | null }) {
       }
     />
   );
+}
+
+/** Writes a text into a new entry at the end: the entry is made first, and the text typed once the notebook has it. */
+function useWriting(
+  notebook: Notebook,
+  insert: (before: null) => Promise<string | null>,
+  type: (entry: Notebook['entries'][number], text: string) => void,
+): (text: string) => void {
+  const [made, setMade] = useState<{ readonly id: string; readonly text: string } | null>(null);
+  const typed = useRef<string | null>(null);
+  const entry = made && notebook.entries.find((one) => one.id === made.id);
+  useEffect(() => {
+    if (!entry || !made || typed.current === made.id) return;
+    typed.current = made.id;
+    type(entry, made.text);
+  }, [entry, made, type]);
+  return (text) =>
+    void insert(null).then((id) => {
+      if (id !== null) setMade({ id, text });
+    });
 }
 
 /** The time, to ten seconds: holds run out without anyone saying so. */

@@ -41,7 +41,7 @@ export function classOf(family: LatticeFamily, cell: string): { kind: CellKind; 
   return family[kind][index] ? { kind, index } : undefined;
 }
 
-function sitesOf(family: LatticeFamily, orbit: Orbit): readonly Site[] {
+export function sitesOf(family: LatticeFamily, orbit: Orbit): readonly Site[] {
   return orbit.flatMap((one) => {
     const found = classOf(family, one.cell);
     return found ? [{ ...found, species: one.species, offset: one.offset, pauli: one.pauli }] : [];
@@ -110,25 +110,30 @@ function find<T>(slices: readonly Slice[], pick: (slice: Slice) => T | undefined
 
 export interface PlateSide {
   readonly answered: Answered | undefined;
-  /** Classes of cells that carry a spin on this page. */
-  readonly carriers: readonly { readonly kind: CellKind; readonly index: number }[];
+  /** Classes of cells that carry a spin on this page, with the species that stands there. */
+  readonly carriers: readonly { readonly species: string; readonly kind: CellKind; readonly index: number }[];
 }
 
-const letters: Readonly<Record<CellKind, string>> = {
+const cellWords: Readonly<Record<CellKind, string>> = {
   vertices: 'vertex',
   links: 'link',
   plaquettes: 'plaquette',
   cubes: 'cube',
 };
 
+/** "link 1 (0, −1)": one cell, as a reader is told of it. */
+export function cellInWords(family: LatticeFamily, site: Pick<Site, 'kind' | 'index' | 'offset'>): string {
+  const classes = family[site.kind];
+  const label = classes.length > 1 ? ` ${classes[site.index]?.labels[0] ?? String(site.index + 1)}` : '';
+  return `${cellWords[site.kind]}${label} (${site.offset.join(', ').replace(/-/g, '−')})`;
+}
+
 /** The same as the drawing, in words: "Z of s at vertex (0, 0), Z of s at vertex (1, 0)". */
 export function supportInWords(family: LatticeFamily, supports: readonly Support[]): string {
   const strings = supports.map((support) => {
-    const sites = support.sites.map((site) => {
-      const classes = family[site.kind];
-      const label = classes.length > 1 ? ` ${classes[site.index]?.labels[0] ?? String(site.index + 1)}` : '';
-      return `${site.pauli.toUpperCase()} of ${site.species} at ${letters[site.kind]}${label} (${site.offset.join(', ').replace(/-/g, '−')})`;
-    });
+    const sites = support.sites.map(
+      (site) => `${site.pauli.toUpperCase()} of ${site.species} at ${cellInWords(family, site)}`,
+    );
     const repeated = support.repeats.flatMap((step, d) => (step > 0 ? [String(d + 1)] : []));
     const along = repeated.length > 0 ? `, repeated along direction ${repeated.join(' and ')}` : '';
     return `${sites.join(', ')}${along}`;
@@ -144,16 +149,16 @@ export function carriersOf(
   language: 'spin' | 'gauge',
 ): PlateSide['carriers'] {
   const named = slices.flatMap((slice) => slice.models.filter((m) => m.value.language === language));
-  const species = new Set(named.flatMap((m) => m.value.species));
-  const wanted = species.size > 0 ? [...species] : [];
-  const cells = new Set(wanted.map((name) => lattice.species[name]).filter((cell) => cell !== undefined));
-  return [...cells].flatMap((cell) => {
+  const wanted = new Set(named.flatMap((m) => m.value.species));
+  return [...wanted].flatMap((species) => {
+    const cell = lattice.species[species];
+    if (cell === undefined) return [];
     if (!cell.includes('.')) {
       const kind = kinds.find((name) => name === cell);
-      return kind ? family[kind].map((_, index) => ({ kind, index })) : [];
+      return kind ? family[kind].map((_, index) => ({ species, kind, index })) : [];
     }
     const found = classOf(family, cell);
-    return found ? [found] : [];
+    return found ? [{ species, ...found }] : [];
   });
 }
 
@@ -188,7 +193,7 @@ function facing(family: LatticeFamily, from: Support | undefined, supports: read
   return best ? [best.support] : supports;
 }
 
-function shifts(dimension: number): readonly (readonly number[])[] {
+export function shifts(dimension: number): readonly (readonly number[])[] {
   // Nearest shifts first, so that of equals the smallest wins.
   const range = Array.from({ length: 2 * reach + 1 }, (_, k) => (k % 2 === 0 ? -k / 2 : (k + 1) / 2));
   let all: readonly (readonly number[])[] = [[]];
