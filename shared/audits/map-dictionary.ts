@@ -6,6 +6,7 @@ import type { Lattice, Size } from '../lattice/cells.ts';
 import type { Context } from '../maps/context.ts';
 import { keptCommutation, type CommutationBreak, type KeptCommutation } from '../maps/dictionary/commutation.ts';
 import { isExtended, translateExtended } from '../maps/dictionary/decompose.ts';
+import { cutTerms } from '../maps/dictionary/dictionary.ts';
 import type { DictionaryDeclaration } from '../maps/dictionary/declaration.ts';
 import { localRelations, type LocalRelations } from '../maps/dictionary/local.ts';
 import { boundaries, boundaryWords } from '../maps/dictionary/boundaries.ts';
@@ -258,9 +259,19 @@ export function dictionaryFindings(
   return [
     first,
     ...localFinding(value.name, local, figures),
-    { ...holds, cautions: [...(holds.cautions ?? []), ...tilted] },
+    { ...holds, cautions: [...(holds.cautions ?? []), ...tilted, ...cutCautions(value, declaration, context)] },
     ...boundaryFinding(value.name, declaration, context, { main, declared, figures }),
   ];
+}
+
+/** What an open edge cuts of the models that a dictionary was applied to. */
+function cutCautions(value: MapValue, declaration: DictionaryDeclaration, context: Context): string[] {
+  return [...context.values.all.values()].flatMap((other) => {
+    const origin =
+      other.what === 'model' && other.image?.map === value.name ? context.values.find(other.image.of) : undefined;
+    if (origin?.what !== 'model') return [];
+    return cutTerms(declaration, origin.operator, context).map((words) => `${origin.name}: ${words}.`);
+  });
 }
 
 /** Which boundary of one side answers which sector of the other; nothing where no seam fits or a limit ends the search. */

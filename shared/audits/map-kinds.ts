@@ -2,7 +2,8 @@ import { Coefficient } from '../algebra/numbers/coefficient.ts';
 import type { Operator } from '../algebra/pauli/types.ts';
 import type { AllSizes } from '../algebra/f2/all-sizes.ts';
 import type { DictionaryRule, LawValue, MapValue, Values } from '../language/values.ts';
-import { newBudget } from '../limits.ts';
+import { BudgetSpent, newBudget } from '../limits.ts';
+import { flatChoices } from '../maps/flat-choices.ts';
 import type { Lattice, Size } from '../lattice/cells.ts';
 import { offeredFluxes } from '../maps/gauging.ts';
 import { independentStabilizers, isometryOf } from '../maps/states/isometry.ts';
@@ -129,8 +130,60 @@ export function gaugeFindings(
         ],
       }
     : openFinding(`images under ${value.name} and ${gauss.name}`, 'an image does not commute with the Gauss law');
-  return [law, ...own];
+  return [law, ...choiceFinding(value, declaration, values, own[0]?.figures ?? {}), ...own];
 }
+
+/** Terms of several links of the models that a gauging was applied to, with the choice of path that was made. */
+function longTerms(value: MapValue, values: Values): string[] {
+  const budget = newBudget();
+  return [...values.all.values()].flatMap((other) => {
+    const origin = other.what === 'model' && other.image?.map === value.name ? values.find(other.image.of) : undefined;
+    return origin?.what === 'model' ? value.map.cautions(origin.operator, budget) : [];
+  });
+}
+
+/** That any two choices of path for a term of several links are equal where the field is flat; nothing where there is no choice. */
+function choiceFinding(
+  value: MapValue,
+  { gauge }: Declared<'gauge'>,
+  values: Values,
+  figures: Readonly<Record<string, unknown>>,
+): Finding[] {
+  const { lattice } = values;
+  if (!lattice || gauge.classes.length < lattice.family.links.length) return [];
+  try {
+    const { cycles, proofs } = flatChoices(lattice.family, newBudget(flatOperations));
+    if (cycles === 0 || proofs.length === 0) return [];
+    const long = [...new Set(longTerms(value, values))];
+    const words = `any two choices of links that join the charges of a term under ${value.name} differ by fluxes of ${gauge.name}`;
+    if (proofs.length < cycles)
+      return [
+        openFinding(
+          words,
+          'some closed paths of links are no product of rims: choices that differ by them differ where the field is flat too',
+          { ...figures, long },
+        ),
+      ];
+    return [
+      {
+        evidence: { kind: 'all sizes', proof: proofs },
+        statement: `${words}, on ${sizesWords(proofs)}: they are equal where every flux is +1`,
+        figures: { ...figures, long },
+        cautions: [
+          'Paths that differ by a turn around the lattice differ by its holonomy besides.',
+          ...long.map((one) => `${one}.`),
+        ],
+        sources: ['Closed paths of links as kernel of the boundary map over Laurent polynomials: derived here.'],
+      },
+    ];
+  } catch (error) {
+    if (error instanceof BudgetSpent) return [];
+    throw error;
+  }
+}
+
+/** Operations that the algebra of closed paths may take. */
+const flatOperations = 3_000_000;
 
 /** Proofs that all images commute with the law; undefined where one does not. */
 function lawProofs(rules: readonly DictionaryRule[], law: LawValue): AllSizes[] | undefined {

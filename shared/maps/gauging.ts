@@ -192,7 +192,7 @@ export function gaugingMap(declaration: GaugingDeclaration, context: Context): O
       });
       return long.map(
         (f) =>
-          `${stringPhrase({ phase: 0, factors: f.string.factors }, family)} is joined along a shortest path of links; other paths differ by products of fluxes`,
+          `${stringPhrase({ phase: 0, factors: f.string.factors }, family)} is joined along a shortest path of links${family.plaquettes.length > 0 ? '; other paths differ by products of fluxes' : ''}`,
       );
     },
   };

@@ -157,6 +157,26 @@ export function dictionaryMap(declaration: DictionaryDeclaration, context: Conte
   };
 }
 
+/**
+ * Terms that an open edge cuts and that are no left side of their own: their image is the bulk's, cut at the edge in its turn, which need not
+ * be the image of what the edge leaves of them. In words, one for each.
+ */
+export function cutTerms({ rules, from }: DictionaryDeclaration, operator: Operator, context: Context): string[] {
+  if (!context.open) return [];
+  return operator.families.flatMap((family) => {
+    const own: LocalString = { phase: 0, factors: family.string.factors.filter((f) => from.includes(f.species)) };
+    const whole = refined(
+      family.steps,
+      rules.map((rule) => rule.steps),
+    );
+    return own.factors.some((f) => f.optional) && !exactUse(own, whole, rules)
+      ? [
+          `${stringPhrase(own, context.family)} is cut where it stands at an open edge; its image there is that of the whole term, cut likewise`,
+        ]
+      : [];
+  });
+}
+
 function times(a: LocalString | Extended, b: LocalString | Extended): LocalString | Extended {
   if (!isExtended(a) && !isExtended(b)) return multiplyStrings(a, b);
   const wide = (s: LocalString | Extended): Extended =>

@@ -51,6 +51,63 @@ describe.each([
   });
 });
 
+describe('choices of path in minimal coupling', () => {
+  const source = (
+    lattice: string,
+    pairs: number,
+  ): string => `${head(lattice)}model far = sum(t: pairs(${String(pairs)})) s^z[t.a] s^z[t.b]
+model image = minimal(far)
+audit map minimal
+`;
+
+  it.each([
+    'square torus 3 x 3',
+    'triangular torus 3 x 3',
+    'honeycomb torus 2 x 2',
+    'kagome torus 2 x 2',
+    'cubic torus 2 x 2 x 2',
+  ])('are equal where the field is flat, proved on %s', (lattice) => {
+    const found = claimsOf(source(lattice, 2)).filter((claim) => 'long' in claim.figures);
+    expect(found.map((claim) => claim.grade)).toEqual(['proved']);
+    expect(found[0]?.statement).toContain('equal where every flux is +1');
+    expect(found[0]?.figures['long']).not.toEqual([]);
+  });
+
+  it('are none on a chain, and are not said to be equal where a hole has no plaquette', () => {
+    expect(claimsOf(source('chain torus 6', 2)).some((claim) => 'long' in claim.figures)).toBe(false);
+    const ladder = `lattice custom
+  cell (1, 0), (0, 1)
+  vertex A at (0, 0)
+  vertex B at (1/2, 1/2)
+  link A -- B
+  link B -- A + (1, 0)
+  link B -- A + (0, 1)
+  link B -- A + (1, 1)
+  plaquette low: A, B, A + (1, 0), B + (0, -1)
+  size 3 x 3 torus
+`;
+    const claims = claimsOf(source('x', 2).replace('lattice x\n', ladder));
+    const choice = claims.find((claim) => 'long' in claim.figures);
+    expect(choice?.grade).toBe('open');
+  });
+});
+
+describe('a dictionary on an open lattice', () => {
+  it('says which terms the edge cuts', () => {
+    const claims = claimsOf(`lattice square open 4 x 4
+spins s on vertices
+spins g on links
+map bonds from s to g
+  s^z[l.a] s^z[l.b] => g^z[l]                   for l: links
+  s^x[v]            => prod(l: star(v)) g^x[l]  for v: vertices
+model round = sum(v: vertices) s^x[v] prod(u: neighbours(v)) s^x[u]
+model image = bonds(round)
+audit map bonds
+`);
+    expect(claims.flatMap((claim) => claim.cautions).join(' ')).toContain('is cut where it stands at an open edge');
+  });
+});
+
 describe('boundaries and sectors that answer one another', () => {
   const ring = (extent: number): string => `lattice chain torus ${String(extent)}
 spins s on vertices
