@@ -22,7 +22,7 @@ import { filters, uploadSchema } from './reviews.ts';
 import { grantedRoleSchema, visibilitySchema } from './rights.ts';
 import { editionNumber, ofEdition, ofEntry, ofLink, ofNotebook, row, search, silence } from './row.ts';
 
-export { type Endpoint, type Method, writeHeader } from './row.ts';
+export { writeHeader } from './row.ts';
 
 /** The table. Client calls, server routes and the matrix test of rights all walk it. */
 export const endpoints = {

@@ -5,7 +5,7 @@ import type { Action } from './rights.ts';
 /** Header that every request other than GET carries, with any value: a foreign page cannot add it without asking. */
 export const writeHeader = 'x-gaugewright';
 
-export type Method = 'GET' | 'POST' | 'PUT' | 'PATCH' | 'DELETE';
+type Method = 'GET' | 'POST' | 'PUT' | 'PATCH' | 'DELETE';
 
 /**
  * One thing that the server can be asked. `of` says whose rights decide the action: the installation's, those on the notebook
