@@ -18,6 +18,8 @@ export interface DerivationOptions {
   readonly limit?: Means['limit'];
   /** What of a source is asked; all of it where nothing is said. */
   readonly choice?: Choice;
+  /** Asked before each question of the first report: once true, what is left of them comes after it, like the numbers. */
+  readonly hurried?: () => boolean;
   /** True when there is no time left: what is not answered by then stands open. */
   readonly late?: () => boolean;
 }
@@ -105,9 +107,13 @@ export function newDerivation(options: DerivationOptions = {}): Derivation {
     const unknown = questions.filter((question) => known(question) === undefined);
     const now = unknown.filter((question) => !numerical.has(question.audit));
     const later = unknown.filter((question) => numerical.has(question.audit));
-    for (const question of now) yield* answer(question);
-    for (const [k, question] of later.entries()) {
-      yield { kind: 'report', report: report(program, questions), waiting: later.length - k };
+    const putOff: Question[] = [];
+    for (const question of now)
+      if (options.hurried?.() === true) putOff.push(question);
+      else yield* answer(question);
+    const rest = [...putOff, ...later];
+    for (const [k, question] of rest.entries()) {
+      yield { kind: 'report', report: report(program, questions), waiting: rest.length - k };
       if (known(question) === undefined) yield* answer(question);
     }
     return report(program, questions);

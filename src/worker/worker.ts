@@ -1,9 +1,9 @@
 import { newAssistant } from '../../shared/derivation/assist.ts';
-import { type Derivation, newDerivation, type Step } from '../../shared/derivation/derive.ts';
+import { type Answers, type Derivation, newDerivation, type Step } from '../../shared/derivation/derive.ts';
 import kernelAddress from '../../shared/spectra/kernel/kernel.wasm?url';
 import { wasmKernel } from '../../shared/spectra/kernel/wasm.ts';
 import type { Report } from '../../shared/contracts/report.ts';
-import { type Answer, type Ask, type AskHelp, type HelpAnswer, protocol } from './messages.ts';
+import { type Answer, type Ask, type AskHelp, type HelpAnswer, type Learn, protocol } from './messages.ts';
 
 /**
  * The engine's home in the browser. A text is answered in slices: at once with all that is symbolic or known from before;
@@ -17,12 +17,19 @@ const pause = 300;
 /** Longest stretch of work before looking whether a newer text has come, in milliseconds. */
 const slice = 12;
 
+/** The first report stands by then, with whatever is decided; the rest follows, in milliseconds. */
+const firstWithin = 600;
+
 const scope = self as unknown as {
-  onmessage: ((event: MessageEvent<Ask | AskHelp>) => void) | null;
+  onmessage: ((event: MessageEvent<Ask | AskHelp | Learn>) => void) | null;
   postMessage: (answer: Answer | HelpAnswer) => void;
 };
 
 let newest: Ask | undefined;
+let begun = 0;
+const hurried = (): boolean => performance.now() - begun > firstWithin;
+/** Answers that came from the server since the last text was begun. */
+let told: Answers = {};
 let working = false;
 
 /** Waits until messages that have arrived are taken in; timers would be held back to 4 ms. */
@@ -37,10 +44,10 @@ const rest = (milliseconds: number): Promise<void> => new Promise((resolve) => s
 async function engine(): Promise<Derivation> {
   try {
     const answer = await fetch(kernelAddress);
-    return newDerivation({ limit, kernel: await wasmKernel(await answer.arrayBuffer()) });
+    return newDerivation({ limit, hurried, kernel: await wasmKernel(await answer.arrayBuffer()) });
   } catch {
     // Without WebAssembly the plain kernel does the same, more slowly.
-    return newDerivation({ limit });
+    return newDerivation({ limit, hurried });
   }
 }
 const ready = engine();
@@ -61,6 +68,11 @@ scope.onmessage = ({ data }) => {
     scope.postMessage(help(data));
     return;
   }
+  if (data.kind === 'learn') {
+    // The server's engine is of this page's build, or the names of its questions would be others.
+    told = { ...told, ...(data.answers as Answers) };
+    return;
+  }
   newest = data;
   if (!working) void work();
 };
@@ -71,6 +83,8 @@ async function work(): Promise<void> {
   const derivation = await ready;
   for (let ask = newest; ask; ask = newest) {
     newest = undefined;
+    derivation.learn(told);
+    told = {};
     try {
       await answer(derivation, ask);
     } catch (error) {
@@ -83,6 +97,7 @@ async function work(): Promise<void> {
 
 async function answer(derivation: Derivation, { version, text, protocol: theirs }: Ask): Promise<void> {
   let part = 0;
+  begun = performance.now();
   const say = (report: Report, waiting: number) => {
     scope.postMessage({ protocol, version, part, kind: 'report', report, waiting });
     part += 1;

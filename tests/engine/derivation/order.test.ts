@@ -24,3 +24,17 @@ describe('the order of sums', () => {
     expect(factors('first')).toEqual(['K', 'h', 'J']);
   });
 });
+
+describe('a derivation in a hurry', () => {
+  it('gives its first report before all is decided, and the same at the end', () => {
+    const audited = `${source}law G(p: plaquettes) = prod(l: rim(p)) g^z[l]\naudit commute image with G\naudit map bonds\n`;
+    const run = newDerivation({ hurried: () => true }).run(audited);
+    const first = run.next().value;
+    if (!('kind' in first) || first.kind !== 'report') throw new Error('no first report');
+    expect(first.report.models['image']?.groups.length).toBe(2);
+    expect(new Set(first.report.claims.map((claim) => claim.grade))).toEqual(new Set(['open']));
+    let step = run.next();
+    while (!step.done) step = run.next();
+    expect(step.value).toEqual(newDerivation().derive(audited));
+  });
+});
