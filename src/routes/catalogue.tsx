@@ -1,14 +1,18 @@
-import { useInfiniteQuery } from '@tanstack/react-query';
+import { useInfiniteQuery, useQuery } from '@tanstack/react-query';
 import { useDeferredValue, useId, useState } from 'react';
-import { Link } from 'react-router-dom';
-import { publicQuery } from '../api/queries.ts';
+import { Link, useNavigate } from 'react-router-dom';
+import { meQuery, publicQuery } from '../api/queries.ts';
 import { Empty, Failed, Waiting } from '../components/faces.tsx';
+import { CopyWorked } from '../features/catalogue/copy-worked.tsx';
+import { WorkedList } from '../features/catalogue/worked-list.tsx';
 import { Ledger } from '../features/shelf/ledger.tsx';
 import { paths } from './paths.ts';
 import { Sheet } from './sheet.tsx';
 
-/** What anyone may read here, to learn from and to fork. */
+/** Worked dualities from the literature, to copy; and what people here made public, to learn from and to fork. */
 export function CataloguePage() {
+  const me = useQuery(meQuery());
+  const navigate = useNavigate();
   const [typed, setTyped] = useState('');
   const q = useDeferredValue(typed.trim());
   const list = useInfiniteQuery(publicQuery(q));
@@ -17,10 +21,28 @@ export function CataloguePage() {
   return (
     <Sheet title="Catalogue" narrow>
       <h1 className="pt-8">Catalogue</h1>
-      <p className="measure mt-3">Derivations that anyone may read, export and fork.</p>
+      <p className="measure mt-3">
+        Worked dualities from the literature, each with its published source. All of their claims are computed while you
+        read. Copy one into a notebook of your own and change what you like.
+      </p>
+      <WorkedList
+        link={(name, title) => <Link to={paths.worked.to(name)}>{title}</Link>}
+        acts={({ name, title }) => (
+          <CopyWorked
+            name={name}
+            title={title}
+            open={(notebook) => void navigate(paths.notebook.to(notebook))}
+            signIn={
+              me.data?.person ? null : <Link to={paths.signIn.to(paths.worked.to(name))}>sign in to copy it</Link>
+            }
+          />
+        )}
+      />
+      <h2 className="mt-12">Public notebooks</h2>
+      <p className="measure mt-2">Derivations that people made public: anyone may read, export and fork them.</p>
       <p className="mt-6">
         <label className="label" htmlFor={field}>
-          Find in the catalogue
+          Find among public notebooks
         </label>
         <input
           id={field}
@@ -30,9 +52,13 @@ export function CataloguePage() {
           onChange={(event) => setTyped(event.target.value)}
         />
       </p>
-      {list.isPending && <Waiting what="Fetching the catalogue …" />}
+      {list.isPending && <Waiting what="Fetching the public notebooks …" />}
       {list.isError && (
-        <Failed what="The catalogue could not be fetched." error={list.error} retry={() => void list.refetch()} />
+        <Failed
+          what="The public notebooks could not be fetched."
+          error={list.error}
+          retry={() => void list.refetch()}
+        />
       )}
       {list.isSuccess && notebooks.length === 0 && (
         <Empty title={q === '' ? 'Nothing public yet' : 'Nothing has these words'}>

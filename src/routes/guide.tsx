@@ -2,6 +2,7 @@ import { useId, useState } from 'react';
 import { Link } from 'react-router-dom';
 import { type HelpRecord, reference } from '../../shared/language/reference.ts';
 import { GradeMark, gradeWords, type GradeName, PauliMark } from '../components/marks.tsx';
+import { GuideContents } from '../features/guide/contents.tsx';
 import { paths } from './paths.ts';
 import { Sheet } from './sheet.tsx';
 
@@ -18,6 +19,10 @@ export function GuidePage() {
           language on the right, a term facing its image; the gutter between them says whether the step holds. The{' '}
           <Link to={paths.try.to()}>example</Link> shows all of it and can be changed.
         </p>
+        <h2>Chapters</h2>
+      </div>
+      <GuideContents link={(name, title) => <Link to={paths.chapter.to(name)}>{title}</Link>} />
+      <div className="prose measure mt-8">
         <h2>Grades of evidence</h2>
       </div>
       <dl className="mt-3 space-y-2">

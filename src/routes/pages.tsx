@@ -25,6 +25,16 @@ export const pages: RouteObject[] = [
       { path: paths.shared.pattern, element: <SharedPage />, errorElement: <PageFailed /> },
       { path: paths.catalogue.pattern, element: <CataloguePage />, errorElement: <PageFailed /> },
       { path: paths.guide.pattern, element: <GuidePage />, errorElement: <PageFailed /> },
+      {
+        path: paths.worked.pattern,
+        lazy: async () => ({ Component: (await import('./worked.tsx')).WorkedPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.chapter.pattern,
+        lazy: async () => ({ Component: (await import('./chapter.tsx')).ChapterPage }),
+        errorElement: <PageFailed />,
+      },
       { path: paths.try.pattern, element: <TryPage />, errorElement: <PageFailed /> },
       { path: '*', element: <NotFoundPage /> },
     ],

@@ -13,6 +13,8 @@ export const paths = {
   },
   shared: { pattern: '/shared/:token', to: (token: string) => `/shared/${encodeURIComponent(token)}` },
   catalogue: { pattern: '/catalogue', to: () => '/catalogue' },
+  worked: { pattern: '/catalogue/:worked', to: (name: string) => `/catalogue/${encodeURIComponent(name)}` },
   guide: { pattern: '/guide', to: () => '/guide' },
+  chapter: { pattern: '/guide/:chapter', to: (chapter: string) => `/guide/${encodeURIComponent(chapter)}` },
   try: { pattern: '/try', to: () => '/try' },
 } as const;

@@ -4,6 +4,7 @@ import { Link, Navigate, useNavigate } from 'react-router-dom';
 import { call } from '../api/client.ts';
 import { keepNotebook, meQuery, rereadLists, shelfQuery } from '../api/queries.ts';
 import { Empty, Failed, Waiting } from '../components/faces.tsx';
+import { BeginWith } from '../features/shelf/begin-with.tsx';
 import { Ledger } from '../features/shelf/ledger.tsx';
 import { NewNotebook } from '../features/shelf/new-notebook.tsx';
 import { paths } from './paths.ts';
@@ -24,6 +25,7 @@ export function ShelfPage() {
     <Sheet title="Shelf" narrow>
       <h1 className="pt-8">Shelf</h1>
       <NewNotebook create={open.create} take={open.take} />
+      <BeginWith take={(source) => open.take(source, '')} />
       {!bare && (
         <p className="mt-8">
           <label className="label" htmlFor={field}>
@@ -78,8 +80,9 @@ function FirstVisit() {
       </p>
       <p>
         Spin language is set on the left page, gauge language on the right, term against term; every claim carries the
-        grade of its evidence. The <Link to={paths.guide.to()}>guide</Link> has the whole language, and the{' '}
-        <Link to={paths.try.to()}>example</Link> can be changed and kept.
+        grade of its evidence. The quickest way in is one of the texts above, or a worked duality from the{' '}
+        <Link to={paths.catalogue.to()}>catalogue</Link>: copy it and change a sign. The{' '}
+        <Link to={paths.guide.to()}>guide</Link> has the whole language.
       </p>
     </Empty>
   );
