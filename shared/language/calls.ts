@@ -206,10 +206,14 @@ function mapped(value: MapValue, node: CallNode, scene: Scene): Operator {
   return total(parts, scene);
 }
 
-/** True if it is one Pauli operator on each spin it touches, all over the lattice. */
+/** True if it is one Pauli operator on each spin it touches, all over the lattice or all over a sublattice of it. */
 export const isOnSite = (extended: Extended): boolean =>
   extended.parts.length > 0 &&
-  extended.parts.every((p) => p.string.factors.length === 1 && p.steps.every((m) => m === 1));
+  extended.parts.every((p) => p.string.factors.length === 1 && p.steps.every((m) => m > 0));
+
+/** The same, with every translation of the lattice a translation of it: only this can be a seam. */
+const isUniform = (extended: Extended): boolean =>
+  isOnSite(extended) && extended.parts.every((p) => p.steps.every((m) => m === 1));
 
 function twisted(node: CallNode, scene: Scene): Operator {
   const [modelNode, symmetryNode, directionNode] = node.args;
@@ -225,7 +229,7 @@ function twisted(node: CallNode, scene: Scene): Operator {
   const model = named(modelNode);
   if (model && model.what !== 'model' && model.what !== 'operator')
     return fail(say.wrongKind(whatIsIt[model.what] ?? model.what, 'a model'), modelNode);
-  if (!isOnSite(symmetry.extended)) return fail(say.onSite(symmetry.name), symmetryNode);
+  if (!isUniform(symmetry.extended)) return fail(say.onSite(symmetry.name), symmetryNode);
   const direction = integerArgument(directionNode, scene, 'A direction');
   if (direction < 1 || direction > scene.dimension)
     return fail(say.direction(String(direction), scene.dimension), directionNode);

@@ -56,10 +56,11 @@ function declared(
 ): Candidate[] {
   const own = (s: LocalString) => s.factors.length > 0 && s.factors.every((f) => species.includes(f.species));
   const out: Candidate[] = [];
-  for (const value of [
-    ...lawsOf(context.values).filter((law) => !context.values.all.has(law.name)),
-    ...context.values.all.values(),
-  ]) {
+  const laws = lawsOf(context.values).filter((law) => !context.values.all.has(law.name));
+  // a map's own laws before those of others
+  const isOwn = (law: { readonly name: string }): boolean => law.name.startsWith(`${context.name}.`);
+  const ordered = [...laws.filter(isOwn), ...laws.filter((law) => !isOwn(law))];
+  for (const value of [...ordered, ...context.values.all.values()]) {
     if (value.what === 'law' && value.families.every((f) => own(f.string) && cluster.admits(f.steps))) {
       const strings = value.families.flatMap((f) => wrapOrbit(table, cluster, f, budget));
       const [first] = value.families;

@@ -51,6 +51,48 @@ describe.each([
   });
 });
 
+describe('gauging symmetries of other kinds', () => {
+  it.each([
+    ['on one sublattice, by Z', 'prod(v: vertices where (v.x + v.y) % 2 == 0) s^z[v]'],
+    ['by Y', 'prod(v: vertices) s^y[v]'],
+    ['of two species at once', 'prod(v: vertices) s^x[v] t^z[v]'],
+    ['on every second row', 'prod(v: vertices where v.y % 2 == 0) s^x[v]'],
+  ])('%s', (_, symmetry) => {
+    const claims = claimsOf(`lattice square torus 4 x 4
+spins s on vertices
+spins t on vertices
+spins g on links
+symmetry sign = ${symmetry}
+map field = gauge sign with g on links
+audit map field
+`);
+    expect(claims.every((claim) => claim.grade === 'proved' || claim.grade === 'exact')).toBe(true);
+    expect(claims[0]?.statement).toContain('commutes with its Gauss law field.gauss');
+    expect(figure(claims, 'leftSectors')).toEqual(['sign = +1']);
+    expect(JSON.stringify(figure(claims, 'rightSectors'))).toContain('field.gauss = +1"');
+  });
+
+  it('two in a row: the duality of both together, with both Gauss laws', () => {
+    const claims = claimsOf(`lattice chain torus 4
+spins s on vertices
+spins t on vertices
+spins a on links
+spins b on links
+symmetry p = prod(v: vertices) s^x[v]
+symmetry q = prod(v: vertices) t^x[v]
+map first = gauge p with a on links
+map second = gauge q with b on links
+map both = first then second
+model pair = sum(l: links) s^z[l.a] s^z[l.b] + sum(l: links) t^z[l.a] t^z[l.b] + sum(v: vertices) s^x[v] t^x[v]
+model gauged = both(pair)
+audit map both
+audit commute gauged with both.gauss
+`);
+    expect(claims.every((claim) => claim.grade === 'proved' || claim.grade === 'exact')).toBe(true);
+    expect(claims.at(-1)?.figures).toMatchObject({ terms: 3, commuting: 3 });
+  });
+});
+
 describe('choices of path in minimal coupling', () => {
   const source = (
     lattice: string,
