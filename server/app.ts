@@ -5,6 +5,7 @@ import express, { type Express, type RequestHandler, Router } from 'express';
 import passport from 'passport';
 import type { Logger } from 'pino';
 import type { Database } from './db/connection.ts';
+import type { Pool } from './evaluation/pool.ts';
 import type { FakeGithub } from './fakes/github.ts';
 import type { FakeMail } from './fakes/mail.ts';
 import type { Live } from './live.ts';
@@ -21,6 +22,7 @@ import { liveRoutes } from './routes/live.ts';
 import { notebookRoutes } from './routes/notebooks.ts';
 import { openApiRoutes } from './routes/openapi.ts';
 import { peopleRoutes } from './routes/people.ts';
+import { reviewRoutes } from './routes/reviews.ts';
 import { type GithubAccess, signInRoutes } from './routes/sign-in.ts';
 import { stopMailPages } from './routes/stop-mail.ts';
 import type { Context, House, Questions } from './services/context.ts';
@@ -34,6 +36,8 @@ export interface Parts {
   readonly live: Live;
   readonly askForClaims: Context['askForClaims'];
   readonly questions: Questions;
+  /** A thread for what is answered at once. */
+  readonly quick: Pool;
   /** The stand-in for GitHub, where the settings name it. */
   readonly fakeGithub: FakeGithub | null;
   /** The same for mail. */
@@ -77,7 +81,16 @@ export function makeApp(parts: Parts): Express {
 }
 
 /** Everything that knows who asks: the rows of the table, and the sign-in. */
-function answers({ settings, database, live, askForClaims, questions, fakeGithub, house }: Parts): RequestHandler {
+function answers({
+  settings,
+  database,
+  live,
+  askForClaims,
+  questions,
+  quick,
+  fakeGithub,
+  house,
+}: Parts): RequestHandler {
   const context: Context = { database, askForClaims };
   const auth = new passport.Passport();
   const rate = rates(settings);
@@ -89,6 +102,7 @@ function answers({ settings, database, live, askForClaims, questions, fakeGithub
   entryRoutes(bind, context);
   editionRoutes(bind, context);
   jobRoutes(bind, { ...context, questions });
+  reviewRoutes(bind, { ...context, quick }, settings.publicUrl);
   liveRoutes(bind, live);
   openApiRoutes(bind);
   catalogueRoutes(bind);

@@ -18,7 +18,7 @@ export async function startWorker(
   const database = openDatabase(settings, trouble);
   try {
     const queue = await openQueue(database, queueOptions(settings, true), trouble);
-    const work = await takeWork(settings, database, queue);
+    const work = await takeWork(settings, database, queue, trouble);
     log.info('taking jobs');
     return {
       stop: async () => {

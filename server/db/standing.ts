@@ -26,7 +26,7 @@ export const visitor: Asker = { person: null, steward: false };
 
 export const onInstallation = (asker: Asker): Standing => ({ ...asker, on: null });
 
-/** Where someone stands on a notebook; null if there is no such notebook. One round trip. */
+/** Where someone stands on a notebook; null if there is no such notebook, or it lies in the bin. One round trip. */
 export async function standingOnNotebook(
   { db }: Asking,
   asker: Asker,
@@ -40,7 +40,7 @@ export async function standingOnNotebook(
     .select({ visibility: notebooks.visibility, role: memberships.role })
     .from(notebooks)
     .leftJoin(memberships, own)
-    .where(eq(notebooks.id, notebook));
+    .where(and(eq(notebooks.id, notebook), isNull(notebooks.deletedAt)));
   return row === undefined ? null : { ...asker, on: { notebook, ...row, linked: null } };
 }
 
@@ -51,7 +51,7 @@ export async function standingByLink({ db }: Asking, asker: Asker, token: string
     .from(links)
     .innerJoin(editions, eq(editions.id, links.edition))
     .innerJoin(notebooks, eq(notebooks.id, editions.notebook))
-    .where(and(eq(links.token, token), isNull(links.revokedAt)));
+    .where(and(eq(links.token, token), isNull(links.revokedAt), isNull(notebooks.deletedAt)));
   return row === undefined ? null : { ...asker, on: { ...row, role: null } };
 }
 

@@ -1,3 +1,4 @@
+import type { ClusterAnswer, OnCluster } from '../../shared/derivation/cluster.ts';
 import type { Answers } from '../../shared/derivation/derive.ts';
 import type { Asked, Choice, Finding } from '../../shared/derivation/asked.ts';
 import type { Report } from '../../shared/contracts/report.ts';
@@ -27,7 +28,9 @@ export type Task =
       readonly limit: Limit;
       readonly choice?: Choice;
       readonly from?: unknown;
-    };
+    }
+  /** A model or circuit of a source on a finite cluster. */
+  | { readonly kind: 'cluster'; readonly source: string; readonly asked: OnCluster };
 
 export interface ThreadProgress {
   readonly done: number;
@@ -41,6 +44,7 @@ export type Said =
   | { readonly report: Report; readonly found?: Answers }
   | { readonly asked: readonly Asked[] }
   | Answer
+  | { readonly cluster: ClusterAnswer }
   | { readonly failure: string };
 
 /** Findings on a question; null where the source does not ask it. `open`: why they leave something undecided. */
@@ -54,4 +58,5 @@ export interface Results {
   readonly derive: { readonly report: Report; readonly found?: Answers };
   readonly list: { readonly asked: readonly Asked[] };
   readonly answer: Answer;
+  readonly cluster: { readonly cluster: ClusterAnswer };
 }

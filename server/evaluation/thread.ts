@@ -1,6 +1,7 @@
 import { parentPort } from 'node:worker_threads';
 import { answerAsked, askedIn, openReason } from '../../shared/derivation/asked.ts';
 import { newDerivation } from '../../shared/derivation/derive.ts';
+import { onCluster } from '../../shared/derivation/cluster.ts';
 import { loadKernel } from './kernel.ts';
 import { type Said, speed, type Task, type ThreadProgress } from './task.ts';
 
@@ -27,6 +28,8 @@ async function answer(task: Task): Promise<Said> {
       derivation.learn(task.known ?? {});
       return { report: derivation.derive(task.source), found: derivation.found() };
     }
+    case 'cluster':
+      return { cluster: onCluster(task.source, task.asked) };
     case 'answer': {
       const means = { kernel: await loadKernel(), limit: task.limit, from: task.from };
       const run = answerAsked(task.source, task.question, means, task.choice);

@@ -130,6 +130,8 @@ function send(response: Response, { answer, status, form }: Form, value: unknown
   // Parsed, so that nothing leaves that the contract does not name.
   const parsed = answer.parse(value);
   if (status === 204) response.end();
-  else if (form === 'text') response.type('text/plain; charset=utf-8').send(parsed);
-  else response.json(parsed);
+  else if (form === 'text') {
+    if (response.get('Content-Type') === undefined) response.type('text/plain; charset=utf-8');
+    response.send(parsed);
+  } else response.json(parsed);
 }

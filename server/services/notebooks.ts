@@ -2,12 +2,14 @@ import { bounds } from '../../shared/contracts/common.ts';
 import type { Body, Query } from '../../shared/contracts/endpoints.ts';
 import type { Notebook, NotebookSummary } from '../../shared/contracts/notebooks.ts';
 import type { Visibility } from '../../shared/contracts/rights.ts';
-import { notebookToText, type PlainEntry, readAnyText } from '../../shared/notebook/text.ts';
+import { readUpload } from '../../shared/exports/upload.ts';
+import { notebookToText, type PlainEntry } from '../../shared/notebook/text.ts';
 import { announce } from '../db/announce.ts';
 import type { Asking, Transaction } from '../db/connection.ts';
 import type { Page } from '../db/page.ts';
-import { getContent } from '../db/queries/editions.ts';
+import { getReading } from '../db/queries/editions.ts';
 import { insertEntries, listEntries } from '../db/queries/entries.ts';
+import { getWorkingText, insertForkBase } from '../db/queries/forks.ts';
 import { countOwned, readLimits } from '../db/queries/limits.ts';
 import * as queries from '../db/queries/notebooks.ts';
 import { findAccount } from '../db/queries/people.ts';
@@ -77,49 +79,49 @@ export async function createNotebook(
   return database.transaction((tx) => make(tx, standing, { title, authors, entries, origin: null }));
 }
 
-/** A notebook of a `.gw` text: title and authors of its own, else those given or found. */
+/** A notebook of a file: title and authors of its own, else those given or found. Throws `bad-input` with the lines that are wrong. */
 export async function importNotebook(
   { database }: Context,
   standing: Standing,
-  { title, source }: Body<'importNotebook'>,
+  upload: Body<'importNotebook'>,
 ): Promise<Notebook> {
-  const read = readAnyText(source);
-  const authors = read.authors.length === 0 ? undefined : read.authors;
-  const chosen = cutTitle(read.title) ?? title ?? cutTitle(firstWords(read.entries)) ?? 'Imported notebook';
-  return database.transaction((tx) =>
-    make(tx, standing, { title: chosen, authors, entries: read.entries, origin: null }),
-  );
+  const { title, authors, entries, faults } = readUpload(upload);
+  const wrong = faults.filter((fault) => fault.severity === 'error');
+  if (wrong.length > 0) {
+    const places = wrong.map(({ line, column, message }) => ({ path: 'body.source', line, column, message }));
+    throw new Refusal('bad-input', `Line ${String(wrong[0]?.line)}: ${wrong[0]?.message ?? ''}`, { places });
+  }
+  const own = authors.length === 0 ? undefined : authors;
+  return database.transaction((tx) => make(tx, standing, { title, authors: own, entries, origin: null }));
 }
 
-const firstWords = (entries: readonly PlainEntry[]): string | null =>
-  entries
-    .find((entry) => entry.kind === 'prose')
-    ?.text.split('\n')
-    .find((line) => line.trim() !== '')
-    ?.replace(/^#+\s*/, '') ?? null;
-
-function cutTitle(text: string | null): string | null {
-  const line = text?.replace(/\s+/g, ' ').trim() ?? '';
-  if (line === '') return null;
-  const characters = Array.from(line);
-  return characters.length <= 200 ? line : `${characters.slice(0, 199).join('')}…`;
-}
-
-/** A copy of one's own: of the working text, or of one edition. */
+/** A copy of one's own, of the working text or of one edition; it remembers what it began with. */
 export async function forkNotebook(
   { database }: Context,
   standing: NotebookStanding,
   { edition = null, title }: { readonly edition?: number | null | undefined; readonly title?: string | undefined },
 ): Promise<Notebook> {
   return database.transaction(async (tx) => {
-    const copied = edition === null ? await workingText(tx, standing) : await getContent(tx, standing, edition);
     const { notebook } = standing.on;
-    return make(
+    const copied = edition === null ? await getWorkingText(tx, standing) : await editionText(tx, standing, edition);
+    const ownTitle = title ?? copied.title;
+    const made = await make(
       tx,
       { ...standing, on: null },
-      { ...copied, title: title ?? copied.title, origin: { notebook, edition } },
+      { ...copied, title: ownTitle, origin: { notebook, edition } },
     );
+    const base = copied.entries.map(({ id, kind, text }, at) => ({
+      ...{ origin: id, own: made.entries[at]?.id ?? '', kind, text },
+    }));
+    await insertForkBase(tx, made.id, { title: copied.title, ownTitle, entries: base });
+    return made;
   });
+}
+
+async function editionText(asking: Asking, standing: NotebookStanding, number: number) {
+  const { content, entryIds } = await getReading(asking, standing, number);
+  const { title, authors, entries } = content;
+  return { title, authors, entries: entries.map((entry, at) => ({ ...entry, id: entryIds[at] ?? null })) };
 }
 
 async function workingText(
@@ -184,10 +186,10 @@ export async function changeNotebook(
   });
 }
 
-/** Deletes a notebook with its editions and links. Forks of it stay. */
+/** Puts a notebook into its owner's bin, with its editions and links, which open nothing there. Forks of it stay. */
 export async function deleteNotebook({ database }: Context, standing: NotebookStanding): Promise<void> {
   await database.transaction(async (tx) => {
-    await queries.deleteNotebook(tx, standing);
+    await queries.binNotebook(tx, standing);
     await announce(tx, standing.on.notebook, 'notebook', {});
   });
 }

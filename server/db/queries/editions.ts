@@ -111,6 +111,27 @@ export async function getContent(
   return row.content;
 }
 
+/** What an edition reads, for comparing and exporting: content, ids, sealed report. Throws `not-found`. */
+export async function getReading({ db }: Asking, standing: NotebookStanding, number: number | null) {
+  const [row] = await db
+    .select({
+      editionId: editions.id,
+      number: editions.number,
+      content: editions.content,
+      entryIds: editions.entryIds,
+      hash: editions.hash,
+      publishedAt: editions.publishedAt,
+      report: editions.report,
+      status: editions.status,
+      notebookTitle: notebooks.title,
+    })
+    .from(editions)
+    .innerJoin(notebooks, eq(notebooks.id, editions.notebook))
+    .where(thatEdition(standing, number));
+  if (row === undefined) throw notFound();
+  return row;
+}
+
 /** Number and hash of the newest edition; number 0 if there is none. */
 export async function lastEdition(
   { db }: Asking,

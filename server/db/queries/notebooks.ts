@@ -1,15 +1,16 @@
-import { and, asc, count, desc, eq, isNull, ne, sql, type SQL } from 'drizzle-orm';
+import { and, asc, count, desc, eq, isNotNull, isNull, ne, sql, type SQL } from 'drizzle-orm';
 import { alias } from 'drizzle-orm/pg-core';
 import type { NotebookSummary } from '../../../shared/contracts/notebooks.ts';
 import type { Member } from '../../../shared/contracts/people.ts';
 import type { GrantedRole, Visibility } from '../../../shared/contracts/rights.ts';
 import type { Asking } from '../connection.ts';
-import { type Page, type PageAsked, pageFrom, readCursor } from '../page.ts';
+import { type Page, pageFrom, readCursor } from '../page.ts';
 import { notFound } from '../refusal.ts';
 import { entries, memberships, notebooks } from '../schema/notebooks.ts';
 import { people } from '../schema/people.ts';
 import { editions, links } from '../schema/work.ts';
 import { type NotebookStanding, stillStands } from '../standing.ts';
+import { found, type Search } from './finding.ts';
 import { personColumns } from './people.ts';
 
 const ownership = alias(memberships, 'ownership');
@@ -44,17 +45,6 @@ function summaries({ db }: Asking, person: string | null) {
     .leftJoin(own, and(eq(own.notebook, notebooks.id), mine));
 }
 
-interface Search extends PageAsked {
-  readonly q: string;
-}
-
-/** Every word of the search stands in the title, among the authors or in the owner's name. */
-function found(q: string): SQL[] {
-  const words = q.split(/\s+/).filter((word) => word !== '');
-  const text = sql`(${notebooks.title} || ' ' || array_to_string(${notebooks.authors}, ' ') || ' ' || ${people.name})`;
-  return words.map((word) => sql`${text} ilike ${`%${word.replace(/[\\%_]/g, '\\$&')}%`}`);
-}
-
 async function pageOfNotebooks(
   asking: Asking,
   person: string | null,
@@ -67,7 +57,7 @@ async function pageOfNotebooks(
       ? undefined
       : sql`(${notebooks.changedAt}, ${notebooks.id}) < (${from.at.toISOString()}::timestamptz, ${from.id}::uuid)`;
   const rows = await summaries(asking, person)
-    .where(and(which, older, ...found(search.q)))
+    .where(and(isNull(notebooks.deletedAt), which, older, ...found(search)))
     .orderBy(desc(notebooks.changedAt), desc(notebooks.id))
     .limit(search.limit + 1);
   return pageFrom(
@@ -82,10 +72,12 @@ async function pageOfNotebooks(
 export function listShelf(
   asking: Asking,
   person: string,
-  search: Search & { readonly whose: 'all' | 'own' | 'shared' },
+  search: Search & { readonly whose: 'all' | 'own' | 'shared'; readonly state?: 'kept' | 'archived' },
 ): Promise<Page<NotebookSummary>> {
   const roles = { all: sql`${own.role} is not null`, own: eq(own.role, 'owner'), shared: ne(own.role, 'owner') };
-  return pageOfNotebooks(asking, person, search, roles[search.whose]);
+  const states = { kept: isNull(own.archivedAt), archived: isNotNull(own.archivedAt) };
+  const kept = search.state === undefined ? undefined : states[search.state];
+  return pageOfNotebooks(asking, person, search, and(roles[search.whose], kept));
 }
 
 export function listPublic(asking: Asking, person: string | null, search: Search): Promise<Page<NotebookSummary>> {
@@ -164,8 +156,12 @@ export async function updateNotebook(
   if (rowCount === 0) throw notFound();
 }
 
-export async function deleteNotebook({ db }: Asking, standing: NotebookStanding): Promise<void> {
-  const { rowCount } = await db.delete(notebooks).where(stillStands(standing));
+/** Puts a notebook into its owner's bin. */
+export async function binNotebook({ db }: Asking, standing: NotebookStanding): Promise<void> {
+  const { rowCount } = await db
+    .update(notebooks)
+    .set({ deletedAt: sql`now()` })
+    .where(stillStands(standing));
   if (rowCount === 0) throw notFound();
 }
 
