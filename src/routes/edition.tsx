@@ -70,6 +70,7 @@ function Opened({ edition, source, linked }: { edition: Edition; source: string;
       entries={entries}
       reading={reading}
       rows={rows}
+      cover={`${content.authors.join(', ')}: ${content.title}, edition ${String(edition.number)}, ${dates.format(new Date(edition.publishedAt))}. SHA-256 ${edition.hash}`}
       head={
         <>
           <title>{`${content.title}, edition ${String(edition.number)} · Gaugewright`}</title>

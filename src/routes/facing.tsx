@@ -1,15 +1,19 @@
-import { type ReactNode, useState } from 'react';
+import { lazy, type ReactNode, Suspense, useState } from 'react';
 import { Guard } from '../components/faces.tsx';
+import { printed } from '../features/claims/typography.ts';
 import { Key } from '../features/margin/key.tsx';
-import { Plate } from '../features/plate/plate.tsx';
 import { Contents } from '../features/spread/contents.tsx';
 import type { EntryText } from '../features/spread/entry.tsx';
+import { CoverLine, TableOfClaims } from '../features/spread/printed.tsx';
 import type { EntryRows } from '../features/spread/row.ts';
 import { type Edits, Spread } from '../features/spread/spread.tsx';
 import { HandContext, type HandStore, newHandStore } from '../hand/useHand.ts';
 import { ReadingContext } from '../reading/inView.ts';
 import type { Reading } from '../reading/state.ts';
 import { claimsOf } from './audit-figures.tsx';
+
+/** The plate overlays the foot of the page: coming a moment later it moves nothing. */
+const Plate = lazy(() => import('../features/plate/plate.tsx').then(({ Plate }) => ({ default: Plate })));
 
 const nobody: ReadonlyMap<string, string> = new Map();
 
@@ -25,6 +29,8 @@ interface Props {
   /** Above the key in the right margin. */
   readonly margin?: ReactNode;
   readonly foot: ReactNode;
+  /** What is printed above the title, to cite by; the title's own page says it otherwise. */
+  readonly cover?: string;
   /** Adds statements to the notebook, from the plate. */
   readonly write?: ((text: string) => void) | undefined;
   readonly hand?: HandStore;
@@ -39,7 +45,10 @@ export function Facing(props: Props) {
   return (
     <HandContext value={props.hand ?? own}>
       <main id="page" tabIndex={-1} className="sheet three-strips">
-        <header className="title-block">{head}</header>
+        <header className="title-block">
+          {props.cover !== undefined && <CoverLine words={props.cover} />}
+          {head}
+        </header>
         <div className="strip-left">
           <Contents entries={entries} rows={rows} />
         </div>
@@ -62,6 +71,7 @@ export function Facing(props: Props) {
             />
           </ReadingContext>
           {foot}
+          <TableOfClaims slices={reading.slices} printed={printed} />
         </div>
         <aside className="strip-right" aria-label="Margin">
           <div>
@@ -79,7 +89,9 @@ export function Facing(props: Props) {
         </aside>
       </main>
       <Guard what="The plate could not be drawn." until={reading.answered}>
-        <Plate reading={reading} write={props.write} />
+        <Suspense fallback={null}>
+          <Plate reading={reading} write={props.write} />
+        </Suspense>
       </Guard>
     </HandContext>
   );

@@ -1,30 +1,54 @@
 import type { RouteObject } from 'react-router-dom';
-import { CataloguePage } from './catalogue.tsx';
-import { EditionPage, SharedPage } from './edition.tsx';
+import { Waiting } from '../components/faces.tsx';
 import { Frame } from './frame.tsx';
-import { GuidePage } from './guide.tsx';
 import { HomePage } from './home.tsx';
 import { NotFoundPage, PageFailed } from './not-found.tsx';
-import { NotebookPage } from './notebook.tsx';
 import { paths } from './paths.ts';
-import { ShelfPage } from './shelf.tsx';
-import { SignInPage } from './sign-in.tsx';
 import { TryPage } from './try.tsx';
 
-/** The pages, all within one frame; each loads what it shows and has faces of its own for waiting and failing. */
+/** The pages, all within one frame; those that are not a first view come when they are asked for. Each loads what it shows and has faces of its own for waiting and failing. */
 export const pages: RouteObject[] = [
   {
     element: <Frame />,
     errorElement: <PageFailed />,
+    hydrateFallbackElement: <Waiting what="Opening the page …" />,
     children: [
       { path: paths.home.pattern, element: <HomePage />, errorElement: <PageFailed /> },
-      { path: paths.signIn.pattern, element: <SignInPage />, errorElement: <PageFailed /> },
-      { path: paths.shelf.pattern, element: <ShelfPage />, errorElement: <PageFailed /> },
-      { path: paths.notebook.pattern, element: <NotebookPage />, errorElement: <PageFailed /> },
-      { path: paths.edition.pattern, element: <EditionPage />, errorElement: <PageFailed /> },
-      { path: paths.shared.pattern, element: <SharedPage />, errorElement: <PageFailed /> },
-      { path: paths.catalogue.pattern, element: <CataloguePage />, errorElement: <PageFailed /> },
-      { path: paths.guide.pattern, element: <GuidePage />, errorElement: <PageFailed /> },
+      {
+        path: paths.signIn.pattern,
+        lazy: async () => ({ Component: (await import('./sign-in.tsx')).SignInPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.shelf.pattern,
+        lazy: async () => ({ Component: (await import('./shelf.tsx')).ShelfPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.notebook.pattern,
+        lazy: async () => ({ Component: (await import('./notebook.tsx')).NotebookPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.edition.pattern,
+        lazy: async () => ({ Component: (await import('./edition.tsx')).EditionPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.shared.pattern,
+        lazy: async () => ({ Component: (await import('./edition.tsx')).SharedPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.catalogue.pattern,
+        lazy: async () => ({ Component: (await import('./catalogue.tsx')).CataloguePage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.guide.pattern,
+        lazy: async () => ({ Component: (await import('./guide.tsx')).GuidePage }),
+        errorElement: <PageFailed />,
+      },
       {
         path: paths.worked.pattern,
         lazy: async () => ({ Component: (await import('./worked.tsx')).WorkedPage }),

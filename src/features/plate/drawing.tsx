@@ -32,8 +32,11 @@ interface Props {
 export function Drawing(props: Props) {
   const { svg, family, lattice, side, supports, over, label, height, turning, building } = props;
   const project = projectionOf(family.dimension, turning.view);
+  const here = new Set(side.carriers.map(({ species }) => species));
+  const built = building && [...building.built.values()].filter(({ species }) => here.has(species));
+  const putTogether: readonly Support[] = built ? [{ sites: built, repeats: [] }] : [];
   const shown = over ? [over.term, over.law] : supports;
-  const window = windowAbout(family, building ? [...shown, builtSupport(building.built)] : shown, lattice);
+  const window = windowAbout(family, [...shown, ...putTogether], lattice);
   const frame = frameOf(family, window, project, lattice);
   const { box } = frame;
   // Marks have one size on the page, whatever the lattice's scale.
@@ -67,15 +70,13 @@ export function Drawing(props: Props) {
       )}
       {building && (
         <>
-          <Marks {...{ family, window, project, size }} supports={[builtSupport(building.built)]} />
+          <Marks {...{ family, window, project, size }} supports={putTogether} />
           <Spins {...{ family, window, project, scale }} carriers={side.carriers} {...building} />
         </>
       )}
     </svg>
   );
 }
-
-const builtSupport = (built: Built): Support => ({ sites: [...built.values()], repeats: [] });
 
 function Links({ frame, scale, solid }: { frame: Frame; scale: number; solid: boolean }) {
   const depths = frame.links.map((link) => link.from.depth + link.to.depth);

@@ -52,7 +52,7 @@ export function Spins({ family, window, project, scale, carriers, built, press }
         return (
           <circle
             key={siteKey(spin)}
-            className="plate-spin"
+            className="plate-press"
             cx={at.x}
             cy={at.y}
             r={Math.min(12 / scale, 0.24)}
