@@ -26,14 +26,22 @@ export function CataloguePage() {
         read. Copy one into a notebook of your own and change what you like.
       </p>
       <WorkedList
-        link={(name, title) => <Link to={paths.worked.to(name)}>{title}</Link>}
+        link={(name, title) => (
+          <Link className="inline-block py-1" to={paths.worked.to(name)}>
+            {title}
+          </Link>
+        )}
         acts={({ name, title }) => (
           <CopyWorked
             name={name}
             title={title}
             open={(notebook) => void navigate(paths.notebook.to(notebook))}
             signIn={
-              me.data?.person ? null : <Link to={paths.signIn.to(paths.worked.to(name))}>sign in to copy it</Link>
+              me.data?.person ? null : (
+                <Link className="inline-block py-1" to={paths.signIn.to(paths.worked.to(name))}>
+                  sign in to copy it
+                </Link>
+              )
             }
           />
         )}

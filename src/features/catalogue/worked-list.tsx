@@ -34,6 +34,7 @@ export function WorkedList({ link, acts }: Props) {
   const found = picking(all, picked);
   return (
     <>
+      <h2 className="mt-8">Worked dualities</h2>
       <Picking all={all} picked={picked} set={setPicked} />
       <p className="label mt-2" role="status">
         {found.length === all.length
@@ -42,7 +43,7 @@ export function WorkedList({ link, acts }: Props) {
       </p>
       <ol className="mt-4 list-none p-0">
         {found.map((one) => (
-          <li key={one.name} className="part">
+          <li key={one.name} className="border-t border-hair py-4">
             <h3 className="text-lead">{link(one.name, one.title)}</h3>
             <p className="measure mt-1">{one.shows}</p>
             <p className="label mt-1">{one.sources.map(({ citation }) => citation).join('; ')}</p>
