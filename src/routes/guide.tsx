@@ -1,8 +1,10 @@
 import { useId, useState } from 'react';
 import { Link } from 'react-router-dom';
-import { type HelpRecord, reference } from '../../shared/language/reference.ts';
+import { exampleSource, type HelpRecord, reference } from '../../shared/language/reference.ts';
 import { GradeMark, gradeWords, type GradeName, PauliMark } from '../components/marks.tsx';
 import { GuideContents } from '../features/guide/contents.tsx';
+import { Formula, Sentence } from '../components/formula.tsx';
+import { useReading } from '../reading/useReading.ts';
 import { paths } from './paths.ts';
 import { Sheet } from './sheet.tsx';
 
@@ -49,6 +51,12 @@ export function GuidePage() {
             leaves it for what can be done with the entry.
           </li>
           <li>Space pins a term, so that the plate keeps showing where it acts.</li>
+          <li>
+            In the source, Control with the space bar offers what may stand there; the arrow keys choose, Enter writes
+            it. Control or Command with the apostrophe says what the name at the caret is; F8 goes to the next problem.
+            Under the source stand, by Tab, the ways to a name’s declaration, to rename it, to write a model out, to
+            fold.
+          </li>
           <li>Control or Command with the semicolon opens a line for whatever is to be done or found.</li>
         </ul>
         <h2 id="language">The operator language</h2>
@@ -113,6 +121,7 @@ function Reference() {
                     <pre className="code" tabIndex={0} aria-label={`Example of ${one.name}`}>
                       {one.example.trimEnd()}
                     </pre>
+                    <Example record={one} />
                   </dd>
                 </div>
               ))}
@@ -121,5 +130,50 @@ function Reference() {
         );
       })}
     </>
+  );
+}
+
+/** An example that can be run: what the engine makes of it, under it. */
+function Example({ record }: { record: HelpRecord }) {
+  const [run, setRun] = useState(false);
+  return (
+    <>
+      <button type="button" className="act label" aria-expanded={run} onClick={() => setRun(!run)}>
+        {run ? 'put away' : 'run it'}
+        <span className="aside-only"> ({record.name})</span>
+      </button>
+      {run && <Outcome record={record} />}
+    </>
+  );
+}
+
+function Outcome({ record }: { record: HelpRecord }) {
+  const source = exampleSource(record).trimEnd();
+  const [entries] = useState(() => [{ id: 'example', kind: 'statements' as const, text: source }]);
+  const reading = useReading(entries);
+  const [slice] = reading.slices;
+  if (reading.failed !== undefined) return <p className="ink-refuted">{reading.failed}</p>;
+  if (!slice) return <p className="label">Being read …</p>;
+  // What the example stands on comes before it.
+  const at = source.lastIndexOf(record.example.trimEnd());
+  const first = source.slice(0, Math.max(0, at)).split('\n').length - 1;
+  const own = <T extends { readonly line: number }>(items: readonly T[]) => items.filter(({ line }) => line >= first);
+  const said = own(slice.declarations).map(({ value }) => ({ key: value.name, tex: value.tex }));
+  const models = own(slice.models).map(({ value }) => ({ key: value.name, tex: value.tex }));
+  return (
+    <div role="status">
+      {[...said, ...models].map(({ key, tex }) => tex !== '' && <p key={key}>{<Formula tex={tex} display />}</p>)}
+      <ul>
+        {own(slice.claims).map(({ value }, k) => (
+          <li key={k} className={`ink-${value.grade}`}>
+            <GradeMark grade={value.grade} /> <Sentence text={value.tex} />
+          </li>
+        ))}
+        {own(slice.problems).map(({ value }, k) => (
+          <li key={k}>{value.message}</li>
+        ))}
+      </ul>
+      {reading.waiting > 0 && <p className="label">Numbers are under way …</p>}
+    </div>
   );
 }
