@@ -3,19 +3,22 @@ import { type Ground, type LevelsOnSize, multipletsOf, type Scan } from './data.
 
 /** Plots as plain SVG: levels beside levels, lines, ground multiplets. Each draws into a box from 0, 0. */
 
-export const panel = { width: 268, height: 232, across: 3 };
+const panel = { width: 268, height: 232 };
+
+/** Panels beside one another: three, on a narrow page one, so that their letters keep their size. */
+export const panelsAcross = (narrow: boolean): number => (narrow ? 1 : 3);
 const line = 58;
 
 /** Width and height of the panels of several sizes. */
-export const panelsBox = (count: number): { width: number; height: number } => ({
-  width: panel.width * Math.min(count, panel.across),
-  height: panel.height * Math.ceil(count / panel.across),
+export const panelsBox = (count: number, across: number): { width: number; height: number } => ({
+  width: panel.width * Math.min(count, across),
+  height: panel.height * Math.ceil(count / across),
 });
 
 const shortName = (name: string): string => (name.length > 17 ? `${name.slice(0, 16)}…` : name);
 
 /** One size: levels of both models, joined where they agree, in the ink of a refutation where they do not. */
-export function LevelsPanel({ levels, place }: { levels: LevelsOnSize; place: number }) {
+export function LevelsPanel({ levels, place, across }: { levels: LevelsOnSize; place: number; across: number }) {
   const { left, right, names, size } = levels;
   const frame = { left: 56, right: panel.width - 14, top: 30, bottom: panel.height - 28 };
   const y = scaleOf([...left, ...right], [frame.bottom, frame.top]);
@@ -26,8 +29,8 @@ export function LevelsPanel({ levels, place }: { levels: LevelsOnSize; place: nu
     const to = right[k] ?? from;
     pairs.set(`${from.toPrecision(9)} ${to.toPrecision(9)}`, { from, to, agree: Math.abs(from - to) <= tolerance });
   });
-  const x = (place % panel.across) * panel.width;
-  const top = Math.floor(place / panel.across) * panel.height;
+  const x = (place % across) * panel.width;
+  const top = Math.floor(place / across) * panel.height;
   return (
     <g transform={`translate(${String(x)} ${String(top)})`}>
       <Axes frame={frame} y={y} yWords="energy / unit of the couplings" />

@@ -1,4 +1,4 @@
-import { memo, type ReactNode } from 'react';
+import { memo, type ReactNode, useSyncExternalStore } from 'react';
 import type { Claim } from '../../../shared/contracts/report.ts';
 import { number, sizeWords } from './axes.tsx';
 import {
@@ -11,7 +11,7 @@ import {
   spectraOf,
   spectraTable,
 } from './data.ts';
-import { Grounds, grounds as groundsBox, LevelsPanel, lines, panelsBox, ScanLines } from './drawings.tsx';
+import { Grounds, grounds as groundsBox, LevelsPanel, lines, panelsAcross, panelsBox, ScanLines } from './drawings.tsx';
 import { Figure } from './figure.tsx';
 import { contourAt, heat, HeatMap, steepest } from './heat.tsx';
 
@@ -29,23 +29,33 @@ const onSizes = (all: readonly { readonly size: string }[]): string => list(all.
 const fileName = (claim: Claim | undefined): string =>
   `${claim?.audit ?? 'plot'}-${(claim?.subject ?? '').replace(/[^\p{L}\p{N}]+/gu, '-')}`;
 
+const narrow = globalThis.matchMedia('(max-width: 759px)');
+const onNarrow = (heard: () => void) => {
+  narrow.addEventListener('change', heard);
+  return () => narrow.removeEventListener('change', heard);
+};
+const useNarrow = (): boolean => useSyncExternalStore(onNarrow, () => narrow.matches);
+
 /** What the numerical claims of one audit line look like; nothing for other claims. */
 export const Plots = memo(function Plots({ claims, say }: Props) {
+  const across = panelsAcross(useNarrow());
   const spectra = spectraOf(claims);
   const scans = scansOf(claims);
   const grounds = groundsOf(claims);
   const name = fileName(claims[0]);
-  const cautions = [...new Set(claims.flatMap((claim) => claim.cautions))].map(say);
+  const cautions = [...new Set(claims.flatMap((claim) => claim.cautions))].map((caution) =>
+    say(/[.!?]$/.test(caution) ? caution : `${caution}.`),
+  );
   if (spectra.length > 0)
     return (
       <Figure
         words={spectraWords(spectra)}
         {...{ cautions, name }}
         table={spectraTable(spectra)}
-        {...panelsBox(spectra.length)}
+        {...panelsBox(spectra.length, across)}
       >
         {spectra.map((levels, k) => (
-          <LevelsPanel key={k} levels={levels} place={k} />
+          <LevelsPanel key={k} levels={levels} place={k} across={across} />
         ))}
       </Figure>
     );
