@@ -2,14 +2,16 @@ import { openDatabase } from '../db/connection.ts';
 import { findByHandle } from '../db/queries/people.ts';
 import { type NotebookStanding, onInstallation, standingFor } from '../db/standing.ts';
 import { openQueue } from '../evaluation/queue.ts';
-import { type InventedNotebook, inventedNotebooks } from '../fakes/notebooks.ts';
+import { inventedFork, type InventedNotebook, inventedNotebooks, inventedRemarks } from '../fakes/notebooks.ts';
 import { inventedPeople, inventedSteward } from '../fakes/people.ts';
 import type { Context } from '../services/context.ts';
 import { publish } from '../services/editions.ts';
-import { insertEntry } from '../services/entries.ts';
+import { insertEntry, saveEntry } from '../services/entries.ts';
 import { addMember } from '../services/members.ts';
-import { changeNotebook, forkNotebook, importNotebook } from '../services/notebooks.ts';
+import { changeNotebook, forkNotebook, importNotebook, readNotebook } from '../services/notebooks.ts';
+import { makeRemark, reply } from '../services/remarks.ts';
 import { signIn, standInProvider } from '../services/sign-in.ts';
+import { send } from '../services/variants.ts';
 import { runOnce } from '../program.ts';
 import type { Settings } from '../settings.ts';
 
@@ -58,8 +60,40 @@ async function write(context: Context): Promise<void> {
   }
   const [first] = standings;
   if (first === undefined) return;
-  const reader = await standingFor(context.database, personOf(copier), first.on.notebook);
-  await forkNotebook(context, reader, { edition: 1, title: 'Reading group: bonds of the uneven magnet' });
+  await writeRemarks(context, first, personOf);
+  await writeVariants(context, first, personOf(copier));
+}
+
+/** The first notebook is under review: remarks by its referee wait for its writers. */
+async function writeRemarks(
+  context: Context,
+  on: NotebookStanding,
+  personOf: (login: string) => string,
+): Promise<void> {
+  const { entries } = await readNotebook(context, on);
+  for (const { by, at, text, answer } of inventedRemarks) {
+    const entry = entries.find((one) => one.text.includes(at))?.id;
+    if (entry === undefined) throw new Error(`the demonstration has no entry with ${at}`);
+    const standing = await standingFor(context.database, personOf(by), on.on.notebook);
+    const subject = { what: 'entry', entry, quote: null } as const;
+    const { id } = await makeRemark(context, standing, { subject, text });
+    if (answer === undefined) continue;
+    const other = await standingFor(context.database, personOf(answer.by), on.on.notebook);
+    await reply(context, other, id, answer.text);
+  }
+}
+
+/** A reading group's copy differs from the first notebook, and what differs was sent to its writers. */
+async function writeVariants(context: Context, origin: NotebookStanding, person: string): Promise<void> {
+  const reader = await standingFor(context.database, person, origin.on.notebook);
+  const { title, edition, change, letter } = inventedFork;
+  const { id, entries } = await forkNotebook(context, reader, { edition, title });
+  const standing = await standingFor(context.database, person, id);
+  const entry = entries.find((one) => one.text.includes(change.from));
+  if (entry === undefined) throw new Error('the demonstration changes an entry that is not there');
+  const text = entry.text.replace(change.from, change.to);
+  await saveEntry(context, standing, entry.id, entry.version, { text });
+  await send(context, standing, { letter });
 }
 
 async function writeNotebook(context: Context, notebook: InventedNotebook, owner: string): Promise<NotebookStanding> {

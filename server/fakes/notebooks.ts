@@ -156,3 +156,35 @@ export const inventedNotebooks: readonly InventedNotebook[] = [
     source: loops,
   },
 ];
+
+/** Remarks on the first notebook, which is under review; `at`: words of the entry that they stand beside. */
+export const inventedRemarks: readonly {
+  readonly by: string;
+  readonly at: string;
+  readonly text: string;
+  readonly answer?: { readonly by: string; readonly text: string };
+}[] = [
+  {
+    by: 'mitsuno',
+    at: 'map bonds from s to b',
+    text: 'Is the sector of the magnet said anywhere? The product of all turns goes to $1$, so only the even half of its states has an image. @rokafor',
+    answer: {
+      by: 'lbrandt',
+      text: 'Only in the audit of the levels, at the end. I would say it here, before the dictionary is used.',
+    },
+  },
+  {
+    by: 'mitsuno',
+    at: 'audit spectrum magnet',
+    text: 'Six levels agree. Do they go on agreeing for $K < 0$, where the columns want to alternate? On $3 \\times 3$ they cannot.',
+  },
+];
+
+/** The reading group's copy of the first notebook: what it changed, and the letter with which it sent the difference. */
+export const inventedFork = {
+  title: 'Reading group: bonds of the uneven magnet',
+  edition: 1,
+  change: { from: '- K sum(l: links.2)', to: '+ K sum(l: links.2)' },
+  letter:
+    'We tried the magnet with columns that alternate: one sign is changed, and the dictionary does not mind. Perhaps worth a line in the text?',
+} as const;

@@ -37,6 +37,11 @@ describe('the demonstration', () => {
         [ring, 'reader'],
       ]),
     );
+    const waiting = await here.database.pool.query<{ kind: string; told: number }>(
+      `select kind, count(*)::int as told from notices where kind in ('remark', 'mention', 'variants') group by kind`,
+    );
+    expect(new Set(waiting.rows.map(({ kind }) => kind))).toEqual(new Set(['remark', 'mention', 'variants']));
+
     const { items } = await visitor(here).ask('listPublic');
     expect(items.map((item) => [item.title, item.edition])).toContainEqual([magnet, 2]);
     const shown = items.find((item) => item.title === magnet);
