@@ -163,6 +163,8 @@ describe('the main job', () => {
     await page.goto(editionAddress);
     await page.locator('[data-status=sealed]').waitFor();
     await page.locator('[data-grade]').first().waitFor();
+    await page.locator('.plot').waitFor();
+    await page.locator('.commutation-table').waitFor();
     expect(await page.locator('main').innerText()).toBe(before);
   });
 
