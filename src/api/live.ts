@@ -31,6 +31,9 @@ export function useLive(notebook: string, me: string | null): readonly Person[] 
       );
     });
     on('notebook', () => void rereadNotebook(client, notebook));
+    on('answer', () => {
+      for (const key of ['answers', 'jobs']) void client.invalidateQueries({ queryKey: [key] });
+    });
     on('edition', () => {
       void rereadEditions(client, notebook);
       void rereadNotebook(client, notebook);

@@ -1,6 +1,6 @@
 import { useEffect, useMemo, useRef, useState } from 'react';
 import { joinEntries } from '../../shared/notebook/text.ts';
-import { ask, type Answer, type AskHelp, type HelpAnswer, protocol } from '../worker/messages.ts';
+import { ask, type Answer, type AskHelp, type HelpAnswer, learn, type Learned, protocol } from '../worker/messages.ts';
 import { newHelper, type Helper, type PlacedWith } from './help.ts';
 import type { Placed } from './slices.ts';
 import { answering, asking, type Reading, unread } from './state.ts';
@@ -65,13 +65,18 @@ function newHelpLine() {
   };
 }
 
+export type { Learned };
+const nothing: Learned = {};
+
 /**
  * The reading of a text that changes: each new text is asked of the engine in its worker, and the newest answer is shown.
+ * `learned`: answers of the server to what stands open, which the engine takes as its own.
  * A worker that dies is told of in `failed`, and the next text starts a new one.
  */
-export function useReading(entries: readonly EntryText[]): Reading {
+export function useReading(entries: readonly EntryText[], learned: Learned = nothing): Reading {
   const [reading, setReading] = useState<Reading>(unread);
   const engine = useRef<Worker | null>(null);
+  const taught = useRef<{ readonly worker: Worker; readonly learned: Learned } | null>(null);
   const version = useRef(0);
   const asked = useRef(new Map<number, readonly Placed[]>());
   const source = useMemo(() => placed(entries), [entries]);
@@ -105,8 +110,13 @@ export function useReading(entries: readonly EntryText[]): Reading {
     };
     line.opensTo((help) => worker.postMessage(help));
     setReading((before) => asking(before, mine));
+    // Once to each worker: answers may be long, and a key is not to wait for them.
+    if (learned !== nothing && (taught.current?.worker !== worker || taught.current.learned !== learned)) {
+      worker.postMessage(learn(learned));
+      taught.current = { worker, learned };
+    }
     worker.postMessage(ask(mine, source.text));
-  }, [source, line]);
+  }, [source, learned, line]);
 
   useEffect(
     () => () => {

@@ -4,6 +4,7 @@ import { Guard } from '../components/faces.tsx';
 import { Sentence } from '../components/formula.tsx';
 import { Claims } from '../features/claims/claims.tsx';
 import { printed } from '../features/claims/typography.ts';
+import { OpenQuestions } from '../features/jobs/open-questions.tsx';
 import type { ClaimsRow } from '../features/spread/entry.tsx';
 
 /** What is drawn under the claims of an audit line comes when it is needed: a first page without it does not load it. */
@@ -26,6 +27,7 @@ export function claimsOf(row: ClaimsRow): ReactNode {
   return (
     <>
       <Claims claims={row.claims} audit={row.audit} />
+      <OpenQuestions claims={row.claims} />
       {row.claims.some(isDrawn) && (
         <Guard what="The plot could not be drawn." until={row.claims}>
           <Suspense fallback={<div className="plot-to-come" />}>

@@ -18,6 +18,8 @@ import { TwoTexts } from '../features/writing/two-texts.tsx';
 import { useEntries } from '../features/writing/useEntries.ts';
 import { useHolding } from '../features/writing/useHolding.ts';
 import { useSaving } from '../features/writing/useSaving.ts';
+import { HandOverContext } from '../features/jobs/open-questions.tsx';
+import { useAnswers, useHandOver, useLearned } from '../features/jobs/useAnswers.ts';
 import { useReading } from '../reading/useReading.ts';
 import { useDesk } from './desk.tsx';
 import { Facing } from './facing.tsx';
@@ -72,7 +74,10 @@ function Opened({ notebook, me }: { notebook: Notebook; me: string | null }) {
   const may = notebook.may.includes('edit');
   const saving = useSaving(notebook.id, notebook.entries, may);
   const entries = useSame(useTexts(notebook, saving.drafts));
-  const reading = useReading(entries);
+  const [learned, learn] = useLearned();
+  const reading = useReading(entries, learned);
+  useAnswers(reading.slices, learn);
+  const handOver = useHandOver(notebook.id, entries, me);
   const rows = useRows(reading.slices);
   const changes = useEntries(notebook);
   const present = useLive(notebook.id, me);
@@ -137,54 +142,56 @@ function Opened({ notebook, me }: { notebook: Notebook; me: string | null }) {
     : undefined;
 
   return (
-    <Facing
-      hand={desk.hand}
-      entries={entries}
-      reading={reading}
-      rows={rows}
-      writing={desk.writing}
-      source={desk.source}
-      edits={edits}
-      write={may ? write : undefined}
-      heldBy={heldBy}
-      head={<Head notebook={notebook} saving={may ? savingInWords(saving.drafts) : null} />}
-      margin={
-        <Present
-          others={present.filter((person) => person.id !== me)}
-          writing={notebook.entries.flatMap(({ hold }, k) => (hold ? [[hold.by.id, k + 1] as const] : []))}
-        />
-      }
-      foot={
-        <>
-          {entries.length === 0 && may && <FirstEntry />}
-          <Orphans drafts={drafts} entries={entries} drop={(id) => choose(id, 'theirs')} />
-          <p role="status" className="label min-h-6">
-            {changes.removed && (
-              <>
-                Entry ({changes.removed.number}) is deleted.{' '}
-                <button type="button" className="act" onClick={() => void changes.restore()}>
-                  undo
-                </button>
-              </>
-            )}
-            {changes.failed !== null && <span className="ink-refuted"> {changes.failed}</span>}
-          </p>
-          <Colophon
-            notebook={notebook}
-            part={part}
-            show={setPart}
-            settle={settled}
-            ways={{
-              edition: (number) => paths.edition.to(notebook.id, number),
-              shared: paths.shared.to,
-              toNotebook: (id) => void navigate(paths.notebook.to(id)),
-              toShelf: () => void navigate(paths.shelf.to()),
-              link: (to, words) => <Link to={to}>{words}</Link>,
-            }}
+    <HandOverContext value={handOver}>
+      <Facing
+        hand={desk.hand}
+        entries={entries}
+        reading={reading}
+        rows={rows}
+        writing={desk.writing}
+        source={desk.source}
+        edits={edits}
+        write={may ? write : undefined}
+        heldBy={heldBy}
+        head={<Head notebook={notebook} saving={may ? savingInWords(saving.drafts) : null} />}
+        margin={
+          <Present
+            others={present.filter((person) => person.id !== me)}
+            writing={notebook.entries.flatMap(({ hold }, k) => (hold ? [[hold.by.id, k + 1] as const] : []))}
           />
-        </>
-      }
-    />
+        }
+        foot={
+          <>
+            {entries.length === 0 && may && <FirstEntry />}
+            <Orphans drafts={drafts} entries={entries} drop={(id) => choose(id, 'theirs')} />
+            <p role="status" className="label min-h-6">
+              {changes.removed && (
+                <>
+                  Entry ({changes.removed.number}) is deleted.{' '}
+                  <button type="button" className="act" onClick={() => void changes.restore()}>
+                    undo
+                  </button>
+                </>
+              )}
+              {changes.failed !== null && <span className="ink-refuted"> {changes.failed}</span>}
+            </p>
+            <Colophon
+              notebook={notebook}
+              part={part}
+              show={setPart}
+              settle={settled}
+              ways={{
+                edition: (number) => paths.edition.to(notebook.id, number),
+                shared: paths.shared.to,
+                toNotebook: (id) => void navigate(paths.notebook.to(id)),
+                toShelf: () => void navigate(paths.shelf.to()),
+                link: (to, words) => <Link to={to}>{words}</Link>,
+              }}
+            />
+          </>
+        }
+      />
+    </HandOverContext>
   );
 }
 

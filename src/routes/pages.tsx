@@ -25,6 +25,11 @@ export const pages: RouteObject[] = [
         errorElement: <PageFailed />,
       },
       {
+        path: paths.jobs.pattern,
+        lazy: async () => ({ Component: (await import('./jobs.tsx')).JobsPage }),
+        errorElement: <PageFailed />,
+      },
+      {
         path: paths.notebook.pattern,
         lazy: async () => ({ Component: (await import('./notebook.tsx')).NotebookPage }),
         errorElement: <PageFailed />,

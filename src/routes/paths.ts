@@ -5,6 +5,7 @@ export const paths = {
     pattern: '/sign-in',
     to: (back?: string) => (back === undefined ? '/sign-in' : `/sign-in?back=${encodeURIComponent(back)}`),
   },
+  jobs: { pattern: '/jobs', to: () => '/jobs' },
   shelf: { pattern: '/shelf', to: () => '/shelf' },
   notebook: { pattern: '/notebooks/:notebook', to: (notebook: string) => `/notebooks/${encodeURIComponent(notebook)}` },
   edition: {

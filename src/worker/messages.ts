@@ -2,7 +2,7 @@ import type { AssistAnswer, AssistQuestion } from '../../shared/contracts/assist
 import type { Report } from '../../shared/contracts/report.ts';
 
 /** What page and worker say to each other. Both come from one build; the number guards a page kept open over an update. */
-export const protocol = 3;
+export const protocol = 4;
 
 /** `version` counts the texts of one page from 1. */
 export interface Ask {
@@ -10,6 +10,16 @@ export interface Ask {
   readonly protocol: typeof protocol;
   readonly version: number;
   readonly text: string;
+}
+
+/** The engine's findings on questions by their names, from the server: plain data of the same version of the engine. */
+export type Learned = Readonly<Record<string, readonly unknown[]>>;
+
+/** Answers from elsewhere, for the texts that are asked about from now on. */
+export interface Learn {
+  readonly kind: 'learn';
+  readonly protocol: typeof protocol;
+  readonly answers: Learned;
 }
 
 /** What an editor asks about a place in a text; answered at once, between two slices of whatever is under way. */
@@ -36,5 +46,7 @@ export interface HelpAnswer {
   readonly id: number;
   readonly answer: AssistAnswer | null;
 }
+
+export const learn = (answers: Learned): Learn => ({ kind: 'learn', protocol, answers });
 
 export const ask = (version: number, text: string): Ask => ({ kind: 'report', protocol, version, text });
