@@ -2,8 +2,10 @@ import { useQueryClient } from '@tanstack/react-query';
 import { useEffect, useState } from 'react';
 import { address, endpoints } from '../../shared/contracts/endpoints.ts';
 import { liveEvents, type LiveEvent, type Notebook } from '../../shared/contracts/notebooks.ts';
-import type { Person } from '../../shared/contracts/people.ts';
-import { rereadEditions, rereadNotebook } from './queries.ts';
+import type { Me, Person } from '../../shared/contracts/people.ts';
+import { type PersonEvent, personEvents } from '../../shared/contracts/notices.ts';
+import { rereadEditions, rereadLists, rereadNotebook } from './queries.ts';
+import { reread } from './review-queries.ts';
 
 /**
  * Follows a notebook as others change it (server-sent events) and says who has it open. The browser connects again by
@@ -38,15 +40,57 @@ export function useLive(notebook: string, me: string | null): readonly Person[] 
       void rereadEditions(client, notebook);
       void rereadNotebook(client, notebook);
     });
+    on('remarks', () => void reread(client, notebook, 'remarks'));
+    on('verdicts', () => void reread(client, notebook, 'verdicts'));
+    on('variants', () => {
+      void reread(client, notebook, 'variants');
+      void reread(client, notebook, 'collation');
+    });
+    on('evaluation', () => {
+      for (const part of ['comparison', 'collation', 'variants', 'reruns'] as const)
+        void reread(client, notebook, part);
+    });
     on('present', ({ people }) => setPresent(people));
     events.onerror = () => {
       lost = true;
     };
     events.onopen = () => {
-      if (lost) void rereadNotebook(client, notebook);
+      // What was missed meanwhile may be anything about the notebook.
+      if (lost) void client.invalidateQueries({ queryKey: ['notebook', notebook] });
       lost = false;
     };
     return () => events.close();
   }, [client, notebook, me]);
   return present;
+}
+
+/** Follows what concerns the person signed in, on every page: notices that come, jobs that go on, rights that change. */
+export function useLiveMine(person: string | null): void {
+  const client = useQueryClient();
+  useEffect(() => {
+    if (person === null) return;
+    const events = new EventSource(address(endpoints.liveMine));
+    const on = <E extends PersonEvent>(
+      name: E,
+      take: (data: ReturnType<(typeof personEvents)[E]['parse']>) => void,
+    ) => {
+      events.addEventListener(name, (event: MessageEvent<string>) => {
+        const parsed = personEvents[name].safeParse(JSON.parse(event.data));
+        if (parsed.success) take(parsed.data as ReturnType<(typeof personEvents)[E]['parse']>);
+      });
+    };
+    on('notices', ({ unread }) => {
+      client.setQueryData<Me>(['me'], (kept) =>
+        kept?.person ? { ...kept, person: { ...kept.person, unread } } : kept,
+      );
+      void client.invalidateQueries({ queryKey: ['notices'] });
+    });
+    on('shelf', () => void rereadLists(client));
+    on('job', () => void client.invalidateQueries({ queryKey: ['jobs'] }));
+    on('account', () => {
+      for (const key of ['me', 'account', 'invited']) void client.invalidateQueries({ queryKey: [key] });
+      void rereadLists(client);
+    });
+    return () => events.close();
+  }, [client, person]);
 }

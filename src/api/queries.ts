@@ -1,4 +1,5 @@
-import { infiniteQueryOptions, type QueryClient, queryOptions } from '@tanstack/react-query';
+import { infiniteQueryOptions, keepPreviousData, type QueryClient, queryOptions } from '@tanstack/react-query';
+import type { QueryGiven } from '../../shared/contracts/endpoints.ts';
 import type { Entry, Notebook } from '../../shared/contracts/notebooks.ts';
 import { call } from './client.ts';
 
@@ -10,22 +11,27 @@ export const meQuery = () =>
 export const signInQuery = () =>
   queryOptions({ queryKey: ['sign-in'], queryFn: ({ signal }) => call('getSignIn', { signal }), staleTime: 60_000 });
 
-export const shelfQuery = (q: string) =>
+/** What narrows a list of notebooks. */
+export type ShelfAsked = Omit<QueryGiven<'listShelf'>, 'after' | 'limit'>;
+export type PublicAsked = Omit<QueryGiven<'listPublic'>, 'after' | 'limit'>;
+const after = (cursor: string | null) => (cursor === null ? {} : { after: cursor });
+
+export const shelfQuery = (asked: ShelfAsked) =>
   infiniteQueryOptions({
-    queryKey: ['shelf', q],
-    queryFn: ({ signal, pageParam }) =>
-      call('listShelf', { signal, query: { q, ...(pageParam === null ? {} : { after: pageParam }) } }),
+    queryKey: ['shelf', asked],
+    queryFn: ({ signal, pageParam }) => call('listShelf', { signal, query: { ...asked, ...after(pageParam) } }),
     initialPageParam: null as string | null,
     getNextPageParam: (page) => page.next,
+    placeholderData: keepPreviousData,
   });
 
-export const publicQuery = (q: string) =>
+export const publicQuery = (asked: PublicAsked) =>
   infiniteQueryOptions({
-    queryKey: ['public', q],
-    queryFn: ({ signal, pageParam }) =>
-      call('listPublic', { signal, query: { q, ...(pageParam === null ? {} : { after: pageParam }) } }),
+    queryKey: ['public', asked],
+    queryFn: ({ signal, pageParam }) => call('listPublic', { signal, query: { ...asked, ...after(pageParam) } }),
     initialPageParam: null as string | null,
     getNextPageParam: (page) => page.next,
+    placeholderData: keepPreviousData,
   });
 
 export const notebookQuery = (notebook: string) =>

@@ -1,10 +1,12 @@
 import { useInfiniteQuery, useQuery } from '@tanstack/react-query';
-import { useDeferredValue, useId, useState } from 'react';
+import { useDeferredValue, useState } from 'react';
 import { Link, useNavigate } from 'react-router-dom';
 import { meQuery, publicQuery } from '../api/queries.ts';
 import { Empty, Failed, Waiting } from '../components/faces.tsx';
+import { ShowMore } from '../components/parts.tsx';
 import { CopyWorked } from '../features/catalogue/copy-worked.tsx';
 import { WorkedList } from '../features/catalogue/worked-list.tsx';
+import { everything, Filters, narrows, queryOf } from '../features/shelf/filters.tsx';
 import { Ledger } from '../features/shelf/ledger.tsx';
 import { paths } from './paths.ts';
 import { Sheet } from './sheet.tsx';
@@ -13,10 +15,9 @@ import { Sheet } from './sheet.tsx';
 export function CataloguePage() {
   const me = useQuery(meQuery());
   const navigate = useNavigate();
-  const [typed, setTyped] = useState('');
-  const q = useDeferredValue(typed.trim());
-  const list = useInfiniteQuery(publicQuery(q));
-  const field = useId();
+  const [narrowed, setNarrowed] = useState(everything);
+  const deferred = useDeferredValue(narrowed);
+  const list = useInfiniteQuery(publicQuery(queryOf(deferred)));
   const notebooks = list.data?.pages.flatMap((page) => page.items) ?? [];
   return (
     <Sheet title="Catalogue" narrow>
@@ -48,18 +49,7 @@ export function CataloguePage() {
       />
       <h2 className="mt-12">Public notebooks</h2>
       <p className="measure mt-2">Derivations that people made public: anyone may read, export and fork them.</p>
-      <p className="mt-6">
-        <label className="label" htmlFor={field}>
-          Find among public notebooks
-        </label>
-        <input
-          id={field}
-          type="search"
-          className="field"
-          value={typed}
-          onChange={(event) => setTyped(event.target.value)}
-        />
-      </p>
+      <Filters label="Find among public notebooks" narrowed={narrowed} set={setNarrowed} />
       {list.isPending && <Waiting what="Fetching the public notebooks …" />}
       {list.isError && (
         <Failed
@@ -69,7 +59,7 @@ export function CataloguePage() {
         />
       )}
       {list.isSuccess && notebooks.length === 0 && (
-        <Empty title={q === '' ? 'Nothing public yet' : 'Nothing has these words'}>
+        <Empty title={narrows(deferred) ? 'Nothing is like that' : 'Nothing public yet'}>
           <p>
             A notebook stands here when its owner makes it public, from its colophon. Until then, the{' '}
             <Link to={paths.try.to()}>example</Link> is open to everyone.
@@ -83,16 +73,7 @@ export function CataloguePage() {
           label="Public notebooks"
         />
       )}
-      {list.hasNextPage && (
-        <button
-          type="button"
-          className="act mt-4"
-          disabled={list.isFetchingNextPage}
-          onClick={() => void list.fetchNextPage()}
-        >
-          show more
-        </button>
-      )}
+      <ShowMore of={list} />
     </Sheet>
   );
 }

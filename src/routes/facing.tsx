@@ -2,6 +2,7 @@ import { lazy, type ReactNode, Suspense, useState } from 'react';
 import { Guard } from '../components/faces.tsx';
 import { printed } from '../features/claims/typography.ts';
 import { Key } from '../features/margin/key.tsx';
+import type { Margin } from '../features/margin/margin.tsx';
 import { Contents } from '../features/spread/contents.tsx';
 import type { EntryText } from '../features/spread/entry.tsx';
 import { CoverLine, TableOfClaims } from '../features/spread/printed.tsx';
@@ -26,8 +27,10 @@ interface Props {
   readonly source?: (entry: EntryText) => ReactNode;
   readonly edits?: Edits | undefined;
   readonly heldBy?: ReadonlyMap<string, string>;
-  /** Above the key in the right margin. */
-  readonly margin?: ReactNode;
+  /** Above the key, under the contents. */
+  readonly strip?: ReactNode;
+  /** The remarks beside the entries, where there are people to remark. */
+  readonly margin?: Margin;
   readonly foot: ReactNode;
   /** What is printed above the title, to cite by; the title's own page says it otherwise. */
   readonly cover?: string;
@@ -41,7 +44,7 @@ const noSource = () => null;
 /** A derivation as it is read: title, facing pages, the outer strips, the plate. Notebook, edition and example all look so. */
 export function Facing(props: Props) {
   const [own] = useState(newHandStore);
-  const { head, entries, reading, rows, edits, margin, foot } = props;
+  const { head, entries, reading, rows, edits, strip, margin, foot } = props;
   return (
     <HandContext value={props.hand ?? own}>
       <main id="page" tabIndex={-1} className="sheet three-strips">
@@ -50,7 +53,21 @@ export function Facing(props: Props) {
           {head}
         </header>
         <div className="strip-left">
-          <Contents entries={entries} rows={rows} />
+          <div>
+            <Contents entries={entries} rows={rows} />
+            <Guard what="The key could not be shown." until={reading.answered}>
+              {reading.waiting > 0 && (
+                <p role="status" className="mt-4">
+                  {reading.waiting === 1 ? 'One numerical answer' : `${String(reading.waiting)} numerical answers`}{' '}
+                  under way
+                </p>
+              )}
+              <div className="mt-6">
+                {strip}
+                <Key slices={reading.slices} />
+              </div>
+            </Guard>
+          </div>
         </div>
         <div className="middle">
           {reading.failed !== undefined && (
@@ -68,25 +85,14 @@ export function Facing(props: Props) {
               claims={claimsOf}
               edits={edits}
               heldBy={props.heldBy ?? nobody}
+              marginHead={margin?.head}
+              beside={margin?.beside}
             />
           </ReadingContext>
+          {margin?.gone}
           {foot}
           <TableOfClaims slices={reading.slices} printed={printed} />
         </div>
-        <aside className="strip-right" aria-label="Margin">
-          <div>
-            <Guard what="The margin could not be shown." until={reading.answered}>
-              {reading.waiting > 0 && (
-                <p role="status" className="mb-4">
-                  {reading.waiting === 1 ? 'One numerical answer' : `${String(reading.waiting)} numerical answers`}{' '}
-                  under way
-                </p>
-              )}
-              {margin}
-              <Key slices={reading.slices} />
-            </Guard>
-          </div>
-        </aside>
       </main>
       <Guard what="The plate could not be drawn." until={reading.answered}>
         <Suspense fallback={null}>

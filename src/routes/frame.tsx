@@ -2,6 +2,7 @@ import { useQuery, useQueryClient } from '@tanstack/react-query';
 import { useCallback, useEffect, useMemo, useRef, useState } from 'react';
 import { Link, NavLink, Outlet, useLocation, useNavigate } from 'react-router-dom';
 import { call } from '../api/client.ts';
+import { useLiveMine } from '../api/live.ts';
 import { meQuery } from '../api/queries.ts';
 import { chosenTheme, chooseTheme, type Theme } from '../components/theme.ts';
 import { CommandLine } from '../features/commands/command-line.tsx';
@@ -38,6 +39,7 @@ export function Frame() {
 function TopBar({ ask }: { ask: () => void }) {
   const me = useQuery(meQuery());
   const person = me.data?.person;
+  useLiveMine(person?.id ?? null);
   return (
     <header className="top-bar label">
       <Link to={paths.home.to()} className="top-name font-serif text-ink">
@@ -45,7 +47,6 @@ function TopBar({ ask }: { ask: () => void }) {
       </Link>
       <nav aria-label="Main">
         {person && <NavLink to={paths.shelf.to()}>Shelf</NavLink>}
-        {person && <NavLink to={paths.jobs.to()}>Jobs</NavLink>}
         <NavLink to={paths.catalogue.to()}>Catalogue</NavLink>
         <NavLink to={paths.guide.to()}>Guide</NavLink>
         {!person && <NavLink to={paths.try.to()}>Try</NavLink>}
@@ -55,6 +56,12 @@ function TopBar({ ask }: { ask: () => void }) {
           Find or do
         </button>
         <ThemeSwitch />
+        {person && (
+          <NavLink to={paths.notices.to()}>
+            Notices{person.unread > 0 && <span className="new-mark"> {person.unread}</span>}
+            {person.unread > 0 && <span className="aside-only"> unread</span>}
+          </NavLink>
+        )}
         {person ? <Person name={person.name} /> : <NavLink to={paths.signIn.to()}>Sign in</NavLink>}
       </div>
     </header>
@@ -84,8 +91,8 @@ function ThemeSwitch() {
 function Person({ name }: { name: string }) {
   const signOut = useSignOut();
   return (
-    <span className="inline-flex flex-wrap gap-x-4">
-      <span>{name}</span>
+    <span className="inline-flex flex-wrap items-baseline gap-x-4">
+      <NavLink to={paths.account.to()}>{name}</NavLink>
       <button type="button" className="act" onClick={() => void signOut()}>
         Sign out
       </button>
@@ -109,6 +116,7 @@ function useFrameCommands(): readonly Command[] {
   const signOut = useSignOut();
   const me = useQuery(meQuery());
   const signedIn = me.data?.person != null;
+  const steward = me.data?.may.includes('steward') ?? false;
   return useMemo(() => {
     const go = (words: string, to: string): Command => ({ words, run: () => void navigate(to) });
     const theme = (one: Theme): Command => ({
@@ -117,7 +125,14 @@ function useFrameCommands(): readonly Command[] {
       run: () => chooseTheme(one),
     });
     return [
-      ...(signedIn ? [go('go to the shelf', paths.shelf.to())] : [go('sign in', paths.signIn.to())]),
+      ...(signedIn
+        ? [
+            go('go to the shelf', paths.shelf.to()),
+            go('go to the notices', paths.notices.to()),
+            go('go to the account', paths.account.to()),
+          ]
+        : [go('sign in', paths.signIn.to())]),
+      ...(steward ? [go('go to stewardship', paths.steward.to())] : []),
       go('go to the catalogue', paths.catalogue.to()),
       go('go to the guide', paths.guide.to()),
       go('try an example', paths.try.to()),
@@ -126,7 +141,7 @@ function useFrameCommands(): readonly Command[] {
       theme('system'),
       ...(signedIn ? [{ words: 'sign out', run: () => void signOut() }] : []),
     ];
-  }, [navigate, signOut, signedIn]);
+  }, [navigate, signOut, signedIn, steward]);
 }
 
 /** Control or Command with the semicolon, anywhere on the page. */

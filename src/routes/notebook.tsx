@@ -8,6 +8,7 @@ import { Waiting } from '../components/faces.tsx';
 import { Colophon, type ColophonPart, sourceAddress } from '../features/colophon/colophon.tsx';
 import type { Command } from '../features/commands/commands.ts';
 import { useCommands } from '../features/commands/context.ts';
+import { type Margin, useMargin } from '../features/margin/margin.tsx';
 import { Present } from '../features/margin/present.tsx';
 import type { EntryText } from '../features/spread/entry.tsx';
 import { titleOf } from '../features/spread/rows.ts';
@@ -82,6 +83,13 @@ function Opened({ notebook, me }: { notebook: Notebook; me: string | null }) {
   const changes = useEntries(notebook);
   const present = useLive(notebook.id, me);
   const [part, setPart] = useState<ColophonPart | null>(null);
+  const margin = useMargin({
+    notebook: notebook.id,
+    entries,
+    slices: reading.slices,
+    me,
+    may: notebook.may.includes('remark'),
+  });
   const { type, flush, choose } = saving;
 
   const onType = useCallback(
@@ -136,7 +144,18 @@ function Opened({ notebook, me }: { notebook: Notebook; me: string | null }) {
     return new Map(others);
   }, [notebook.entries, me, now]);
 
-  useCommands(() => commandsOf({ notebook, entries, changes, insert, open: desk.open, show: setPart }));
+  useCommands(() =>
+    commandsOf({
+      notebook,
+      entries,
+      changes,
+      insert,
+      open: desk.open,
+      show: setPart,
+      margin,
+      go: (to) => void navigate(to),
+    }),
+  );
   const edits = may
     ? { open: desk.open, insert: (kind: EntryText['kind'], before: string | null) => void insert(kind, before) }
     : undefined;
@@ -154,7 +173,8 @@ function Opened({ notebook, me }: { notebook: Notebook; me: string | null }) {
         write={may ? write : undefined}
         heldBy={heldBy}
         head={<Head notebook={notebook} saving={may ? savingInWords(saving.drafts) : null} />}
-        margin={
+        margin={margin}
+        strip={
           <Present
             others={present.filter((person) => person.id !== me)}
             writing={notebook.entries.flatMap(({ hold }, k) => (hold ? [[hold.by.id, k + 1] as const] : []))}
@@ -183,6 +203,9 @@ function Opened({ notebook, me }: { notebook: Notebook; me: string | null }) {
               ways={{
                 edition: (number) => paths.edition.to(notebook.id, number),
                 shared: paths.shared.to,
+                editions: paths.editions.to(notebook.id),
+                collation: paths.collation.to(notebook.id),
+                variants: paths.variants.to(notebook.id),
                 toNotebook: (id) => void navigate(paths.notebook.to(id)),
                 toShelf: () => void navigate(paths.shelf.to()),
                 link: (to, words) => <Link to={to}>{words}</Link>,
@@ -294,11 +317,13 @@ interface CommandsGiven {
   readonly insert: (kind: EntryText['kind'], before: string | null) => Promise<void>;
   readonly open: (spot: { entry: string; line: number; column: number }) => void;
   readonly show: (part: ColophonPart) => void;
+  readonly margin: Margin;
+  readonly go: (to: string) => void;
 }
 
 /** What the keyboard's line offers on a notebook. */
 function commandsOf(given: CommandsGiven): readonly Command[] {
-  const { notebook, entries, changes, insert, open, show } = given;
+  const { notebook, entries, changes, insert, open, show, margin, go } = given;
   const can = new Set(notebook.may);
   const part = (words: string, name: ColophonPart, also = ''): Command => ({
     words,
@@ -324,6 +349,11 @@ function commandsOf(given: CommandsGiven): readonly Command[] {
     also: 'open edit source',
     run: () => open({ entry: entry.id, line: 0, column: 1 }),
   }));
+  const remarkOn = entries.map((entry, k) => ({
+    words: `remark on (${String(k + 1)}) ${titleOf(entry)}`,
+    also: 'margin comment',
+    run: () => margin.begin(entry.id),
+  }));
   const writing = [
     { words: 'add statements at the end', run: () => void insert('statements', null) },
     { words: 'add prose at the end', run: () => void insert('prose', null) },
@@ -339,6 +369,13 @@ function commandsOf(given: CommandsGiven): readonly Command[] {
     part('people and rights', 'people', 'coauthors referees invite visibility'),
     ...(can.has('export') ? [{ words: 'export .gw', run: () => location.assign(sourceAddress(notebook.id)) }] : []),
     ...(can.has('edit') ? writing : []),
+    { words: 'next remark', also: 'margin', run: () => margin.go('next') },
+    { words: 'previous remark', also: 'margin', run: () => margin.go('previous') },
+    ...(can.has('remark') ? remarkOn : []),
+    { words: 'go to the editions', also: 'history compare', run: () => go(paths.editions.to(notebook.id)) },
+    ...(can.has('adopt')
+      ? [{ words: 'go to the variants', also: 'collation', run: () => go(paths.variants.to(notebook.id)) }]
+      : []),
     ...goTo,
   ];
 }

@@ -65,6 +65,71 @@ export const pages: RouteObject[] = [
         errorElement: <PageFailed />,
       },
       { path: paths.try.pattern, element: <TryPage />, errorElement: <PageFailed /> },
+      {
+        path: paths.account.pattern,
+        lazy: async () => ({ Component: (await import('./account.tsx')).AccountPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.address.pattern,
+        lazy: async () => ({ Component: (await import('./address.tsx')).AddressPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.bin.pattern,
+        lazy: async () => ({ Component: (await import('./bin.tsx')).BinPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.claimSheet.pattern,
+        lazy: async () => ({ Component: (await import('./claim-sheet.tsx')).ClaimSheetPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.collation.pattern,
+        lazy: async () => ({ Component: (await import('./collation.tsx')).CollationPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.variants.pattern,
+        lazy: async () => ({ Component: (await import('./collation.tsx')).VariantsPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.sending.pattern,
+        lazy: async () => ({ Component: (await import('./collation.tsx')).SendingPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.compare.pattern,
+        lazy: async () => ({ Component: (await import('./compare.tsx')).ComparePage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.editions.pattern,
+        lazy: async () => ({ Component: (await import('./editions.tsx')).EditionsPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.invitation.pattern,
+        lazy: async () => ({ Component: (await import('./invitation.tsx')).InvitationPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.notices.pattern,
+        lazy: async () => ({ Component: (await import('./notices.tsx')).NoticesPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.signInLink.pattern,
+        lazy: async () => ({ Component: (await import('./sign-in-link.tsx')).SignInLinkPage }),
+        errorElement: <PageFailed />,
+      },
+      {
+        path: paths.steward.pattern,
+        lazy: async () => ({ Component: (await import('./steward.tsx')).StewardPage }),
+        errorElement: <PageFailed />,
+      },
       { path: '*', element: <NotFoundPage /> },
     ],
   },

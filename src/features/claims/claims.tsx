@@ -30,7 +30,8 @@ export const Claims = memo(function Claims({ claims, audit }: { claims: readonly
   );
 });
 
-function ClaimLine({ claim }: { claim: Claim }) {
+/** One claim; `unfolded`: with its evidence open. */
+export function ClaimLine({ claim, unfolded = false }: { claim: Claim; unfolded?: boolean }) {
   const witness = witnessSentence(claim);
   const figures = figuresOf(claim);
   return (
@@ -47,7 +48,7 @@ function ClaimLine({ claim }: { claim: Claim }) {
           </p>
         )}
         {(figures.length > 0 || claim.sources.length > 0) && (
-          <details className="label">
+          <details className="label" open={unfolded}>
             <summary>evidence</summary>
             <dl className="claim-figures">
               {figures.map(([name, value]) => (

@@ -4,17 +4,21 @@ import { address, endpoints } from '../../../shared/contracts/endpoints.ts';
 import type { Notebook } from '../../../shared/contracts/notebooks.ts';
 import { call } from '../../api/client.ts';
 import { editionsQuery, keepNotebook, rereadLists } from '../../api/queries.ts';
+import { draftFormats, Exports } from './exports.tsx';
 import { People } from './people.tsx';
 import { Publish } from './publish.tsx';
 import { Share } from './share.tsx';
-import { Attempt, useAttempt } from './attempt.tsx';
+import { Attempt, useAttempt } from '../../components/attempt.tsx';
 import { Title } from './title.tsx';
 
-export type ColophonPart = 'publish' | 'editions' | 'share' | 'people' | 'title' | 'delete';
+export type ColophonPart = 'publish' | 'share' | 'export' | 'people' | 'title' | 'delete';
 
 export interface Ways {
   readonly edition: (number: number) => string;
   readonly shared: (token: string) => string;
+  readonly editions: string;
+  readonly collation: string;
+  readonly variants: string;
   readonly toNotebook: (id: string) => void;
   readonly toShelf: () => void;
   readonly link: (to: string, words: ReactNode) => ReactNode;
@@ -61,18 +65,16 @@ export function Colophon({ notebook, part, show, ways, settle }: Props) {
           )}
         </span>
         {may.has('publish') && act('publish', `publish edition ${String((notebook.edition ?? 0) + 1)}`)}
-        {notebook.edition !== null && act('editions', 'all editions')}
+        {notebook.edition !== null && ways.link(ways.editions, 'all editions')}
+        {may.has('adopt') && ways.link(ways.variants, 'variants')}
+        {may.has('edit') && notebook.origin && ways.link(ways.collation, 'collate with its origin')}
         {may.has('fork') && (
           <button type="button" className="act" disabled={fork.busy} onClick={fork.run}>
             fork
           </button>
         )}
         {may.has('link') && act('share', 'share')}
-        {may.has('export') && (
-          <a className="act" href={sourceAddress(notebook.id)} download={`${fileName(notebook.title)}.gw`}>
-            export .gw
-          </a>
-        )}
+        {may.has('export') && act('export', 'export')}
         {act('people', 'people and rights')}
         {may.has('edit') && act('title', 'title and authors')}
         {may.has('delete') && act('delete', 'delete')}
@@ -81,20 +83,17 @@ export function Colophon({ notebook, part, show, ways, settle }: Props) {
       {part === 'publish' && (
         <Publish notebook={notebook} settle={settle} link={(n, words) => ways.link(ways.edition(n), words)} />
       )}
-      {part === 'editions' && (
-        <section className="colophon-part" aria-label="Editions">
-          <ol className="space-y-1">
-            {editions.data?.items.map((edition) => (
-              <li key={edition.number}>
-                {ways.link(ways.edition(edition.number), `Edition ${String(edition.number)}`)}: {edition.summary}{' '}
-                <span className="label">{statusWords(edition.status)}</span>
-              </li>
-            ))}
-          </ol>
+      {part === 'share' && <Share notebook={notebook} shared={ways.shared} />}
+      {part === 'export' && (
+        <section className="colophon-part" aria-label="Export">
+          <Exports
+            addressOf={(format, query) => address(endpoints.exportNotebookAs, { notebook: notebook.id, format }, query)}
+            formats={draftFormats}
+            name={fileName(notebook.title)}
+          />
         </section>
       )}
-      {part === 'share' && <Share notebook={notebook} shared={ways.shared} />}
-      {part === 'people' && <People notebook={notebook} />}
+      {part === 'people' && <People notebook={notebook} gone={ways.toShelf} />}
       {part === 'title' && <Title key={notebook.title} notebook={notebook} done={() => show(null)} />}
       {part === 'delete' && <Delete notebook={notebook} gone={ways.toShelf} keep={() => show(null)} />}
     </footer>
@@ -108,7 +107,7 @@ export const statusWords = (status: string): string =>
       ? 'its claims could not be computed'
       : status;
 
-const fileName = (title: string): string =>
+export const fileName = (title: string): string =>
   title
     .toLowerCase()
     .replace(/[^\p{L}\p{N}]+/gu, '-')
@@ -134,8 +133,8 @@ function Delete({ notebook, gone, keep }: { notebook: Notebook; gone: () => void
   return (
     <section className="colophon-part" aria-label="Delete the notebook">
       <p>
-        “{notebook.title}” goes with all its entries and editions, for everyone on it. This cannot be undone; export it
-        first if in doubt.
+        “{notebook.title}” goes from everyone’s shelf, with its entries and editions, into your bin. It can be restored
+        for 30 days; then it goes for good.
       </p>
       <p className="colophon-line">
         <button type="button" className="act ink-refuted" disabled={remove.busy} onClick={remove.run}>

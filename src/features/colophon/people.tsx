@@ -1,15 +1,18 @@
 import { useQuery, useQueryClient } from '@tanstack/react-query';
 import { useId, useState } from 'react';
 import type { Notebook } from '../../../shared/contracts/notebooks.ts';
-import { type GrantedRole, grantedRoleSchema, type Visibility } from '../../../shared/contracts/rights.ts';
+import type { GrantedRole, Visibility } from '../../../shared/contracts/rights.ts';
 import { call } from '../../api/client.ts';
 import { keepNotebook, membersQuery } from '../../api/queries.ts';
-import { Attempt, useAttempt } from './attempt.tsx';
+import { RoleChoice } from './role-choice.tsx';
+import { Follow, Invitations, Leave, Transfer } from './rights.tsx';
+import { Attempt, useAttempt } from '../../components/attempt.tsx';
 
 /** Who is on a notebook and as what, and who else may read it. */
-export function People({ notebook }: { notebook: Notebook }) {
+export function People({ notebook, gone }: { notebook: Notebook; gone: () => void }) {
   const members = useQuery(membersQuery(notebook.id));
   const may = new Set(notebook.may);
+  const others = members.data?.items.filter(({ role }) => role !== 'owner') ?? [];
   return (
     <section className="colophon-part" aria-label="People and rights">
       <ul className="space-y-1">
@@ -26,7 +29,13 @@ export function People({ notebook }: { notebook: Notebook }) {
         ))}
       </ul>
       {members.isError && <p className="ink-refuted">The people could not be fetched.</p>}
+      {may.has('invite') && <Invitations notebook={notebook.id} />}
       {may.has('invite') && <Add notebook={notebook.id} />}
+      {may.has('transfer') && others.length > 0 && <Transfer notebook={notebook.id} others={others} />}
+      {may.has('follow') && <Follow notebook={notebook.id} />}
+      {may.has('leave') && notebook.role !== 'owner' && notebook.role !== null && (
+        <Leave notebook={notebook} gone={gone} />
+      )}
       <Visible notebook={notebook} may={may.has('show')} />
     </section>
   );
@@ -66,21 +75,6 @@ function Member(props: { notebook: string; person: string; name: string; role: G
   );
 }
 
-function RoleChoice(props: { label: string; role: GrantedRole; choose: (role: GrantedRole) => void }) {
-  return (
-    <select
-      aria-label={props.label}
-      className="field w-auto"
-      value={props.role}
-      onChange={(event) => props.choose(grantedRoleSchema.parse(event.target.value))}
-    >
-      {grantedRoleSchema.options.map((role) => (
-        <option key={role}>{role}</option>
-      ))}
-    </select>
-  );
-}
-
 function Add({ notebook }: { notebook: string }) {
   const [handle, setHandle] = useState('');
   const [role, setRole] = useState<GrantedRole>('coauthor');
@@ -100,7 +94,7 @@ function Add({ notebook }: { notebook: string }) {
       }}
     >
       <label className="label" htmlFor={field}>
-        Add by name at sign-in
+        Add someone by their handle
       </label>
       <input
         id={field}

@@ -4,7 +4,7 @@ import type { EditionSummary } from '../../../shared/contracts/editions.ts';
 import type { Notebook } from '../../../shared/contracts/notebooks.ts';
 import { call } from '../../api/client.ts';
 import { rereadEditions, rereadLists, rereadNotebook } from '../../api/queries.ts';
-import { Attempt, useAttempt } from './attempt.tsx';
+import { Attempt, useAttempt } from '../../components/attempt.tsx';
 
 interface Props {
   readonly notebook: Notebook;

@@ -3,7 +3,7 @@ import { useId, useState } from 'react';
 import type { Notebook } from '../../../shared/contracts/notebooks.ts';
 import { call } from '../../api/client.ts';
 import { editionsQuery, linksQuery } from '../../api/queries.ts';
-import { Attempt, useAttempt } from './attempt.tsx';
+import { Attempt, useAttempt } from '../../components/attempt.tsx';
 
 /** Links that open one edition to whoever has them, until they are withdrawn. */
 export function Share({ notebook, shared }: { notebook: Notebook; shared: (token: string) => string }) {

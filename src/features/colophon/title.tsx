@@ -3,7 +3,7 @@ import { useId, useState } from 'react';
 import type { Notebook } from '../../../shared/contracts/notebooks.ts';
 import { call } from '../../api/client.ts';
 import { keepNotebook, rereadLists } from '../../api/queries.ts';
-import { Attempt, useAttempt } from './attempt.tsx';
+import { Attempt, useAttempt } from '../../components/attempt.tsx';
 
 /** Title and authors of a notebook, as they are printed and cited. */
 export function Title({ notebook, done }: { notebook: Notebook; done: () => void }) {

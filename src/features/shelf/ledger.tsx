@@ -1,16 +1,17 @@
 import type { ReactNode } from 'react';
 import type { NotebookSummary } from '../../../shared/contracts/notebooks.ts';
+import { Day } from '../../components/dates.tsx';
 
 interface Props {
   readonly notebooks: readonly NotebookSummary[];
   readonly link: (id: string, title: string) => ReactNode;
   readonly label: string;
+  /** What can be done with a notebook from the list. */
+  readonly acts?: (notebook: NotebookSummary) => ReactNode;
 }
 
-const dates = new Intl.DateTimeFormat('en-GB', { day: 'numeric', month: 'long', year: 'numeric' });
-
 /** Notebooks as lines of a table: title and authors, edition, what one is on it, last change. */
-export function Ledger({ notebooks, link, label }: Props) {
+export function Ledger({ notebooks, link, label, acts }: Props) {
   return (
     <table className="ledger mt-8">
       <caption className="aside-only">{label}</caption>
@@ -35,7 +36,8 @@ export function Ledger({ notebooks, link, label }: Props) {
             <td className="label">{notebook.edition === null ? 'none yet' : `edition ${String(notebook.edition)}`}</td>
             <td className="label">{notebook.role ?? 'reader'}</td>
             <td className="label">
-              <time dateTime={notebook.changedAt}>{dates.format(new Date(notebook.changedAt))}</time>
+              <Day at={notebook.changedAt} />
+              {acts && <span className="block">{acts(notebook)}</span>}
             </td>
           </tr>
         ))}

@@ -24,10 +24,14 @@ interface SpreadProps {
   readonly claims: (row: ClaimsRow) => ReactNode;
   readonly edits: Edits | undefined;
   readonly heldBy: ReadonlyMap<string, string>;
+  /** What stands in the outer strip: at its head, and beside each entry. Absent where there is no margin. */
+  readonly marginHead?: ReactNode;
+  readonly beside?: ((entry: string, number: number) => ReactNode) | undefined;
 }
 
 /** The facing pages: spin language on the left, gauge language on the right, entry after entry. */
-export function Spread({ entries, reading, rows, writing, source, claims, edits, heldBy }: SpreadProps) {
+export function Spread(props: SpreadProps) {
+  const { entries, reading, rows, writing, source, claims, edits, heldBy, marginHead, beside } = props;
   const [language, setLanguage] = useState<PageLanguage>('both');
   const pages = useRef<HTMLDivElement>(null);
   const slices = new Map(reading.slices.map((slice) => [slice.id, slice]));
@@ -44,15 +48,18 @@ export function Spread({ entries, reading, rows, writing, source, claims, edits,
         if (pages.current && moveBetweenTerms(pages.current, event)) event.preventDefault();
       }}
     >
-      <div className="pair page-heads">
-        <span />
-        <span className="head page-left">in spin language</span>
-        <span className="head gutter">map</span>
-        <span className="head page-right">in gauge language</span>
+      <div className="with-margin heads-row">
+        <div className="pair page-heads">
+          <span />
+          <span className="head page-left">in spin language</span>
+          <span className="head gutter">map</span>
+          <span className="head page-right">in gauge language</span>
+        </div>
+        {marginHead}
       </div>
       <LanguageSwitch language={language} choose={setLanguage} />
       {entries.map((entry, k) => (
-        <div key={entry.id} className="entry-frame">
+        <div key={entry.id} className="entry-frame with-margin">
           {edits?.insert && <InsertHere insert={edits.insert} before={entry.id} where={`before (${String(k + 1)})`} />}
           <Entry
             entry={entry}
@@ -64,6 +71,7 @@ export function Spread({ entries, reading, rows, writing, source, claims, edits,
             claims={claims}
             heldBy={heldBy.get(entry.id)}
           />
+          {beside && <div className="entry-margin">{beside(entry.id, k + 1)}</div>}
         </div>
       ))}
       {edits?.insert && <InsertHere insert={edits.insert} before={null} where="at the end" last />}

@@ -84,7 +84,14 @@ function Row({ row, subject, choose }: RowProps) {
   const { held, pinned } = useHand();
   return (
     <tr>
-      <th scope="row">{row.tex === null ? row.spoken : <Formula tex={row.tex} />}</th>
+      <th scope="row">
+        {row.tex !== null && (
+          <span aria-hidden>
+            <Formula tex={row.tex} />
+          </span>
+        )}
+        <span className={row.tex === null ? undefined : 'aside-only'}>{row.spoken}</span>
+      </th>
       {row.marks.map((mark) => {
         const on = pinned && held?.left === overRef(subject, row.term, mark.law);
         return (
