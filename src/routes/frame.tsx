@@ -47,6 +47,7 @@ function TopBar({ ask }: { ask: () => void }) {
       </Link>
       <nav aria-label="Main">
         {person && <NavLink to={paths.shelf.to()}>Shelf</NavLink>}
+        {person && <NavLink to={paths.jobs.to()}>Jobs</NavLink>}
         <NavLink to={paths.catalogue.to()}>Catalogue</NavLink>
         <NavLink to={paths.guide.to()}>Guide</NavLink>
         {!person && <NavLink to={paths.try.to()}>Try</NavLink>}
