@@ -57,7 +57,7 @@ describe('a question that is too large for the page', () => {
   it('stands open with its cost, and can be handed over and taken back', async () => {
     const { page } = one;
     await signIn(page, 'R. Okafor');
-    await open(page, 'Many points', source('0.03'));
+    await open(page, 'Many points', source('0.005'));
     await grade(page, 'open').waitFor();
     await page.getByRole('button', { name: /^hand to the server/ }).click();
     await page.locator('[data-job="working"]').getByText(/\d+ %/).waitFor();
