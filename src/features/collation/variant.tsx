@@ -17,14 +17,14 @@ export function Variant({ of, number, children }: { of: AnyVariant; number: numb
   const code = of.entryKind === 'statements' && of.kind !== 'title';
   return (
     <article className="variant" aria-label={`Variant ${String(number)}`} data-variant={number}>
-      <p className="variant-head">
-        <strong>Variant {number}</strong>
+      <div className="variant-head">
+        <h2>Variant {number}</h2>
         <span className="label">{kindWords[of.kind]}</span>
         {of.bothChanged && <span className="label">both sides changed it since</span>}
-      </p>
+      </div>
       <div className="variant-readings">
         <div>
-          <h4>the origin reads</h4>
+          <h3>the origin reads</h3>
           {of.origin === null ? (
             <p className="label">nothing here</p>
           ) : (
@@ -32,7 +32,7 @@ export function Variant({ of, number, children }: { of: AnyVariant; number: numb
           )}
         </div>
         <div>
-          <h4>the fork reads</h4>
+          <h3>the fork reads</h3>
           {of.fork === null ? (
             <p className="label">nothing here</p>
           ) : (
