@@ -3,7 +3,7 @@ import type { Claim } from '../../shared/contracts/report.ts';
 import { Guard } from '../components/faces.tsx';
 import { Sentence } from '../components/formula.tsx';
 import { Claims } from '../features/claims/claims.tsx';
-import { printed } from '../features/claims/typography.ts';
+import { printed } from '../components/typography.ts';
 import { OpenQuestions } from '../features/jobs/open-questions.tsx';
 import type { ClaimsRow } from '../features/spread/entry.tsx';
 

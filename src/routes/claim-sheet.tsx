@@ -38,7 +38,7 @@ function Opened({ notebook, me }: { notebook: Notebook; me: string | null }) {
           {statusWords(data.status)}
           {data.engine !== null && `, engine ${data.engine}`}
         </span>
-        <span className="code">SHA-256 {data.hash.slice(0, 16)}…</span>
+        <span>SHA-256 {data.hash.slice(0, 16)}…</span>
         <button type="button" className="act" onClick={() => print()}>
           print the report of the review
         </button>

@@ -1,6 +1,6 @@
 import { lazy, type ReactNode, Suspense, useState } from 'react';
 import { Guard } from '../components/faces.tsx';
-import { printed } from '../features/claims/typography.ts';
+import { printed } from '../components/typography.ts';
 import { Key } from '../features/margin/key.tsx';
 import type { Margin } from '../features/margin/margin.tsx';
 import { Contents } from '../features/spread/contents.tsx';

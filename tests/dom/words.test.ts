@@ -3,7 +3,7 @@ import { blocksOf } from '../../src/components/prose.tsx';
 import { runsOf } from '../../src/components/formula.tsx';
 import { renderToString } from '../../src/components/katex.ts';
 import { numberText, witnessSentence } from '../../src/features/claims/evidence.ts';
-import { printed } from '../../src/features/claims/typography.ts';
+import { printed } from '../../src/components/typography.ts';
 import { matching } from '../../src/features/commands/commands.ts';
 import { titleOf } from '../../src/features/spread/rows.ts';
 import { claim } from './fixture.ts';

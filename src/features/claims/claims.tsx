@@ -4,7 +4,7 @@ import type { Claim } from '../../../shared/contracts/report.ts';
 import { Sentence } from '../../components/formula.tsx';
 import { GradeMark } from '../../components/marks.tsx';
 import { figuresOf, witnessSentence } from './evidence.ts';
-import { printed } from './typography.ts';
+import { printed } from '../../components/typography.ts';
 
 /** The claims of one audit line: each with its grade, what it says, its figures, and what to be careful about. */
 export const Claims = memo(function Claims({ claims, audit }: { claims: readonly Claim[]; audit: string }) {

@@ -1,5 +1,5 @@
 import type { Claim } from '../../../shared/contracts/report.ts';
-import { printed, superscript } from './typography.ts';
+import { printed, superscript } from '../../components/typography.ts';
 
 /** Figures and witness of a claim in words; what has no short form is left to the data (report, export). */
 

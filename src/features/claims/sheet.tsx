@@ -10,7 +10,7 @@ import { Empty, Failed } from '../../components/faces.tsx';
 import { Sentence } from '../../components/formula.tsx';
 import { Part } from '../../components/parts.tsx';
 import { ClaimLine } from './claims.tsx';
-import { printed } from './typography.ts';
+import { printed } from '../../components/typography.ts';
 import { Vary } from './vary.tsx';
 import { Verdicts } from './verdicts.tsx';
 

@@ -6,6 +6,7 @@ import type {
 } from '../../../shared/contracts/reviews.ts';
 import { Formula, Sentence } from '../../components/formula.tsx';
 import { GradeMark } from '../../components/marks.tsx';
+import { printed } from '../../components/typography.ts';
 
 /** What differs as physics, between two readings. */
 
@@ -119,7 +120,8 @@ export function ClaimDifferences({ of, left, right }: ClaimsProps) {
 function SideClaim({ claim }: { claim: NonNullable<ClaimDifference['left']> }) {
   return (
     <p data-grade={claim.grade}>
-      <GradeMark grade={claim.grade} label="" /> <Sentence text={claim.tex === '' ? claim.statement : claim.tex} />{' '}
+      <GradeMark grade={claim.grade} label="" />{' '}
+      <Sentence text={printed(claim.tex === '' ? claim.statement : claim.tex)} />{' '}
       <span className={`claim-grade ink-${claim.grade}`}>{claim.grade}</span>
     </p>
   );
@@ -141,7 +143,7 @@ export function Effects({ of, reason }: { of: readonly ClaimDifference[] | null;
     <ul className="effects" aria-label="What it does to the claims">
       {told.map((one, k) => (
         <li key={k} data-grade={one.right?.grade}>
-          <Sentence text={one.right?.tex ?? one.left?.tex ?? one.subject} />{' '}
+          <Sentence text={printed(one.right?.tex ?? one.left?.tex ?? one.subject)} />{' '}
           <span className="label">
             {one.left ? <Grade grade={one.left.grade} /> : 'not asked before'} {'→'}{' '}
             {one.right ? <Grade grade={one.right.grade} /> : 'not asked any more'}
