@@ -138,7 +138,8 @@ function arrive(passport: Passport): RequestHandler {
     const linking = linkingOf(request) !== null;
     const back = (failed: string, why: unknown): void => {
       logOf(response).info({ failed, err: why instanceof Error ? why : undefined }, 'a sign-in failed');
-      response.redirect(`${linking ? '/account' : '/sign-in'}?failed=${failed}`);
+      // Saved first: a redirect leaves before the session is written, and the next try would find the state of this one.
+      request.session.save(() => response.redirect(`${linking ? '/account' : '/sign-in'}?failed=${failed}`));
     };
     const decide = (error: unknown, person: string | false | null): void => {
       if (isRefusal(error)) back(linking ? 'taken' : 'closed', error);

@@ -224,7 +224,7 @@ describe('writing', () => {
   it('adds, moves and deletes entries from the keyboard, and undoes a deletion', async () => {
     const { page } = one;
     await page.keyboard.press('Control+;');
-    await page.getByRole('combobox').fill('add prose');
+    await page.getByRole('dialog').getByRole('combobox').fill('add prose');
     await page.keyboard.press('Enter');
     await page.getByRole('textbox', { name: 'Source of entry 2' }).waitFor();
     await page.keyboard.type('# A field\nIt points along $s^x$.');

@@ -33,10 +33,18 @@ export function Leaving({ account, link, gone }: Props) {
 }
 
 function Deleting({ account, link, gone }: Props) {
-  const asked = useQuery(deletionQuery());
+  // Once the account goes, nothing more is asked in its name.
+  const [leaving, setLeaving] = useState(false);
+  const asked = useQuery({ ...deletionQuery(), enabled: !leaving });
   const [typed, setTyped] = useState('');
   const remove = useAttempt(async () => {
-    await call('deleteAccount', { body: { handle: typed } });
+    setLeaving(true);
+    try {
+      await call('deleteAccount', { body: { handle: typed } });
+    } catch (error) {
+      setLeaving(false);
+      throw error;
+    }
     await gone();
   });
   if (asked.isPending) return <Waiting what="Looking what would go with it …" />;
