@@ -4,7 +4,7 @@
  *   npm run pictures -- ADDRESS FOLDER
  *
  * ADDRESS is that of a running demonstration (`npm start`), where the stand-in for GitHub lets anyone sign in. Nothing of
- * it is kept in the repository but the picture of the README, which is `spread-light-1280.png`.
+ * it is kept in the repository; the picture of the README, `src/assets/spread.png`, was taken of `/try` with a term in hand.
  */
 import { mkdir } from 'node:fs/promises';
 import { join } from 'node:path';
