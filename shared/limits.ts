@@ -8,7 +8,7 @@ export const limits = {
   /** Depth of nested brackets in an expression. */
   nesting: 100,
   /** Statements of one source. */
-  statements: 2_000,
+  statements: 1_000,
   /** Pauli families in one operator. */
   families: 20_000,
   /** Factors of one Pauli string. */
