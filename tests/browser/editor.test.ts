@@ -61,11 +61,13 @@ describe('the editor', () => {
     await page.keyboard.type(' - J sum(u: vertices) s^z[');
     const list = page.getByRole('listbox');
     await list.getByRole('option').first().waitFor();
-    expect(await list.getByRole('option').allTextContents()).toEqual([
-      'ua cell of vertices',
-      'verticesone cell by its unit cell',
-    ]);
+    await expect
+      .poll(() => list.getByRole('option').allTextContents(), { timeout: 10_000 })
+      .toEqual(['ua cell of vertices', 'verticesone cell by its unit cell']);
+    // The list ignores keys in its first moments, so that what is typed on is not taken for a choice.
+    await page.waitForTimeout(400);
     await press(page, 'ArrowDown');
+    await page.waitForTimeout(200);
     await press(page, 'Enter');
     await page.keyboard.type(']');
     expect(await text(page)).toBe(`${before} - J sum(u: vertices) s^z[u]`);
