@@ -70,10 +70,10 @@ describe('the editor', () => {
     await page.waitForTimeout(200);
     await press(page, 'Enter');
     await page.keyboard.type(']');
-    expect(await text(page)).toBe(`${before} - J sum(u: vertices) s^z[u]`);
+    await expect.poll(() => text(page), { timeout: 10_000 }).toBe(`${before} - J sum(u: vertices) s^z[u]`);
     await page.locator('[data-ref="ising/2"]').waitFor();
     for (let k = 0; k < 40 && (await text(page)) !== before; k += 1) await press(page, 'Control+z');
-    expect(await text(page)).toBe(before);
+    await expect.poll(() => text(page), { timeout: 10_000 }).toBe(before);
     await page.locator('[data-ref="ising/2"]').waitFor({ state: 'detached' });
   });
 
